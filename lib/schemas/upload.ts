@@ -1,0 +1,97 @@
+import { z } from 'zod';
+import { IGNORE_ROLE, POINT_ROLE_NAMES } from '../point-roles';
+import { TREND_UNIT_IDS } from '../units';
+import { TIMESTAMP_FORMS } from '../trends/types';
+import { TimeZone } from './common';
+
+export const UPLOAD_STATUSES = [
+  'receiving',
+  'received',
+  'needs-mapping',
+  'importing',
+  'analysing',
+  'done',
+  'failed',
+] as const;
+export type UploadStatus = (typeof UPLOAD_STATUSES)[number];
+export const FINAL_UPLOAD_STATUSES: readonly UploadStatus[] = ['done', 'failed', 'needs-mapping'];
+
+export const UploadProblem = z.object({
+  code: z.string(),
+  severity: z.enum(['error', 'warning']),
+  message: z.string(),
+  row: z.number().int().optional(),
+  column: z.string().optional(),
+  count: z.number().int(),
+});
+
+export const Upload = z.object({
+  id: z.uuid(),
+  plantId: z.uuid(),
+  filename: z.string(),
+  sizeBytes: z.number().int(),
+  sha256: z.string().nullable(),
+  status: z.enum(UPLOAD_STATUSES),
+  /** 0 to 1 within the present status. */
+  progress: z.number(),
+  rowsRead: z.number().int(),
+  samplesStored: z.number().int(),
+  from: z.string().nullable(),
+  to: z.string().nullable(),
+  problems: z.array(UploadProblem),
+  createdAt: z.string(),
+  finishedAt: z.string().nullable(),
+});
+export type Upload = z.infer<typeof Upload>;
+
+const Role = z.enum([...POINT_ROLE_NAMES, IGNORE_ROLE] as const);
+const TrendUnit = z.enum(TREND_UNIT_IDS).nullable();
+export const TimestampPlan = z.object({ columns: z.array(z.string()).min(1).max(2), form: z.enum(TIMESTAMP_FORMS) });
+
+export const PreviewColumn = z.object({
+  column: z.string(),
+  role: Role,
+  unit: TrendUnit,
+  unitIndex: z.number().int().nullable(),
+  confidence: z.number(),
+  reason: z.string(),
+  samples: z.array(z.number().nullable()),
+  low: z.number().nullable(),
+  high: z.number().nullable(),
+});
+export const Preview = z.object({
+  dialect: z.object({
+    encoding: z.string(),
+    delimiter: z.string(),
+    decimal: z.string(),
+    headerRow: z.number().int(),
+    unitRow: z.number().int().nullable(),
+    firstDataRow: z.number().int(),
+  }),
+  timestamp: TimestampPlan,
+  timeZone: z.string(),
+  stepMinutes: z.number().nullable(),
+  columns: z.array(PreviewColumn),
+  rows: z.array(z.array(z.string())),
+  firstRows: z.number().int(),
+  problems: z.array(UploadProblem),
+});
+export type Preview = z.infer<typeof Preview>;
+
+/** The shape of a preview: keys a mapping does not need are ignored. */
+export const ConfirmMapping = z.object({
+  timestamp: TimestampPlan,
+  timeZone: TimeZone,
+  columns: z
+    .array(
+      z.object({
+        column: z.string(),
+        role: Role,
+        unit: TrendUnit,
+        unitIndex: z.number().int().min(1).max(200).nullable().optional(),
+      }),
+    )
+    .min(1),
+  remember: z.boolean().default(true),
+});
+export type ConfirmMapping = z.infer<typeof ConfirmMapping>;

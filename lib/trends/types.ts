@@ -1,0 +1,118 @@
+import type { MappedRole } from '../point-roles';
+import type { TrendUnitId } from '../units';
+
+/** How the bytes of a file become rows of cells. Row numbers count from 1 as a text editor shows them. */
+export interface Dialect {
+  encoding: 'utf-8' | 'utf-16le' | 'utf-16be' | 'windows-1252';
+  delimiter: ',' | ';' | '\t' | '|';
+  decimal: '.' | ',';
+  /** Row that holds the column names. */
+  headerRow: number;
+  /** Row that holds units, when one follows the header. */
+  unitRow: number | null;
+  firstDataRow: number;
+}
+
+/** Where the time stands and in which form. `form` is one of TIMESTAMP_FORMS. */
+export interface TimestampPlan {
+  /** One column, or a date and a time column in this order. */
+  columns: string[];
+  form: TimestampForm;
+}
+
+export const TIMESTAMP_FORMS = [
+  'iso',
+  'month/day/year',
+  'day/month/year',
+  'year/month/day',
+  'epoch-s',
+  'epoch-ms',
+  'spreadsheet-serial',
+] as const;
+export type TimestampForm = (typeof TIMESTAMP_FORMS)[number];
+
+export interface ColumnMapping {
+  column: string;
+  role: MappedRole;
+  /** null for `ignore`. */
+  unit: TrendUnitId | null;
+  /** From 1; for roles that belong to one of several units or branches. */
+  unitIndex?: number | null;
+}
+
+export interface ColumnPreview extends ColumnMapping {
+  unitIndex: number | null;
+  /** 0 to 1; under 0.5 a person has to decide. */
+  confidence: number;
+  /** A sentence for a person: why this role and unit. */
+  reason: string;
+  /** Up to 96 evenly spaced values of the column as stored in the file (null = missing), for a sparkline. */
+  samples: (number | null)[];
+  low: number | null;
+  high: number | null;
+}
+
+export type ProblemSeverity = 'error' | 'warning';
+/** One kind of trouble, counted; `row` is the first row it was met in. The message says what to do. */
+export interface TrendProblem {
+  code: string;
+  severity: ProblemSeverity;
+  message: string;
+  row?: number;
+  column?: string;
+  count: number;
+}
+
+export interface TrendPreview {
+  dialect: Dialect;
+  timestamp: TimestampPlan;
+  timeZone: string;
+  columns: ColumnPreview[];
+  /** Most common distance between rows. */
+  stepMinutes: number | null;
+  /** SHA-256 hex of the normalised header: equal headers share a remembered mapping. */
+  fingerprint: string;
+  /** The first data rows as read, for "as read" on the mapping page; at most 5. */
+  rows: string[][];
+  firstRows: number;
+  problems: TrendProblem[];
+}
+
+/** All that reading needs; the confirmed shape of a preview. */
+export interface ReadPlan {
+  dialect: Dialect;
+  timestamp: TimestampPlan;
+  timeZone: string;
+  columns: ColumnMapping[];
+  /** The plant's step, which divides 1440. */
+  stepMinutes: number;
+}
+
+/** One mapped column's values for one UTC day, in the stored unit (lib/units), NaN where missing; length 1440 / step. */
+export interface DayOfColumn {
+  /** Index into ReadPlan.columns. */
+  column: number;
+  /** UTC day, YYYY-MM-DD. */
+  day: string;
+  values: Float32Array;
+}
+
+export interface ReadReport {
+  rowsRead: number;
+  samplesStored: number;
+  fromMs: number | null;
+  toMs: number | null;
+  problems: TrendProblem[];
+}
+
+/** A file that cannot be read at all. `message` is a sentence for the person who dropped it. */
+export class TrendError extends Error {
+  override readonly name = 'TrendError';
+  constructor(
+    readonly code: 'empty' | 'not-text' | 'no-time-column' | 'no-header' | 'no-rows' | 'truncated' | 'unsupported',
+    message: string,
+    readonly row?: number,
+  ) {
+    super(message);
+  }
+}

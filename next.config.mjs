@@ -1,0 +1,23 @@
+/** @type {import('next').NextConfig} */
+const config = {
+  poweredByHeader: false,
+  // Compression belongs to the reverse proxy: a long CSV export is slower when Node compresses it.
+  compress: false,
+  outputFileTracingRoot: import.meta.dirname,
+  turbopack: { root: import.meta.dirname },
+  serverExternalPackages: [
+    '@mikro-orm/core',
+    '@mikro-orm/postgresql',
+    '@mikro-orm/knex',
+    '@mikro-orm/migrations',
+    '@node-rs/argon2',
+    'pg-boss',
+    'pg',
+    'pg-copy-streams',
+    'pino',
+    'exceljs',
+    'busboy',
+  ],
+};
+
+export default config;
