@@ -1,0 +1,41 @@
+import { defineEntity, p, type InferEntity } from '@mikro-orm/core';
+
+/** One local clock hour of a plant. */
+export const HourEntity = defineEntity({
+  name: 'Hour',
+  tableName: 'hour',
+  properties: {
+    organizationId: p.uuid(),
+    plantId: p.uuid().primary(),
+    hourStart: p.datetime().primary(),
+    localDay: p.type('string').columnType('date'),
+    low: p.boolean(),
+    runningMinutes: p.type('float').columnType('real'),
+    loadTons: p.double().nullable().name('load_tons'),
+    deltaTF: p.double().nullable().name('delta_t_f'),
+    expectedDeltaTF: p.double().nullable().name('expected_delta_t_f'),
+    productionDeltaTF: p.double().nullable().name('production_delta_t_f'),
+    primaryFlowGpm: p.double().nullable().name('primary_flow_gpm'),
+    secondaryFlowGpm: p.double().nullable().name('secondary_flow_gpm'),
+    bypassFlowGpm: p.double().nullable().name('bypass_flow_gpm'),
+    primarySupplyF: p.double().nullable().name('primary_supply_f'),
+    reverseMinutes: p.type('float').columnType('real').name('reverse_minutes'),
+    forwardMinutes: p.type('float').columnType('real').name('forward_minutes'),
+    stillMinutes: p.type('float').columnType('real').name('still_minutes'),
+    unknownMinutes: p.type('float').columnType('real').name('unknown_minutes'),
+    reverseFlowGpm: p.double().nullable().name('reverse_flow_gpm'),
+    reverseFlowMaxGpm: p.double().nullable().name('reverse_flow_max_gpm'),
+    blendedSupplyF: p.double().nullable().name('blended_supply_f'),
+    blendedSupplyMaxF: p.double().nullable().name('blended_supply_max_f'),
+    excessFlowGpm: p.double().nullable().name('excess_flow_gpm'),
+    avoidableFlowGpm: p.double().nullable().name('avoidable_flow_gpm'),
+    cause: p.text(),
+    causeConfidence: p.type('float').columnType('real').nullable(),
+    excessEnergyKwh: p.double().nullable().name('excess_energy_kwh'),
+    excessCost: p.double().nullable().name('excess_cost'),
+    strandedTons: p.double().nullable().name('stranded_tons'),
+    unitsRunning: p.type('float').columnType('real').nullable(),
+    quality: p.type('float').columnType('real').nullable(),
+  },
+});
+export type Hour = InferEntity<typeof HourEntity>;

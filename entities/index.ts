@@ -1,0 +1,79 @@
+import { AlertDeliveryEntity } from './alert-delivery';
+import { AlertRuleEntity } from './alert-rule';
+import { AlertRunEntity } from './alert-run';
+import { AnalysisEntity } from './analysis';
+import { ApiTokenEntity } from './api-token';
+import { AppUserEntity } from './app-user';
+import { AuditEventEntity } from './audit-event';
+import { CalibrationEntity } from './calibration';
+import { EpisodeEntity } from './episode';
+import { HourEntity } from './hour';
+import { MappingEntity } from './mapping';
+import { MembershipEntity } from './membership';
+import { OrganizationEntity } from './organization';
+import { PlantEntity } from './plant';
+import { PlantDayEntity } from './plant-day';
+import { PlantSettingsEntity } from './plant-settings';
+import { PointEntity } from './point';
+import { ResultBlockEntity } from './result-block';
+import { SampleBlockEntity } from './sample-block';
+import { SampleLayerEntity } from './sample-layer';
+import { SessionEntity } from './session';
+import { StaleDayEntity } from './stale-day';
+import { UploadEntity } from './upload';
+import { UploadChunkEntity } from './upload-chunk';
+
+/** Every entity, listed by import: a bundled program finds no files to search. */
+export const ENTITIES = [
+  AlertDeliveryEntity,
+  AlertRuleEntity,
+  AlertRunEntity,
+  AnalysisEntity,
+  ApiTokenEntity,
+  AppUserEntity,
+  AuditEventEntity,
+  CalibrationEntity,
+  EpisodeEntity,
+  HourEntity,
+  MappingEntity,
+  MembershipEntity,
+  OrganizationEntity,
+  PlantEntity,
+  PlantDayEntity,
+  PlantSettingsEntity,
+  PointEntity,
+  ResultBlockEntity,
+  SampleBlockEntity,
+  SampleLayerEntity,
+  SessionEntity,
+  StaleDayEntity,
+  UploadEntity,
+  UploadChunkEntity,
+];
+
+export {
+  AlertDeliveryEntity,
+  AlertRuleEntity,
+  AlertRunEntity,
+  AnalysisEntity,
+  ApiTokenEntity,
+  AppUserEntity,
+  AuditEventEntity,
+  CalibrationEntity,
+  EpisodeEntity,
+  HourEntity,
+  MappingEntity,
+  MembershipEntity,
+  OrganizationEntity,
+  PlantEntity,
+  PlantDayEntity,
+  PlantSettingsEntity,
+  PointEntity,
+  ResultBlockEntity,
+  SampleBlockEntity,
+  SampleLayerEntity,
+  SessionEntity,
+  StaleDayEntity,
+  UploadEntity,
+  UploadChunkEntity,
+};
