@@ -1,0 +1,35 @@
+import { Fragment, type ReactNode } from 'react';
+import { CAUTION } from '@/lib/client/words';
+
+export interface FootProps {
+  settingsRevision?: number;
+  kernelVersion?: string;
+  timeZone?: string;
+  /** In place of the three, where a page is of no one plant. */
+  right?: ReactNode;
+}
+
+/** The foot of every page: the caution, and what its numbers rest on. */
+export function Foot({ settingsRevision, kernelVersion, timeZone, right }: FootProps) {
+  const parts = [
+    settingsRevision === undefined ? null : `Settings revision ${settingsRevision}`,
+    kernelVersion === undefined ? null : `kernel ${kernelVersion}`,
+    timeZone === undefined ? null : `times ${timeZone}`,
+  ].filter((part) => part !== null);
+  return (
+    <footer className="page pt-12 pb-8 phone:pt-10">
+      <div className="flex justify-between gap-11 border-t border-ink pt-2.5 text-small text-ink-2 phone:block">
+        <p className="max-w-[880px]">{CAUTION}</p>
+        <p className="shrink-0 text-end phone:mt-2 phone:text-start">
+          {right ??
+            parts.map((part, index) => (
+              <Fragment key={part}>
+                {index === 0 ? null : ' · '}
+                <span className="whitespace-nowrap">{part}</span>
+              </Fragment>
+            ))}
+        </p>
+      </div>
+    </footer>
+  );
+}
