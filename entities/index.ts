@@ -77,3 +77,28 @@ export {
   UploadEntity,
   UploadChunkEntity,
 };
+
+export type { AlertDelivery } from './alert-delivery';
+export type { AlertRule } from './alert-rule';
+export type { AlertRun } from './alert-run';
+export type { Analysis } from './analysis';
+export type { ApiToken } from './api-token';
+export type { AppUser } from './app-user';
+export type { AuditEvent } from './audit-event';
+export type { Calibration } from './calibration';
+export type { Episode } from './episode';
+export type { Hour } from './hour';
+export type { Mapping } from './mapping';
+export type { Membership } from './membership';
+export type { Organization } from './organization';
+export type { Plant } from './plant';
+export type { PlantDay } from './plant-day';
+export type { PlantSettingsRevision } from './plant-settings';
+export type { Point } from './point';
+export type { ResultBlock } from './result-block';
+export type { SampleBlock } from './sample-block';
+export type { SampleLayer } from './sample-layer';
+export type { Session } from './session';
+export type { StaleDay } from './stale-day';
+export type { Upload } from './upload';
+export type { UploadChunk } from './upload-chunk';

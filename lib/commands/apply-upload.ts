@@ -1,0 +1,103 @@
+import type { EntityManager } from '@mikro-orm/postgresql';
+import type { Plant, Upload } from '@/entities';
+import { deriveBlocks } from '../db/blocks';
+import { query } from '../db/sql';
+import { withTenant } from '../db/tenant';
+import type { ImportResult } from './import-samples';
+import { markChangedDays } from './mark-days-stale';
+import { refreshCoverage } from './refresh-coverage';
+import { startAnalysis } from './start-analysis';
+
+/** Days derived in one transaction. */
+const DAYS_AT_ONCE = 31;
+
+interface Hooks {
+  signal: AbortSignal;
+  fence: (em: EntityManager) => Promise<void>;
+  complete: (em: EntityManager) => Promise<void>;
+}
+
+/** Makes an upload's layers count, derives the days they touch, and starts their analysis in the transaction that ends the job. */
+export async function applyUpload(upload: Upload, plant: Plant, result: ImportResult, hooks: Hooks): Promise<void> {
+  const tenancy = { organizationIds: [plant.organizationId] };
+  await withTenant(tenancy, async (em) => {
+    await hooks.fence(em);
+    await query(
+      em,
+      `update upload set applied = true, rows_read = $2, samples_stored = $3, data_from = $4, data_to = $5, problems = $6 where id = $1`,
+      [
+        upload.id,
+        result.rowsRead,
+        result.samplesStored,
+        instant(result.fromMs),
+        instant(result.toMs),
+        JSON.stringify(result.problems),
+      ],
+    );
+  });
+  await deriveDays(plant, result.days, hooks);
+  await withTenant(tenancy, async (em) => {
+    await refreshCoverage(em, plant);
+    await query(em, `update upload set status = 'analysing', progress = 0 where id = $1 and removed_at is null`, [
+      upload.id,
+    ]);
+    await startAnalysisOfStale(em, plant, upload);
+    await hooks.complete(em);
+  });
+}
+
+/** Takes an upload's samples out again: its layers go, the days it touched are derived and analysed without it. */
+export async function takeOutUpload(upload: Upload, plant: Plant, hooks: Hooks): Promise<void> {
+  const tenancy = { organizationIds: [plant.organizationId] };
+  const days = await withTenant(tenancy, async (em) => {
+    await hooks.fence(em);
+    const rows = await query<{ day: string }>(
+      em,
+      `select distinct day from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3 order by day`,
+      [plant.organizationId, plant.id, upload.uploadSeq],
+    );
+    return rows.map((row) => row.day);
+  });
+  // The upload no longer counts (applied is false): derive first and drop the layers last, so that a crash leaves the list of days.
+  await deriveDays(plant, days, hooks);
+  await withTenant(tenancy, async (em) => {
+    await query(em, `delete from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3`, [
+      plant.organizationId,
+      plant.id,
+      upload.uploadSeq,
+    ]);
+    if (upload.removedAt !== null) {
+      await query(em, `delete from upload_chunk where organization_id = $1 and upload_id = $2`, [
+        plant.organizationId,
+        upload.id,
+      ]);
+    }
+    await refreshCoverage(em, plant);
+    await startAnalysisOfStale(em, plant, null);
+    await hooks.complete(em);
+  });
+}
+
+async function deriveDays(plant: Plant, days: readonly string[], hooks: Hooks): Promise<void> {
+  const owner = { organizationId: plant.organizationId, plantId: plant.id, stepMinutes: plant.stepMinutes };
+  for (let first = 0; first < days.length; first += DAYS_AT_ONCE) {
+    hooks.signal.throwIfAborted();
+    await withTenant({ organizationIds: [plant.organizationId] }, async (em) => {
+      await hooks.fence(em);
+      const changed = await deriveBlocks(em, owner, days.slice(first, first + DAYS_AT_ONCE));
+      await markChangedDays(em, owner, changed);
+    });
+  }
+}
+
+/** Starts an analysis of the days that are stale already; marking by range would redo the whole record. */
+async function startAnalysisOfStale(em: EntityManager, plant: Plant, upload: Upload | null): Promise<void> {
+  await startAnalysis(em, {
+    organizationId: plant.organizationId,
+    plantId: plant.id,
+    uploadId: upload?.id ?? null,
+    onlyStale: true,
+  });
+}
+
+const instant = (epochMs: number | null): string | null => (epochMs === null ? null : new Date(epochMs).toISOString());

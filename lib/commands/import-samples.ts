@@ -1,0 +1,125 @@
+import type { EntityManager } from '@mikro-orm/postgresql';
+import type { Plant, Upload } from '@/entities';
+import { readLayers, writeLayers, type PointDay } from '../db/blocks';
+import { query } from '../db/sql';
+import { withTenant } from '../db/tenant';
+import { createTrendReader } from '../trends/reader';
+import type { DayOfColumn, ReadPlan, ReadReport, TrendProblem } from '../trends/types';
+import { ensurePoints } from './ensure-points';
+import { readChunk } from './import-source';
+
+/** Days kept open for rows that come out of order; what is older is written. Bounds the memory of a file of any length. */
+const OPEN_DAYS = 40;
+
+export interface ImportResult {
+  rowsRead: number;
+  samplesStored: number;
+  fromMs: number | null;
+  toMs: number | null;
+  problems: TrendProblem[];
+  days: string[];
+}
+
+/**
+ * Reads the files of an upload chunk by chunk and writes their days as the upload's own layers, in short transactions, each
+ * fenced. What an earlier attempt left is taken out first. Nothing here counts until the upload is applied.
+ */
+export async function importSamples(
+  upload: Upload,
+  plant: Plant,
+  plan: ReadPlan,
+  hooks: { signal: AbortSignal; fence: (em: EntityManager) => Promise<void> },
+): Promise<ImportResult> {
+  if (upload.uploadSeq === null) throw new Error(`importSamples: upload ${upload.id} has no sequence number`);
+  const owner = {
+    organizationId: plant.organizationId,
+    plantId: plant.id,
+    uploadSeq: upload.uploadSeq,
+    stepMinutes: plan.stepMinutes,
+  };
+  const inTenant = <Result>(work: (em: EntityManager) => Promise<Result>) =>
+    withTenant({ organizationIds: [owner.organizationId] }, async (em) => {
+      await hooks.fence(em);
+      return work(em);
+    });
+
+  const points = await inTenant(async (em) => {
+    await query(em, `delete from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3`, [
+      owner.organizationId,
+      owner.plantId,
+      owner.uploadSeq,
+    ]);
+    return ensurePoints(em, owner, plan.columns);
+  });
+
+  const written = new Set<string>();
+  const write = async (days: readonly DayOfColumn[], rowsRead: number, progress: number) => {
+    const incoming = days.flatMap((each): PointDay[] => {
+      const pointId = points[each.column];
+      return pointId ? [{ pointId, day: each.day, values: each.values }] : [];
+    });
+    await inTenant(async (em) => {
+      const again = new Set(
+        incoming.filter((each) => written.has(`${each.day}/${each.pointId}`)).map((each) => each.day),
+      );
+      if (again.size > 0) mergeInto(incoming, await readLayers(em, owner, [...again]));
+      await writeLayers(em, owner, incoming);
+      await query(em, `update upload set rows_read = $2, progress = $3 where id = $1`, [upload.id, rowsRead, progress]);
+    });
+    for (const each of incoming) written.add(`${each.day}/${each.pointId}`);
+  };
+
+  const reports: ReadReport[] = [];
+  let bytesRead = 0;
+  let rowsBefore = 0;
+  for (const [index] of upload.files.entries()) {
+    const reader = createTrendReader(plan);
+    for (let seq = 0; ; seq++) {
+      hooks.signal.throwIfAborted();
+      const chunk = await readChunk(owner.organizationId, upload.id, index, seq);
+      if (!chunk) break;
+      reader.push(chunk);
+      bytesRead += chunk.length;
+      // The share of the file that has been read; the last tenth is for what follows.
+      await write(
+        reader.takeOldestDays(OPEN_DAYS),
+        rowsBefore + reader.report().rowsRead,
+        (0.9 * bytesRead) / Math.max(1, upload.sizeBytes),
+      );
+      await new Promise((resolve) => setImmediate(resolve)); // lets the heartbeat through
+    }
+    await write(
+      reader.finish(),
+      rowsBefore + reader.report().rowsRead,
+      (0.9 * bytesRead) / Math.max(1, upload.sizeBytes),
+    );
+    const report = reader.report();
+    rowsBefore += report.rowsRead;
+    reports.push(report);
+  }
+  return { ...combineReports(reports), days: [...new Set([...written].map((key) => key.slice(0, 10)))].sort() };
+}
+
+/** A day that comes in parts: what the earlier part held stays where the later part has nothing. */
+function mergeInto(incoming: readonly PointDay[], stored: readonly PointDay[]): void {
+  for (const before of stored) {
+    const now = incoming.find((each) => each.day === before.day && each.pointId === before.pointId);
+    now?.values.forEach((value, slot) => {
+      if (Number.isNaN(value)) now.values[slot] = before.values[slot] ?? NaN;
+    });
+  }
+}
+
+function combineReports(reports: readonly ReadReport[]): Omit<ImportResult, 'days'> {
+  const least = (values: (number | null)[]) =>
+    values.reduce((a, b) => (a === null ? b : b === null ? a : Math.min(a, b)), null);
+  const greatest = (values: (number | null)[]) =>
+    values.reduce((a, b) => (a === null ? b : b === null ? a : Math.max(a, b)), null);
+  return {
+    rowsRead: reports.reduce((sum, each) => sum + each.rowsRead, 0),
+    samplesStored: reports.reduce((sum, each) => sum + each.samplesStored, 0),
+    fromMs: least(reports.map((each) => each.fromMs)),
+    toMs: greatest(reports.map((each) => each.toMs)),
+    problems: reports.flatMap((each) => each.problems),
+  };
+}
