@@ -3,6 +3,7 @@ import { Migration20261201000200Plants } from './migration-20261201000200-plants
 import { Migration20261201000300Samples } from './migration-20261201000300-samples';
 import { Migration20261201000400Results } from './migration-20261201000400-results';
 import { Migration20261201000500Alerts } from './migration-20261201000500-alerts';
+import { Migration20261201000600MailSuppression } from './migration-20261201000600-mail-suppression';
 
 /** In order of application; listed by import so that a bundled program carries them. */
 export const MIGRATIONS = [
@@ -11,4 +12,5 @@ export const MIGRATIONS = [
   { name: '20261201000300-samples', class: Migration20261201000300Samples },
   { name: '20261201000400-results', class: Migration20261201000400Results },
   { name: '20261201000500-alerts', class: Migration20261201000500Alerts },
+  { name: '20261201000600-mail-suppression', class: Migration20261201000600MailSuppression },
 ];
