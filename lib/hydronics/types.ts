@@ -48,6 +48,8 @@ export interface PlantModel {
   loadTons: number;
   units: readonly UnitModel[];
   distributionPumps: DistributionPumpsModel;
+  /** How the production side is pumped; absent: variable for `variable-primary`, constant otherwise. */
+  primarySpeed?: 'constant' | 'variable';
   /** Only for building bridges: the blend the bridge is designed to make. */
   blendedSupplyF: number | null;
   sensors: SensorModel;
