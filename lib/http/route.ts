@@ -6,11 +6,13 @@ import { resolveCredentials, type Credentials } from '../auth/resolve';
 import { withTenant } from '../db/tenant';
 import { log } from '../log';
 import { failureProblem } from './failure';
+import { json } from './json';
 import { parseBody, parseParams, parseQuery } from './parse';
 import { problem, ProblemError } from './problem';
 import { requireSameOrigin } from './same-origin';
 
 export { problem, ProblemError, notFound, forbidden } from './problem';
+export { json } from './json';
 export { requireAction, requireOrganization, requirePlant, requireUpload } from './require';
 
 type Schema = z.ZodType | undefined;
@@ -126,13 +128,6 @@ function toResponse(answer: Response | object | undefined | void): Response {
   if (answer === undefined) return new Response(null, { status: 204 });
   return json(answer);
 }
-
-/** A JSON answer of another status than 200. */
-export const json = (body: object, status = 200, headers: Record<string, string> = {}): Response =>
-  new Response(JSON.stringify(body), {
-    status,
-    headers: { 'content-type': 'application/json; charset=utf-8', 'cache-control': 'private, no-cache', ...headers },
-  });
 
 function finished(response: Response, requestId: string, setCookie: string | null): Response {
   response.headers.set('x-request-id', requestId);
