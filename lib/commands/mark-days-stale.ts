@@ -11,6 +11,7 @@ export async function markDaysStale(
     `insert into stale_day (organization_id, plant_id, day)
      select distinct $1::uuid, $2::uuid, day from sample_block
      where organization_id = $1 and plant_id = $2 and day between coalesce($3::date, '-infinity') and coalesce($4::date, 'infinity')
+     order by day
      on conflict (plant_id, day) do update set mark = excluded.mark`,
     [input.organizationId, input.plantId, input.from ?? null, input.to ?? null],
   );
@@ -34,6 +35,7 @@ export async function markChangedDays(
        union
        select b.day from sample_block b where b.organization_id = $1 and b.plant_id = $2
          and b.day in (select d + step from unnest($3::date[]) d, (values (-1), (1)) v(step))) near
+     order by day
      on conflict (plant_id, day) do update set mark = excluded.mark`,
     [owner.organizationId, owner.plantId, days],
   );
