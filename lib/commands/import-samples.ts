@@ -30,7 +30,7 @@ export async function importSamples(
   plan: ReadPlan,
   hooks: { signal: AbortSignal; fence: (em: EntityManager) => Promise<void> },
 ): Promise<ImportResult> {
-  if (upload.uploadSeq === null) throw new Error(`importSamples: upload ${upload.id} has no sequence number`);
+  if (upload.uploadSeq == null) throw new Error(`importSamples: upload ${upload.id} has no sequence number`);
   const owner = {
     organizationId: plant.organizationId,
     plantId: plant.id,
