@@ -4,6 +4,7 @@ import type { Access } from './access';
 export const ACTIONS = [
   'plant.read',
   'plant.manage',
+  'plant.remove',
   'upload.create',
   'upload.read',
   'mapping.confirm',
@@ -20,23 +21,18 @@ export type Action = (typeof ACTIONS)[number];
 const READ: readonly Action[] = ['plant.read', 'upload.read'];
 const ROLE_ACTIONS: Readonly<Record<Role, ReadonlySet<Action>>> = {
   owner: new Set(ACTIONS),
-  engineer: new Set(ACTIONS.filter((action) => action !== 'member.manage')),
-  consultant: new Set<Action>([
-    ...READ,
-    'upload.create',
-    'mapping.confirm',
-    'upload.remove',
-    'analysis.start',
-    'episode.acknowledge',
-  ]),
+  engineer: new Set(ACTIONS.filter((action) => action !== 'member.manage' && action !== 'plant.remove')),
+  // Reads everything, remedies and reports included, and says what was seen; what changes the record is the plant's own people's.
+  consultant: new Set<Action>([...READ, 'episode.acknowledge']),
   operator: new Set<Action>([...READ, 'episode.acknowledge']),
 };
+// What takes a person: a key does not make keys or members, and does not take a plant away.
+const PERSONAL: readonly Action[] = ['member.manage', 'token.manage', 'plant.remove'];
 const SCOPE_ACTIONS: Readonly<Record<'ingest' | 'read' | 'manage', ReadonlySet<Action>>> = {
   // Uploads to one plant and reads what it uploaded; the plant's results are not its business.
   ingest: new Set<Action>(['upload.create', 'upload.read', 'mapping.confirm']),
   read: new Set(READ),
-  // A key does not make keys, nor members: that takes a person.
-  manage: new Set(ACTIONS.filter((action) => action !== 'member.manage' && action !== 'token.manage')),
+  manage: new Set(ACTIONS.filter((action) => !PERSONAL.includes(action))),
 };
 
 /** Whether this person or token may do `action` in that organization; false for an organization that is not theirs. */

@@ -15,6 +15,8 @@ function makeLucia(https: boolean) {
   return new Lucia(sessionAdapter, {
     sessionExpiresIn: new TimeSpan(30, 'd'),
     sessionCookie: {
+      // The cookie outlives the session: a page view prolongs the session but cannot set cookies. The database decides.
+      expires: false,
       // The prefix makes browsers refuse the cookie from a sibling host or over plain http.
       name: https ? '__Host-slackwater_session' : 'slackwater_session',
       attributes: { secure: https, sameSite: 'lax', path: '/' },

@@ -1,6 +1,6 @@
 /** The address people open, from PUBLIC_URL (validated at boot); null when it is not set. */
 export function publicUrl(): URL | null {
-  const text = process.env.PUBLIC_URL;
+  const text = process.env.PUBLIC_URL?.trim();
   return text === undefined || text === '' ? null : new URL(text);
 }
 

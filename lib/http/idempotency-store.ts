@@ -128,7 +128,8 @@ export async function lockKey(em: EntityManager, place: KeyPlace): Promise<boole
 }
 
 // An answer may hold what is shown once (a new token): it is sealed so that only whoever sends the key again can open it.
-const sealingKey = (key: string): Buffer => Buffer.from(hkdfSync('sha256', key, '', 'slackwater stored answer', 32));
+const sealingKey = (key: string): Buffer =>
+  Buffer.from(hkdfSync('sha256', key, process.env.APP_SECRET ?? '', 'slackwater stored answer', 32));
 
 function seal(key: string, body: unknown): string {
   const nonce = randomBytes(12);

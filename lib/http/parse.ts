@@ -7,7 +7,8 @@ const MAX_JSON_BYTES = 1024 * 1024;
 const fieldErrors = (error: z.ZodError): FieldError[] =>
   error.issues.map((issue) => ({ path: issue.path.map(String).join('.'), message: issue.message }));
 
-function parsed<Schema extends z.ZodType>(schema: Schema, value: unknown, what: string): z.output<Schema> {
+/** The value by its schema; what does not fit is a 400 problem with a sentence for each field. */
+export function parsedInput<Schema extends z.ZodType>(schema: Schema, value: unknown, what: string): z.output<Schema> {
   const result = schema.safeParse(value);
   if (result.success) return result.data;
   const errors = fieldErrors(result.error);
@@ -25,12 +26,12 @@ export function parseQuery<Schema extends z.ZodType>(schema: Schema, request: Re
   const query: Record<string, string> = {};
   // A key without a value (`?cause=`) counts as absent, which is what forms send for "any".
   for (const [key, value] of new URL(request.url).searchParams) if (value !== '') query[key] = value;
-  return parsed(schema, query, 'query');
+  return parsedInput(schema, query, 'query');
 }
 
 export async function parseBody<Schema extends z.ZodType>(schema: Schema, request: Request): Promise<z.output<Schema>> {
   const text = await readText(request);
-  if (text === '') return parsed(schema, {}, 'body');
+  if (text === '') return parsedInput(schema, {}, 'body');
   if (!/^application\/([\w.+-]+\+)?json\b/i.test(request.headers.get('content-type') ?? '')) {
     throw problem(415, 'Unsupported media type', 'Send the body as application/json.');
   }
@@ -40,7 +41,7 @@ export async function parseBody<Schema extends z.ZodType>(schema: Schema, reques
   } catch {
     throw problem(400, 'Invalid input', 'The body is not JSON.', [{ path: '', message: 'The body is not JSON.' }]);
   }
-  return parsed(schema, value, 'body');
+  return parsedInput(schema, value, 'body');
 }
 
 async function readText(request: Request): Promise<string> {

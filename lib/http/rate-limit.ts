@@ -24,7 +24,7 @@ const made = new Map<RateRule, { client: unknown; limiter: RateLimiterPostgres }
 async function limiter(rule: RateRule): Promise<RateLimiterPostgres> {
   const client: unknown = (await orm()).em.getConnection().getKnex();
   const known = made.get(rule);
-  if (known?.client === client) return known.limiter;
+  if (known && known.client === client) return known.limiter;
   const { points, seconds } = RATE_RULES[rule];
   const fresh = new RateLimiterPostgres({
     storeClient: client,
@@ -49,15 +49,14 @@ export async function countCall(rule: RateRule, key: string): Promise<number> {
   }
 }
 
-/** Throws 429 when the rule is used up for this key, without counting anything. */
-export async function refuseWhenUsedUp(rule: RateRule, key: string): Promise<void> {
-  const state = await (await limiter(rule)).get(key);
-  if (state && state.consumedPoints >= RATE_RULES[rule].points) throw tooMany(state.msBeforeNext);
-}
-
 /** Forgets what was counted for this key: the right password was given. */
 export async function forgetCalls(rule: RateRule, key: string): Promise<void> {
   await (await limiter(rule)).delete(key);
+}
+
+/** Takes one counted call back: it did no harm. */
+export async function takeBack(rule: RateRule, key: string): Promise<void> {
+  await (await limiter(rule)).reward(key);
 }
 
 function tooMany(msBeforeNext: number): ProblemError {
