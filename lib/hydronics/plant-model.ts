@@ -1,6 +1,5 @@
 import type { PlantSettings } from '../schemas/plant';
-import { TON_BTU_PER_HOUR } from '../units';
-import { heatFactorBtuPerHourPerGpmF } from './fluids';
+import { deltaTFromTonsF, flowFromTonsGpm } from './design-flow';
 import type { Arrangement, DistributionPumpsModel, Fluid, PlantModel, SensorModel, UnitModel } from './types';
 
 /** Design numbers that stand in for what nobody has given. Each is listed in `assumed` when it is used. */
@@ -18,34 +17,18 @@ const DEFAULTS = {
   pumpEfficiency: 0.78,
   /** Premium motors of 50 to 500 hp: 0.93 to 0.96. */
   motorEfficiency: 0.93,
-  /** Thermistor with installation, standard uncertainty (methods note, sensor table). */
+  /** Thermistor as installed, standard uncertainty (common practice, no source). */
   temperatureSigmaF: 0.25,
-  /** Common pipes have strap-on sensors more often than wells: +/- 0.5 F if well fitted. */
+  /** Common pipes have strap-on sensors more often than wells: 0.5 to 1 F (common practice, no source). */
   bypassTemperatureSigmaF: 0.5,
-  /** Insertion meter as installed. */
+  /** Insertion meter as installed: 3 to 5 % (common practice, no source). */
   flowSigmaPercent: 3,
-  /** Flow inferred from a running pump: 10 to 20 %. */
+  /** Flow inferred from a running pump: 10 to 20 % (common practice, no source). */
   ratedFlowSigmaPercent: 10,
-  lowLoadShare: 0.15,
-  lowDeltaTShare: 0.8,
 } as const;
 
 /** Notes the path of every number that is taken from the defaults. */
 type Assume = <Value>(given: Value | null | undefined, path: string, fallback: Value) => Value;
-
-/** Design flow from tons and delta-T: tons * 12000 / (K * delta-T), K at the mean water temperature. */
-export function flowFromTonsGpm(tons: number, deltaTF: number, supplyF: number, fluid: Fluid): number {
-  return (tons * TON_BTU_PER_HOUR) / (heatFactorBtuPerHourPerGpmF(supplyF + deltaTF / 2, fluid) * deltaTF);
-}
-
-/** Design delta-T from tons and flow; K at the mean water temperature, found in two rounds. */
-export function deltaTFromTonsF(tons: number, flowGpm: number, supplyF: number, fluid: Fluid): number {
-  let deltaTF = 10;
-  for (let round = 0; round < 3; round += 1) {
-    deltaTF = (tons * TON_BTU_PER_HOUR) / (heatFactorBtuPerHourPerGpmF(supplyF + deltaTF / 2, fluid) * flowGpm);
-  }
-  return deltaTF;
-}
 
 function unitModels(settings: PlantSettings, fluid: Fluid, assume: Assume): UnitModel[] {
   const { productionUnits, productionSupplyF } = settings.design;
@@ -152,8 +135,8 @@ export function plantModelFromSettings(
     ),
     blendedSupplyF: arrangement === 'building-bridge' ? design.blendedSupplyF : null,
     sensors: sensorModel(settings, assume),
-    lowLoadShare: settings.low.loadShare ?? DEFAULTS.lowLoadShare,
-    lowDeltaTShare: settings.low.deltaTShare ?? DEFAULTS.lowDeltaTShare,
+    lowLoadShare: settings.low.loadShare,
+    lowDeltaTShare: settings.low.deltaTShare,
     energyPerKwh: settings.tariff?.energyPerKwh ?? null,
   };
   return { model, assumed };

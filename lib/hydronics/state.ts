@@ -43,9 +43,11 @@ function producing(measurements: Measurements, plant: PlantModel, noPrimaryGpm: 
   if (primaryFlowGpm <= noPrimaryGpm) return 0;
   const riseF = loopRiseF(measurements, slot);
   if (riseF >= COOLING_RISE_F) return 1;
+  // Temperatures close together without a flow may be a light load or standing water: nothing is decided.
+  if (primaryFlowGpm !== primaryFlowGpm) return Number.NaN;
   if (riseF < IDLE_RISE_F) return 0;
   // A pumped primary side without temperatures is taken to run; between the two rises nothing is decided.
-  return primaryFlowGpm === primaryFlowGpm && riseF !== riseF ? 1 : Number.NaN;
+  return riseF !== riseF ? 1 : Number.NaN;
 }
 
 /** 1 when the distribution side is pumped, 0 when not, NaN when nothing measured tells. */

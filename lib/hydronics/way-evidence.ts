@@ -30,6 +30,9 @@ export interface WayEvidence {
   /** Blended supply and its variance (enthalpy). */
   blend: number;
   blendVariance: number;
+  /** The stream that is mixed this way, as measured: primary return when forward, secondary supply when reverse. */
+  mix: number;
+  mixSigma: number;
   /** Unmixed streams at the tees. */
   cold: number;
   hot: number;
@@ -53,6 +56,8 @@ export const emptyWayEvidence = (): WayEvidence => ({
   mainMean: Number.NaN,
   blend: Number.NaN,
   blendVariance: Number.NaN,
+  mix: Number.NaN,
+  mixSigma: Number.NaN,
   cold: Number.NaN,
   hot: Number.NaN,
   logLikelihood: Number.NaN,
@@ -130,6 +135,8 @@ export function weighWay(way: Way, inputs: SlotInputs, curves: FluidCurves, btuP
   const mix = forward ? primaryReturn : secondarySupply;
   const mixSigma = btuPerLbF * (forward ? inputs.primaryReturnSigma : inputs.secondarySupplySigma);
 
+  out.mix = mix;
+  out.mixSigma = mixSigma;
   if (forward) {
     pool(
       primarySupply,
@@ -200,7 +207,7 @@ export function weighWay(way: Way, inputs: SlotInputs, curves: FluidCurves, btuP
     (known(flows.mainGpm) && known(flows.otherGpm));
   out.logLikelihood = -0.5 * (out.chiSquare + commonPipeChi) + (known(out.z) ? logNormalCdf(out.z) : -Math.LN2);
   if (out.z < 0) out.chiSquare += out.z * out.z;
-  blendSupply(forward, mix, mixSigma, doubled, doubledVariance, coldVariance, hotVariance, out);
+  blendSupply(forward, doubled, doubledVariance, coldVariance, hotVariance, out);
 }
 
 /** Bypass and main flow given that the bypass has this way's sign: the moments of the cut-off normal. */
@@ -222,8 +229,6 @@ function settleBypass(out: WayEvidence): void {
 /** Blended supply of this way: one stream when forward; measured mix and meters' prediction together when reverse. */
 function blendSupply(
   forward: boolean,
-  mix: number,
-  mixSigma: number,
   doubled: number,
   doubledVariance: number,
   coldVariance: number,
@@ -243,7 +248,7 @@ function blendSupply(
   const predicted = out.cold + share * span;
   const predictedVariance =
     span * span * shareVariance + (1 - share) * (1 - share) * coldVariance + share * share * hotVariance;
-  pool(mix, mixSigma, predicted, Math.sqrt(predictedVariance));
+  pool(out.mix, out.mixSigma, predicted, Math.sqrt(predictedVariance));
   out.blend = pooled.value;
   out.blendVariance = pooled.variance;
 }
