@@ -14,8 +14,10 @@ export interface UploadOwner {
 
 export interface ReceivedFile {
   name: string;
-  /** As received, not as unpacked. */
+  /** As kept, which is unpacked. */
   sizeBytes: number;
+  /** Size and hash as received: what the sender's own tools say of the file. */
+  receivedBytes: number;
   sha256: string;
   gzip: boolean;
 }

@@ -32,7 +32,7 @@ export interface PlainContent {
   /** The file's plain bytes cut into pieces of a MiB, the last one shorter. A piece is valid until the next is asked for. */
   pieces: AsyncGenerator<Buffer>;
   /** Known once `pieces` has ended. */
-  summary: () => { sizeBytes: number; sha256: string; gzip: boolean };
+  summary: () => { sizeBytes: number; receivedBytes: number; sha256: string; gzip: boolean };
 }
 
 /**
@@ -43,6 +43,7 @@ export interface PlainContent {
  */
 export function plainContent(name: string, content: Readable, meter: Meter): PlainContent {
   const hash = createHash('sha256');
+  let receivedBytes = 0;
   let sizeBytes = 0;
   let gzip = false;
 
@@ -50,7 +51,7 @@ export function plainContent(name: string, content: Readable, meter: Meter): Pla
     // The connection belongs to the caller: leaving early must not cut it before the refusal has been sent.
     for await (const chunk of content.iterator({ destroyOnReturn: false }) as AsyncIterable<Buffer>) {
       hash.update(chunk);
-      sizeBytes += chunk.byteLength;
+      receivedBytes += chunk.byteLength;
       meter.check();
       yield chunk;
     }
@@ -73,7 +74,17 @@ export function plainContent(name: string, content: Readable, meter: Meter): Pla
     yield* unpacked;
   }
 
-  return { pieces: cut(plain(), meter), summary: () => ({ sizeBytes, sha256: hash.digest('hex'), gzip }) };
+  async function* counted(): AsyncGenerator<Buffer> {
+    for await (const chunk of plain()) {
+      sizeBytes += chunk.byteLength;
+      meter.plainBytes += chunk.byteLength;
+      meter.check();
+      yield chunk;
+    }
+  }
+
+  const summary = () => ({ sizeBytes, receivedBytes, sha256: hash.digest('hex'), gzip });
+  return { pieces: cut(counted()), summary };
 }
 
 /** Enough bytes to tell what a file is, or all of a shorter one. */
@@ -118,12 +129,10 @@ async function* unpack(name: string, head: Buffer, rest: AsyncGenerator<Buffer>)
   }
 }
 
-async function* cut(source: AsyncGenerator<Buffer>, meter: Meter): AsyncGenerator<Buffer> {
+async function* cut(source: AsyncGenerator<Buffer>): AsyncGenerator<Buffer> {
   const piece = Buffer.allocUnsafe(CHUNK_BYTES);
   let filled = 0;
   for await (const chunk of source) {
-    meter.plainBytes += chunk.byteLength;
-    meter.check();
     for (let at = 0; at < chunk.byteLength;) {
       const copied = chunk.copy(piece, filled, at);
       at += copied;

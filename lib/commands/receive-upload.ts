@@ -15,8 +15,6 @@ export interface ReceiveOptions {
   /** The name of a raw body; a form's parts bring their own. */
   filename?: string | undefined;
   limitBytes: number;
-  /** Called after each stored piece, at least once a MiB. */
-  onPiece?: () => Promise<void>;
   /** Joins the transaction that makes the upload count. */
   onClose?: (em: EntityManager, upload: { id: string; status: 'received'; sha256: string }) => Promise<void>;
 }
@@ -62,7 +60,7 @@ interface Receiving {
 }
 
 async function receiveFile(receiving: Receiving, file: IncomingFile): Promise<void> {
-  const { owner, onPiece } = receiving.options;
+  const { owner } = receiving.options;
   const { pieces, summary } = plainContent(file.name, file.content, receiving.meter);
   let seq = 0;
   for await (const piece of pieces) {
@@ -74,7 +72,6 @@ async function receiveFile(receiving: Receiving, file: IncomingFile): Promise<vo
       seq: seq++,
     };
     if (!(await storeChunk(chunk, piece, receiving.body.receivedBytes()))) throw givenUp();
-    await onPiece?.();
   }
   if (seq === 0) {
     const others =
@@ -93,13 +90,7 @@ async function finish(receiving: Receiving): Promise<{ id: string; status: 'rece
       { path: 'file', message: 'Send the file in a field named "file".' },
     ]);
   }
-  // Of several files: the hash of their hashes, in the order they came.
-  const sha256 =
-    files.length === 1
-      ? first.sha256
-      : createHash('sha256')
-          .update(files.map((each) => each.sha256).join('\n'))
-          .digest('hex');
+  const sha256 = hashOfFiles(files);
   const upload = { id: uploadId, status: 'received' as const, sha256 };
   await withTenant({ organizationIds: [options.owner.organizationId] }, async (em) => {
     const place = await closeUpload(em, options.owner, uploadId, {
@@ -112,6 +103,34 @@ async function finish(receiving: Receiving): Promise<{ id: string; status: 'rece
     await options.onClose?.(em, upload);
   });
   return upload;
+}
+
+/** One file's own hash; of several, the hash of their hashes in the order they came. */
+function hashOfFiles(files: readonly { sha256: string }[]): string {
+  const [first] = files;
+  if (first && files.length === 1) return first.sha256;
+  return createHash('sha256')
+    .update(files.map((each) => each.sha256).join('\n'))
+    .digest('hex');
+}
+
+/** What `receiveUpload` would call the hash of a body, without keeping any of it: for a request that is sent a second time. */
+export async function hashOfBody(request: Request, filename: string | undefined, limitBytes: number): Promise<string> {
+  const body = incomingBody(request, filename);
+  const meter = meterOf(body, limitBytes);
+  const files: { sha256: string }[] = [];
+  try {
+    for await (const file of body.files) {
+      const { pieces, summary } = plainContent(file.name, file.content, meter);
+      for await (const piece of pieces) void piece;
+      files.push(summary());
+    }
+  } catch (error) {
+    body.discard();
+    const refusal = inWords(error);
+    throw refusal.status === 500 ? error : refusal;
+  }
+  return hashOfFiles(files);
 }
 
 function meterOf(body: IncomingBody, limitBytes: number): Meter {

@@ -47,13 +47,33 @@ export function resolvePeriod(
 }
 
 const invalidPeriod = (message: string, path: string) =>
-  problem(400, 'Invalid input', `The query is not right: ${message}`, [{ path, message }]);
+  problem(400, 'Invalid input', `The period is not right: ${message}`, [{ path, message }]);
 
 /** The UTC days, both included, whose blocks hold a half-open period. */
 export const blockDays = ({ fromMs, toMs }: PeriodMs): { fromDay: string; toDay: string } => ({
   fromDay: dayOf(fromMs),
   toDay: dayOf(toMs - 1),
 });
+
+/**
+ * The UTC days, both included, that hold the part of a record a request names; an absent bound stays open.
+ *
+ * Throws  a 400 problem when `from` is not before `to`.
+ */
+export function utcDaysAsked(
+  asked: { from?: string | undefined; to?: string | undefined },
+  timeZone: string,
+): { from?: string; to?: string } {
+  const fromMs = asked.from === undefined ? null : momentMs(asked.from, timeZone);
+  const toMs = asked.to === undefined ? null : momentMs(asked.to, timeZone);
+  if (fromMs !== null && toMs !== null && !(fromMs < toMs)) {
+    throw invalidPeriod('"from" has to lie before "to"; the period is half-open.', 'from');
+  }
+  return {
+    ...(fromMs === null ? {} : { from: dayOf(fromMs) }),
+    ...(toMs === null ? {} : { to: dayOf(toMs - 1) }),
+  };
+}
 
 /** The local days, both included, that a half-open period touches. */
 export const localDaySpan = ({ fromMs, toMs }: PeriodMs, timeZone: string): { firstDay: string; lastDay: string } => ({

@@ -1,0 +1,37 @@
+import type { EntityManager } from '@mikro-orm/postgresql';
+import { queryOne } from '../db/sql';
+import { notFound, problem } from '../http/problem';
+import type { Preview, UploadStatus } from '../schemas/upload';
+
+/** A preview as the import job leaves it: what the API shows, and the heading's fingerprint. */
+export type StoredPreview = Preview & { fingerprint: string };
+
+/**
+ * What was recognised in an upload and the suggestion for each of its columns.
+ *
+ * Throws  a 409 problem in words while there is none: the file is still on its way, or could not be read.
+ */
+export async function readPreview(
+  em: EntityManager,
+  input: { organizationId: string; uploadId: string },
+): Promise<StoredPreview> {
+  const row = await queryOne<{ status: UploadStatus; preview: StoredPreview | null }>(
+    em,
+    `select status, preview from upload where id = $1 and organization_id = $2 and removed_at is null`,
+    [input.uploadId, input.organizationId],
+  );
+  if (!row) throw notFound('upload');
+  if (row.preview) return row.preview;
+  throw problem(409, 'Not there yet', WHY_NOT[row.status]);
+}
+
+const STILL_READ = 'The file is still being looked at. Ask again in a moment.';
+const WHY_NOT: Readonly<Record<UploadStatus, string>> = {
+  receiving: 'The file is still being received. There is a preview once it has arrived.',
+  received: STILL_READ,
+  'needs-mapping': STILL_READ,
+  importing: STILL_READ,
+  analysing: 'The file was read without a preview being kept.',
+  done: 'The file was read without a preview being kept.',
+  failed: 'The file could not be read, so there is nothing to map. Its problems say why.',
+};
