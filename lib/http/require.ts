@@ -1,7 +1,5 @@
 import type { EntityManager } from '@mikro-orm/postgresql';
-import { PlantEntity, UploadEntity } from '@/entities';
-import type { Plant } from '@/entities/plant';
-import type { Upload } from '@/entities/upload';
+import { EpisodeEntity, PlantEntity, UploadEntity, type Episode, type Plant, type Upload } from '@/entities';
 import type { Access } from '../auth/access';
 import { can, type Action } from '../auth/can';
 import { forbidden, notFound, problem } from './problem';
@@ -48,6 +46,25 @@ export async function requireUpload(
   if (!upload || !plant) throw notFound('upload');
   requireAction(access, upload.organizationId, action);
   return upload;
+}
+
+/** The episode, likewise. */
+export async function requireEpisode(
+  em: EntityManager,
+  access: Access,
+  episodeId: string,
+  action: Action,
+): Promise<Episode> {
+  const episode = await em.findOne(EpisodeEntity, {
+    id: episodeId,
+    organizationId: { $in: access.organizationIds },
+    ...(access.onlyPlantId === null ? {} : { plantId: access.onlyPlantId }),
+  });
+  const { organizationId, plantId } = episode ?? {};
+  const plant = plantId && (await em.findOne(PlantEntity, { id: plantId, organizationId, deletedAt: null }));
+  if (!episode || !plant) throw notFound('episode');
+  requireAction(access, episode.organizationId, action);
+  return episode;
 }
 
 /** The organization a new object goes to: the one named, or the only one; 400 when it must be named. */

@@ -13,7 +13,7 @@ import { requireSameOrigin } from './same-origin';
 
 export { problem, ProblemError, notFound, forbidden } from './problem';
 export { json } from './json';
-export { requireAction, requireOrganization, requirePlant, requireUpload } from './require';
+export { requireAction, requireEpisode, requireOrganization, requirePlant, requireUpload } from './require';
 
 type Schema = z.ZodType | undefined;
 type Parsed<S extends Schema> = S extends z.ZodType ? z.output<S> : undefined;
