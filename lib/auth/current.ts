@@ -1,6 +1,6 @@
 import 'server-only';
 import type { EntityManager } from '@mikro-orm/postgresql';
-import { cookies } from 'next/headers';
+import { cookies, headers } from 'next/headers';
 import { redirect } from 'next/navigation';
 import { cache } from 'react';
 import { withTenant } from '../db/tenant';
@@ -20,12 +20,17 @@ const currentSession = cache(async (): Promise<{ access: Access; user: SignedInU
 export const currentAccess = async (): Promise<Access | null> => (await currentSession())?.access ?? null;
 export const currentUser = async (): Promise<SignedInUser | null> => (await currentSession())?.user ?? null;
 
-/** For pages behind sign-in: the access, or off to the sign-in page (which comes back to `returnTo`, a path of this site). */
+/** For pages behind sign-in: the access, or off to the sign-in page, which comes back to the page that was asked for. */
 export async function requireAccess(returnTo?: string): Promise<Access> {
   const access = await currentAccess();
   if (access) return access;
-  redirect(returnTo === undefined ? '/sign-in' : `/sign-in?next=${encodeURIComponent(returnTo)}`);
+  const page = returnTo ?? (await headers()).get('x-page-path') ?? '/';
+  redirect(page === '/' ? '/sign-in' : `/sign-in?next=${encodeURIComponent(page)}`);
 }
+
+/** Where the sign-in page leads afterwards: the path asked for, when it is one of this site; `//host` and the like are not. */
+export const returnPath = (next: string | undefined): string =>
+  next !== undefined && /^\/(?![/\\])/.test(next) ? next : '/';
 
 /** The data door of pages: one transaction under the person's tenancy, for prefetching. */
 export const withAccess = <Result>(access: Access, work: (em: EntityManager) => Promise<Result>): Promise<Result> =>

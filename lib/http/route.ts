@@ -131,6 +131,7 @@ function toResponse(answer: Response | object | undefined | void): Response {
 
 function finished(response: Response, requestId: string, setCookie: string | null): Response {
   response.headers.set('x-request-id', requestId);
+  response.headers.set('x-content-type-options', 'nosniff');
   // A handler that set the cookie itself (sign-in, sign-out) has the last word.
   if (setCookie !== null && !response.headers.has('set-cookie')) response.headers.append('set-cookie', setCookie);
   return response;
