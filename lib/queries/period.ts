@@ -15,7 +15,7 @@ const LONGEST_PERIOD_MS = 3660 * DAY_MS;
 
 interface PlantClock {
   timeZone: string;
-  dataThrough: Date | null;
+  dataThrough?: Date | null | undefined;
 }
 
 /** Epoch ms of `from` or `to`: an instant with any offset, or the beginning of a local day of the plant. */
