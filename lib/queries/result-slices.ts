@@ -7,16 +7,21 @@ import { blockDays, type PeriodMs } from './period';
 /** UTC days of estimates held in memory at once. */
 const SLICE_DAYS = 31;
 
-/** The days of estimates of a period, in order, a month at a time: memory does not grow with the period. */
+/**
+ * The days of estimates of a period, in order, a month at a time: memory does not grow with the period. `firstDays` makes the
+ * first slice shorter, and each next one twice as long: for a reader that expects to stop early.
+ */
 export async function* resultSlices(
   em: EntityManager,
   owner: { organizationId: string; plantId: string },
   period: PeriodMs,
   channels: readonly ResultChannel[],
+  firstDays = SLICE_DAYS,
 ): AsyncGenerator<ResultDay> {
   const { fromDay, toDay } = blockDays(period);
-  for (let first = fromDay; first <= toDay; first = addDays(first, SLICE_DAYS)) {
-    const last = addDays(first, SLICE_DAYS - 1);
+  let days = Math.min(SLICE_DAYS, Math.max(1, firstDays));
+  for (let first = fromDay; first <= toDay; first = addDays(first, days), days = Math.min(SLICE_DAYS, 2 * days)) {
+    const last = addDays(first, days - 1);
     yield* await readResults(em, owner, first, last < toDay ? last : toDay, channels);
   }
 }
