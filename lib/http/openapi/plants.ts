@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { AlertRule, Alerts, RunAlert } from '../../schemas/alert';
 import { listOf, PlantParams } from '../../schemas/common';
 import { EpisodeParams, PatchEpisode } from '../../schemas/episode';
+import { OverviewPlant, OverviewQuery } from '../../schemas/overview';
 import { PlantsQuery, UnitsQuery } from '../../schemas/plant-requests';
 import { CreatePlant, Plant, UpdatePlant } from '../../schemas/plant';
 import { Episode } from '../../schemas/results';
@@ -20,6 +21,16 @@ export const PLANT_OPERATIONS: readonly Operation[] = [
     who: 'every role; scopes read and manage',
     query: PlantsQuery,
     answers: { 200: { description: 'A page of plants.', schema: listOf(PlantDocument) } },
+  },
+  {
+    ...common,
+    method: 'get',
+    path: '/overview',
+    summary:
+      'Your plants in the order in which to look at them (reverse hours and warm supply, then cost, then doubt, then silence), with the seven local days that end with yesterday.',
+    who: 'every role; scopes read and manage',
+    query: OverviewQuery,
+    answers: { 200: { description: 'A page of plants.', schema: listOf(named('OverviewPlant', OverviewPlant)) } },
   },
   {
     ...common,
