@@ -168,3 +168,12 @@ export function formatStretch(fromMs: number, toMs: number, timeZone: string): s
   const end = sameDay ? formatClock(toMs, timeZone) : formatDayTime(toMs, timeZone);
   return `${formatDay(fromMs, timeZone)} ${formatClock(fromMs, timeZone)} ${EN_DASH} ${end}`;
 }
+
+/** The start of the local clock hour an instant lies in; correct in zones off the full hour. */
+export function startOfLocalHour(epochMs: number, timeZone: string): number {
+  const intoHourMs = localParts(epochMs, timeZone).minute * 60_000 + (((epochMs % 60_000) + 60_000) % 60_000);
+  return epochMs - intoHourMs;
+}
+
+/** An instant as the API writes it: ISO 8601 in UTC, without fractions of a second. */
+export const isoInstant = (epochMs: number): string => new Date(epochMs).toISOString().replace('.000Z', 'Z');

@@ -1,0 +1,42 @@
+export interface WhiskerProps {
+  lo: number;
+  hi: number;
+  /** The likely value; without it the interval alone is drawn. */
+  mid?: number;
+  /** The axis all whiskers of a column share. */
+  domain: readonly [number, number];
+  /** Zero, or a limit: drawn in ink. The whisker is filled and heavy where this lies outside its interval. */
+  limit?: number;
+  /** Thin and grey: what is so now, beside a narrower answer. */
+  quiet?: boolean;
+  label?: string;
+  width?: number;
+  height?: number;
+}
+
+/** An interval in a table: dot, whisker, end ticks. */
+export function Whisker(props: WhiskerProps) {
+  const { lo, hi, mid, domain, limit = 0, quiet = false, label, width = 140, height = 22 } = props;
+  const x = (value: number) => {
+    const share = (value - domain[0]) / (domain[1] - domain[0]);
+    return 4 + Math.min(1, Math.max(0, share)) * (width - 8);
+  };
+  const outside = limit < lo || limit > hi;
+  const stroke = quiet ? 'var(--ink3)' : 'var(--ink)';
+  const strokeWidth = quiet ? 1 : outside ? 2 : 1.2;
+  const middle = height / 2;
+  const named = label === undefined ? { 'aria-hidden': true } : { role: 'img', 'aria-label': label };
+  return (
+    <svg width={width} height={height} viewBox={`0 0 ${width} ${height}`} className="block" {...named}>
+      <line x1={x(limit)} x2={x(limit)} y1="0" y2={height} stroke="var(--ink)" strokeWidth="1" />
+      <g stroke={stroke} strokeWidth={strokeWidth}>
+        <line x1={x(lo)} x2={x(hi)} y1={middle} y2={middle} />
+        <line x1={x(lo)} x2={x(lo)} y1={middle - 4} y2={middle + 4} />
+        <line x1={x(hi)} x2={x(hi)} y1={middle - 4} y2={middle + 4} />
+        {mid === undefined ? null : (
+          <circle cx={x(mid)} cy={middle} r="3.6" fill={outside ? 'var(--ink)' : 'var(--paper)'} strokeWidth="1.2" />
+        )}
+      </g>
+    </svg>
+  );
+}

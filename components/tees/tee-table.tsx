@@ -1,0 +1,53 @@
+'use client';
+import { useFormat } from '@/components/shell/units-context';
+import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
+import { MISSING } from '@/lib/client/format';
+import type { HourDetail } from '@/lib/schemas/results';
+import { stationFigures, stationOf, STATIONS } from './tee-words';
+
+/** The five stations as a table: in the page at every width, in sight where the sheet has no room for its figures. */
+export function TeeTable({ detail }: { detail: HourDetail }) {
+  const print = useFormat();
+  const pair = (figure: string, interval: string, quantity: 'temperature' | 'flow', strong: boolean) =>
+    figure === MISSING ? (
+      <span className="block">{MISSING}</span>
+    ) : (
+      <span className="block whitespace-nowrap">
+        <span className={strong ? 'font-semibold' : 'italic'}>{figure}</span> {interval} {print.unit(quantity)}
+      </span>
+    );
+  return (
+    <Table caption="Stations of the tee sheet: measured beside reconciled">
+      <thead>
+        <tr>
+          <HeadCell>
+            <span className="sr-only">number</span>
+          </HeadCell>
+          <HeadCell>station</HeadCell>
+          <HeadCell numeric>measured</HeadCell>
+          <HeadCell numeric>reconciled</HeadCell>
+        </tr>
+      </thead>
+      <tbody>
+        {STATIONS.map(({ station, number, label }) => {
+          const signed = station === 'common-pipe';
+          const figures = stationFigures(stationOf(detail, station), signed, print);
+          return (
+            <tr key={station}>
+              <Cell>{number}</Cell>
+              <RowHead>{signed ? `${label}, ${detail.direction}` : label}</RowHead>
+              <Cell numeric className="text-ink-2">
+                {pair(figures.measuredTemp, '', 'temperature', false)}
+                {pair(figures.measuredFlow, '', 'flow', false)}
+              </Cell>
+              <Cell numeric>
+                {pair(figures.reconciledTemp, figures.tempInterval, 'temperature', true)}
+                {pair(figures.reconciledFlow, figures.flowInterval, 'flow', true)}
+              </Cell>
+            </tr>
+          );
+        })}
+      </tbody>
+    </Table>
+  );
+}
