@@ -8,7 +8,7 @@ import { plantStates } from './state';
 import { markSteady } from './steadiness';
 import { DIRECTIONS, REASONS, RESULT_CHANNELS, STATES } from './types';
 import type { Estimates, Measurements, PlantModel } from './types';
-import { emptyWayEvidence, weighWay } from './way-evidence';
+import { emptyStreams, emptyWayEvidence, readStreams, weighWay } from './way-evidence';
 import { DECIDED_PROBABILITY, emptyVerdict, ninetyPercent, weighDirections } from './weigh-directions';
 import type { Verdict } from './weigh-directions';
 
@@ -140,6 +140,7 @@ export function estimateIntervals(measurements: Measurements, plant: PlantModel)
   // Sensors' sigmas are small: one specific heat turns them into enthalpy to within 0.5 %.
   const btuPerLbF = specificHeatFromCurves(plant.productionSupplyF + plant.loadDeltaTF / 2, curves);
   const inputs = emptySlotInputs();
+  const streams = emptyStreams();
   const forward = emptyWayEvidence();
   const reverse = emptyWayEvidence();
   const verdict = emptyVerdict();
@@ -149,8 +150,9 @@ export function estimateIntervals(measurements: Measurements, plant: PlantModel)
       writeOff(out, slot, inputs);
       continue;
     }
-    weighWay('forward', inputs, curves, btuPerLbF, forward);
-    weighWay('reverse', inputs, curves, btuPerLbF, reverse);
+    readStreams(inputs, curves, streams);
+    weighWay('forward', inputs, streams, btuPerLbF, forward);
+    weighWay('reverse', inputs, streams, btuPerLbF, reverse);
     weighDirections(plant.arrangement, forward, reverse, inputs, verdict);
     writeSlot(out, slot, inputs, verdict, curves);
   }

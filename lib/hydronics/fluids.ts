@@ -88,7 +88,7 @@ const PROPYLENE_GLYCOL: GlycolFit = {
 /** Polynomial with ascending coefficients at x, by Horner's rule. */
 export function polynomial(coefficients: readonly number[], x: number): number {
   let value = 0;
-  for (let power = coefficients.length - 1; power >= 0; power -= 1) value = value * x + (coefficients[power] ?? 0);
+  for (let power = coefficients.length - 1; power >= 0; power -= 1) value = value * x + (coefficients[power] as number);
   return value;
 }
 
@@ -159,7 +159,7 @@ export function tempFFromCurves(enthalpyBtuPerLb: number, curves: FluidCurves): 
   // cp varies by under 2 % in range, so the start is within a few degrees and two steps reach 1e-9 F.
   const start = curves.baseF;
   let tempF = start + (enthalpyBtuPerLb - enthalpyFromCurves(start, curves)) / specificHeatFromCurves(start, curves);
-  for (let step = 0; step < 3; step += 1) {
+  for (let step = 0; step < 2; step += 1) {
     tempF += (enthalpyBtuPerLb - enthalpyFromCurves(tempF, curves)) / specificHeatFromCurves(tempF, curves);
   }
   return tempF;

@@ -30,7 +30,13 @@ function savedByColderSupply(side: LoadSide, sums: HourSums, loadShare: number, 
 }
 
 /** What curing each cause alone would save, gpm; the others held as they are. They do not add up. */
-function savings(plant: PlantModel, side: LoadSide, sums: HourSums, needs: HourNeeds): [Cause, number][] {
+function savings(
+  plant: PlantModel,
+  side: LoadSide,
+  sums: HourSums,
+  needs: HourNeeds,
+  deltaTF: number,
+): [Cause, number][] {
   const loadShare = sums.loadTons / plant.loadTons;
   const blendedF = sums.blendedSupplyF;
   // A bridge is meant to blend: only what is warmer than its design blend is warm.
@@ -40,9 +46,10 @@ function savings(plant: PlantModel, side: LoadSide, sums: HourSums, needs: HourN
   const setpointF = Number.isNaN(sums.setpointF) ? plant.productionSupplyF : sums.setpointF;
   const aboveF = sums.primarySupplyF - setpointF;
   const warm = aboveF > WARM_SUPPLY_F ? savedByColderSupply(side, sums, loadShare, blendedF, blendedF - aboveF) : 0;
-  const deltaTF = sums.meanLoadDeltaTF;
+  // A load side within the plant's own limit has no fault to cure, though an ideal coil would do better still.
+  const short = deltaTF < plant.lowDeltaTShare * plant.loadDeltaTF;
   const healthyF = expectedDeltaTF(side, loadShare, Number.isNaN(blendedF) ? side.designSupplyF : blendedF);
-  const coil = orZero(sums.secondaryFlowGpm * (1 - deltaTF / healthyF));
+  const coil = short ? orZero(sums.secondaryFlowGpm * (1 - deltaTF / healthyF)) : 0;
   return [
     ['reverse-flow', orZero(reverse)],
     ['surplus-production', orZero(needs.surplusGpm)],
@@ -64,17 +71,23 @@ function certainty(cause: Cause, sums: HourSums): number {
  *
  * reverse-flow: coil flow that the blend's warmth costs (the coil at the blended against the production temperature).
  * warm-supply: the same for production above its set-point. surplus-production: production flow that crosses over and a
- * smaller set of units would not make. coil-shortfall: flow beyond a healthy coil's at the temperature it was fed; below
- * 30 % load this is light-load, since nothing sure can be said of coils there.
+ * smaller set of units would not make. coil-shortfall: flow beyond a healthy coil's at the temperature it was fed, where
+ * the load-side delta-T itself is low; below 30 % load this is light-load, since nothing sure can be said of coils there.
  * Confidence = quality * best / (best + second best) * certainty of the direction that the cause rests on.
  *
- * Gaps    a saving that cannot be known counts as none.
+ * Units   `deltaTF` is the hour's load over flow. Gaps: a saving that cannot be known counts as none.
  * Source  counterfactuals by effectiveness-NTU (lib/hydronics/coil.ts); limits: common practice, no source.
  */
-export function hourCause(plant: PlantModel, side: LoadSide, sums: HourSums, needs: HourNeeds): HourCause {
+export function hourCause(
+  plant: PlantModel,
+  side: LoadSide,
+  sums: HourSums,
+  needs: HourNeeds,
+  deltaTF: number,
+): HourCause {
   const doubtShare = sums.contradictingMinutes / sums.runningMinutes;
   if (doubtShare > DOUBT_SHARE) return { cause: 'sensor-doubt', confidence: doubtShare * sums.quality };
-  const ranked = savings(plant, side, sums, needs).sort((a, b) => b[1] - a[1]);
+  const ranked = savings(plant, side, sums, needs, deltaTF).sort((a, b) => b[1] - a[1]);
   const [best, second] = ranked;
   if (!best || best[1] < LEAST_SAVING_SHARE * plant.distributionPumps.flowGpm) return NO_CAUSE;
   const dominance = best[1] / (best[1] + (second?.[1] ?? 0));

@@ -59,7 +59,7 @@ function hourResult(
     (deltaTF < plant.lowDeltaTShare * plant.loadDeltaTF ||
       sums.productionDeltaTF < plant.lowDeltaTShare * productionDesignF);
   const { cause, confidence } = low
-    ? hourCause(plant, side, sums, needs)
+    ? hourCause(plant, side, sums, needs, deltaTF)
     : { cause: 'none' as const, confidence: Number.NaN };
   // An hour within the plant's own limits is not charged with what an ideal coil would have saved.
   const energyKwh = low ? excessEnergyKwh(plant, sums, needs) : 0;

@@ -6,13 +6,15 @@ const LOG_SQRT_TWO_PI = Math.log(SQRT_TWO_PI);
 export const NINETY_PERCENT_Z = 1.6448536269514722;
 /** Beyond this the continued fraction converges faster than the series. */
 const SERIES_LIMIT = 3;
+/** Beyond this the upper tail is below 1e-15 and nothing is left of it in double precision. */
+const CERTAIN = 8;
 
 /** Density of the standard normal at z. */
 export const normalDensity = (z: number): number => Math.exp(-0.5 * z * z) / SQRT_TWO_PI;
 
 /** (Upper-tail probability) / density at z >= 3. Source: Abramowitz & Stegun, Handbook of Mathematical Functions, 26.2.14. */
 function tailRatio(z: number): number {
-  const depth = z > 8 ? 12 : 40;
+  const depth = z > 8 ? 12 : z > 5 ? 24 : 40;
   let fraction = z;
   for (let term = depth; term >= 1; term -= 1) fraction = z + term / fraction;
   return 1 / fraction;
@@ -37,6 +39,7 @@ function centreRatio(z: number): number {
  */
 export function normalCdf(z: number): number {
   if (z <= -SERIES_LIMIT) return normalDensity(z) * tailRatio(-z);
+  if (z > CERTAIN) return 1;
   if (z >= SERIES_LIMIT) return 1 - normalDensity(z) * tailRatio(z);
   return 0.5 + normalDensity(z) * centreRatio(z);
 }
@@ -54,5 +57,6 @@ export function logNormalCdf(z: number): number {
  */
 export function truncationShift(z: number): number {
   if (z <= -SERIES_LIMIT) return 1 / tailRatio(-z);
+  if (z > CERTAIN) return 0;
   return normalDensity(z) / normalCdf(z);
 }

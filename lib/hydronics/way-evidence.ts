@@ -6,6 +6,32 @@ import { logNormalCdf, truncationShift } from './normal';
 import { quadrature } from './slot-inputs';
 import type { SlotInputs } from './slot-inputs';
 
+/** Enthalpies of the measured streams, Btu/lb; NaN where missing. */
+export interface StreamEnthalpies {
+  primarySupply: number;
+  secondarySupply: number;
+  primaryReturn: number;
+  secondaryReturn: number;
+  bypass: number;
+}
+
+export const emptyStreams = (): StreamEnthalpies => ({
+  primarySupply: Number.NaN,
+  secondarySupply: Number.NaN,
+  primaryReturn: Number.NaN,
+  secondaryReturn: Number.NaN,
+  bypass: Number.NaN,
+});
+
+/** Fills `out` with the enthalpies of a slot's temperatures: once a slot, though both ways use them. */
+export function readStreams(inputs: SlotInputs, curves: FluidCurves, out: StreamEnthalpies): void {
+  out.primarySupply = enthalpyFromCurves(inputs.primarySupplyF, curves);
+  out.secondarySupply = enthalpyFromCurves(inputs.secondarySupplyF, curves);
+  out.primaryReturn = enthalpyFromCurves(inputs.primaryReturnF, curves);
+  out.secondaryReturn = enthalpyFromCurves(inputs.secondaryReturnF, curves);
+  out.bypass = enthalpyFromCurves(inputs.bypassF, curves);
+}
+
 /** Which way the common pipe is supposed to run while the evidence is weighed. */
 export type Way = 'forward' | 'reverse';
 
@@ -122,16 +148,19 @@ function viewFlows(inputs: SlotInputs, forward: boolean, flows: FlowEvidence): v
  * (flow-fit.ts); the likelihood is exp(-chi2/2) times the probability that the fitted bypass has the way's sign, or one
  * half where its size is unknown. With flow meters alone the two ways then give exactly P(reverse) = cdf(-b/u(b)).
  *
- * Units   inputs in deg F and gpm; streams as enthalpy (Btu/lb) of `curves`, so the mixing is exact.
+ * Units   inputs in deg F and gpm; streams as enthalpy (Btu/lb), so the mixing is exact.
  * Gaps    missing inputs drop out; `informed` is false when nothing bears on the way.
  * Source  inverse-variance weighting and first-order propagation, JCGM 100:2008, 5.1.2; fractions in tees.ts.
  */
-export function weighWay(way: Way, inputs: SlotInputs, curves: FluidCurves, btuPerLbF: number, out: WayEvidence): void {
+export function weighWay(
+  way: Way,
+  inputs: SlotInputs,
+  streams: StreamEnthalpies,
+  btuPerLbF: number,
+  out: WayEvidence,
+): void {
   const forward = way === 'forward';
-  const primarySupply = enthalpyFromCurves(inputs.primarySupplyF, curves);
-  const secondarySupply = enthalpyFromCurves(inputs.secondarySupplyF, curves);
-  const primaryReturn = enthalpyFromCurves(inputs.primaryReturnF, curves);
-  const secondaryReturn = enthalpyFromCurves(inputs.secondaryReturnF, curves);
+  const { primarySupply, secondarySupply, primaryReturn, secondaryReturn } = streams;
   const mix = forward ? primaryReturn : secondarySupply;
   const mixSigma = btuPerLbF * (forward ? inputs.primaryReturnSigma : inputs.secondarySupplySigma);
 
@@ -196,7 +225,7 @@ export function weighWay(way: Way, inputs: SlotInputs, curves: FluidCurves, btuP
   let commonPipeChi = 0;
   if (spanKnown && known(inputs.bypassF)) {
     const sigma = quadrature(btuPerLbF * inputs.bypassFSigma, Math.sqrt(forward ? coldVariance : hotVariance));
-    const gap = (enthalpyFromCurves(inputs.bypassF, curves) - (forward ? out.cold : out.hot)) / sigma;
+    const gap = (streams.bypass - (forward ? out.cold : out.hot)) / sigma;
     commonPipeChi = Math.min(BYPASS_TEMP_CHI_LIMIT, gap * gap);
   }
   out.informed =
