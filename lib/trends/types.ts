@@ -74,8 +74,23 @@ export interface TrendPreview {
   fingerprint: string;
   /** The first data rows as read, for "as read" on the mapping page; at most 5. */
   rows: string[][];
+  /** How many data rows the preview looked at. */
   firstRows: number;
   problems: TrendProblem[];
+}
+
+/** What a preview has to know of the plant besides the file. */
+export interface PreviewOptions {
+  /** Whether the head is the whole file; otherwise its last, cut row is left aside. */
+  complete: boolean;
+  timeZone: string;
+  /** Number of production units. */
+  unitCount: number;
+  /** Design flow of one unit; steps of that size tell primary flow and its unit. */
+  unitFlowGpm?: number;
+  /** Design production supply temperature. */
+  productionSupplyF?: number;
+  plantStepMinutes: number;
 }
 
 /** All that reading needs; the confirmed shape of a preview. */
@@ -88,7 +103,11 @@ export interface ReadPlan {
   stepMinutes: number;
 }
 
-/** One mapped column's values for one UTC day, in the stored unit (lib/units), NaN where missing; length 1440 / step. */
+/**
+ * One mapped column's values for one UTC day (or a further part of it, when rows of that day came again after it had
+ * been handed out: later values that are not NaN replace earlier ones), in the stored unit (lib/units), NaN where missing;
+ * length 1440 / step. Days of which a column has no value at all are not handed out.
+ */
 export interface DayOfColumn {
   /** Index into ReadPlan.columns. */
   column: number;
@@ -98,18 +117,37 @@ export interface DayOfColumn {
 }
 
 export interface ReadReport {
+  /** Data rows whose time and number of cells could be read. */
   rowsRead: number;
+  /** Slots handed out that hold a number. */
   samplesStored: number;
+  /** First and last instant met, whatever the order in the file. */
   fromMs: number | null;
   toMs: number | null;
+  /** Sorted by row; at most MOST_PROBLEM_KINDS kinds. */
   problems: TrendProblem[];
 }
+
+/** Turns the bytes of one file into days of columns; made by createTrendReader. */
+export interface TrendReader {
+  /** The next bytes, cut anywhere. */
+  push(bytes: Uint8Array): void;
+  /** Closes the least recently touched days beyond `keepOpen` and hands them out, oldest touched first. */
+  takeOldestDays(keepOpen: number): DayOfColumn[];
+  /** Ends the file and hands out all days that are still open. */
+  finish(): DayOfColumn[];
+  /** What was read so far; complete after finish. */
+  report(): ReadReport;
+}
+
+export type TrendErrorCode =
+  'empty' | 'not-text' | 'no-time-column' | 'no-header' | 'no-column' | 'no-rows' | 'truncated' | 'unsupported';
 
 /** A file that cannot be read at all. `message` is a sentence for the person who dropped it. */
 export class TrendError extends Error {
   override readonly name = 'TrendError';
   constructor(
-    readonly code: 'empty' | 'not-text' | 'no-time-column' | 'no-header' | 'no-rows' | 'truncated' | 'unsupported',
+    readonly code: TrendErrorCode,
     message: string,
     readonly row?: number,
   ) {

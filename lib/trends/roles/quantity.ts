@@ -1,0 +1,124 @@
+import { TREND_UNITS, type Quantity, type TrendUnitId } from '../../units';
+import type { PreviewOptions } from '../types';
+import { JUST_OPEN, says, type Draft } from './draft';
+
+/** Chilled water between freezing point and coil outlet, in each unit; the three ranges do not meet. */
+const CHILLED_RANGE: readonly (readonly [unit: TrendUnitId, low: number, high: number])[] = [
+  ['degF', 33, 85],
+  ['degC', 0.5, 29.5],
+  ['K', 273.6, 303],
+];
+/** A flow fits a unit when its largest value is within this factor of the plant's design flow, or of one unit's. */
+const FLOW_FACTOR = 2.5;
+/** Power beyond this many kW is more likely in W. */
+const MOST_PLANT_KW = 20_000;
+
+/** What kind of quantity a column carries: by its unit, else by its name, else by values that only one kind has. */
+export function quantityOf(draft: Draft): Quantity | null {
+  const { statistics, unit, heading } = draft;
+  const named = quantityOfName(draft);
+  if (unit) {
+    return TREND_UNITS[unit].quantity;
+  }
+  if (statistics.stateWords > statistics.count / 2) return 'status';
+  if (named === 'temperature' && heading.letter) return 'temperature';
+  if (named) return named;
+  if (statistics.binary) return 'status';
+  return null;
+}
+
+function quantityOfName(draft: Draft): Quantity | null {
+  const { statistics, name } = draft;
+  if (says(draft, 'status', 'command') && statistics.binary) return 'status';
+  if (says(draft, 'flow')) return 'flow';
+  if (says(draft, 'power')) return 'power';
+  if (says(draft, 'temperature', 'wetBulb')) return 'temperature';
+  if (says(draft, 'differential', 'pressure')) return 'pressure';
+  if (says(draft, 'speed', 'valve', 'position', 'percent', 'load') && !statistics.binary) return 'percent';
+  if (says(draft, 'status', 'command')) return 'status';
+  if (name.letterF && statistics.count > 0 && !says(draft, 'setpoint') && name.setpointOrPump === null)
+    return letterF(draft);
+  if (says(draft, 'chiller', 'pump') && statistics.binary) return 'status';
+  const directed = says(draft, 'supply', 'return', 'leaving', 'entering', 'outdoor', 'setpoint');
+  if (directed || (name.setpointOrPump !== null && !statistics.binary)) return 'temperature';
+  if (says(draft, 'chilledWater') && !statistics.binary) return 'temperature';
+  return says(draft, 'valve', 'isolation') ? 'percent' : null;
+}
+
+/** A bare `f` behind a name without any other quantity is a flow, unless it stands behind a direction. */
+const letterF = (draft: Draft): Quantity =>
+  says(draft, 'supply', 'return', 'leaving', 'entering', 'outdoor') ? 'temperature' : 'flow';
+
+/** Fills in units that nothing names, from the values; `hint` is the unit other temperatures of the file are in. */
+export function unitByValues(draft: Draft, hint: TrendUnitId | null, options: PreviewOptions): void {
+  if (draft.unit !== null || draft.quantity === null) return;
+  const set = (unit: TrendUnitId, from: Draft['unitFrom'], clause: string) => {
+    draft.unit = unit;
+    draft.unitFrom = from;
+    draft.unitClause = clause;
+  };
+  const { statistics, quantity } = draft;
+  if (quantity === 'status') return set('on/off', 'named', '');
+  if (quantity === 'temperature') return temperatureUnit(draft, hint, set);
+  if (quantity === 'flow') return flowUnit(draft, hint, options, set);
+  if (quantity === 'percent') {
+    const fraction = statistics.high <= 1.05 && !statistics.binary;
+    return set(fraction ? 'fraction' : '%', 'values', fraction ? 'runs from 0 to 1' : '');
+  }
+  if (quantity === 'power') {
+    const watts = statistics.high > MOST_PLANT_KW;
+    const saysKw = /kw$/i.test(draft.name.says.get('power') ?? '');
+    if (saysKw) return set('kW', 'named', '');
+    return set(watts ? 'W' : 'kW', 'open', 'no unit is named: kW or W');
+  }
+  const range = `between ${number(statistics.low)} and ${number(statistics.high)}`;
+  return set('psi', 'open', `${range}: could be psi, ft or kPa; choose the unit`);
+}
+
+type SetUnit = (unit: TrendUnitId, from: Draft['unitFrom'], clause: string) => void;
+
+function temperatureUnit(draft: Draft, hint: TrendUnitId | null, set: SetUnit): void {
+  const { heading, statistics } = draft;
+  if (heading.letter) return set(heading.letter, 'named', '');
+  if (hint) return set(hint, 'values', `unit as of the other temperatures`);
+  const water = !says(draft, 'outdoor', 'wetBulb', 'air');
+  const fit = CHILLED_RANGE.find(([, low, high]) => statistics.median >= low && statistics.median <= high);
+  if (water && fit) return set(fit[0], 'values', `${TREND_UNITS[fit[0]].label} by its values`);
+  if (!water && statistics.high > 55) return set('degF', 'values', '°F by its values');
+  return set('degF', 'open', 'no unit is named');
+}
+
+/** The unit in which the largest flow is nearest to the design flow; gpm where nothing speaks against it. */
+function flowUnit(draft: Draft, hint: TrendUnitId | null, options: PreviewOptions, set: SetUnit): void {
+  const { high, low } = draft.statistics;
+  const most = Math.max(Math.abs(high), Math.abs(low));
+  const one = options.unitFlowGpm;
+  const metric = hint === 'degC' || hint === 'K';
+  if (!one || most === 0) return set(metric ? 'L/s' : 'gpm', 'open', 'no unit is named');
+  const fits = (['gpm', 'L/s', 'm3/h'] as const).filter((unit) => {
+    const mostGpm = TREND_UNITS[unit].toStored(most);
+    return mostGpm >= one / FLOW_FACTOR && mostGpm <= one * options.unitCount * FLOW_FACTOR;
+  });
+  const clause = (unit: TrendUnitId) => `${TREND_UNITS[unit].label} by the design flow`;
+  if (fits.length === 1 && metric === (fits[0] !== 'gpm')) return set(fits[0]!, 'values', clause(fits[0]!));
+  if (fits.includes('gpm') && !metric) return set('gpm', 'values', clause('gpm'));
+  return set(fits.find((unit) => metric === (unit !== 'gpm')) ?? 'gpm', 'open', 'no unit is named');
+}
+
+/** A named unit whose values cannot be right is left to a person. */
+export function checkUnit(draft: Draft): string | null {
+  if (draft.quantity !== 'temperature' || draft.unit === null || draft.statistics.count === 0) return null;
+  const medianF = TREND_UNITS[draft.unit].toStored(draft.statistics.median);
+  return medianF < -60 || medianF > 250
+    ? `half of its values are beyond ${number(draft.statistics.median)} ${TREND_UNITS[draft.unit].label}`
+    : null;
+}
+
+/** Confidence for a role whose unit is open. */
+export const OPEN_UNIT_CONFIDENCE = JUST_OPEN;
+
+/** A value in a sentence: 44.0, 860, 2,505. */
+export function number(value: number): string {
+  const digits = Math.abs(value) < 100 ? 1 : 0;
+  return value.toLocaleString('en-US', { minimumFractionDigits: digits, maximumFractionDigits: digits });
+}

@@ -1,0 +1,54 @@
+/** Different distances kept count of; rarer ones beyond that are not told apart. */
+const MOST_DISTANCES = 512;
+
+/** Loggers are late by a second or two: distances are rounded to this many ms, more coarsely from two minutes on. */
+const FINE_MS = 1000;
+const COARSE_MS = 10_000;
+const COARSE_FROM_MS = 120_000;
+
+/** A distance between rows without the logger's small delays. */
+export function roundedDistance(distanceMs: number): number {
+  if (distanceMs < FINE_MS) return distanceMs;
+  const grain = distanceMs < COARSE_FROM_MS ? FINE_MS : COARSE_MS;
+  return Math.round(distanceMs / grain) * grain;
+}
+
+/** The usual distance between rows and the order of the file, kept up as rows come. */
+export class StepCounter {
+  /** Most common distance so far in ms; 0 = none yet. */
+  usualMs = 0;
+  private usualCount = 0;
+  private total = 0;
+  private backward = 0;
+  private readonly counts = new Map<number, number>();
+
+  /** `deltaMs` from one row to the next; rows at the same time say nothing. */
+  add(deltaMs: number): void {
+    if (deltaMs === 0) return;
+    this.total++;
+    if (deltaMs < 0) this.backward++;
+    const distance = roundedDistance(Math.abs(deltaMs));
+    if (distance === this.usualMs) {
+      this.usualCount++;
+      return;
+    }
+    const known = this.counts.get(distance);
+    if (known === undefined && this.counts.size >= MOST_DISTANCES) return;
+    const count = (known ?? 0) + 1;
+    this.counts.set(distance, count);
+    if (count > this.usualCount) {
+      this.counts.set(this.usualMs, this.usualCount);
+      this.usualMs = distance;
+      this.usualCount = count;
+    }
+  }
+
+  get newestFirst(): boolean {
+    return this.backward * 2 > this.total;
+  }
+
+  /** Whether rows come at a regular distance at all: at least half of them, and at least two. */
+  get isRegular(): boolean {
+    return this.usualCount >= 2 && this.usualCount * 2 >= this.total;
+  }
+}
