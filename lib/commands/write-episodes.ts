@@ -1,7 +1,7 @@
 import type { EntityManager } from '@mikro-orm/postgresql';
 import { isoInstant, query } from '../db/sql';
 import { findEpisodes } from '../hydronics/episodes';
-import { HOUR_COLUMN_NAMES, hourResultOf, type HourRecord } from '../queries/hour-record';
+import { HOUR_COLUMN_NAMES, hourResultOf, type HourRecord } from '../queries/stored-hours';
 
 interface StoredEpisode {
   id: string;

@@ -2,7 +2,7 @@ import type { EntityManager } from '@mikro-orm/postgresql';
 import { isoInstant, query } from '../db/sql';
 import { summariseDay } from '../hydronics/days';
 import type { HourResult } from '../hydronics/types';
-import { HOUR_COLUMNS, HOUR_COLUMN_NAMES, hourResultOf, type HourRecord } from '../queries/hour-record';
+import { HOUR_COLUMNS, HOUR_COLUMN_NAMES, hourResultOf, type HourRecord } from '../queries/stored-hours';
 
 interface Owner {
   organizationId: string;
