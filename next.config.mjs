@@ -18,6 +18,18 @@ const config = {
     'exceljs',
     'busboy',
   ],
+  // A page answers no JSON: the mailbox's machine-readable form is a route of its own under the page's address.
+  rewrites: async () => ({
+    beforeFiles: [
+      {
+        source: '/dev/mailbox',
+        has: [{ type: 'query', key: 'format', value: 'json' }],
+        destination: '/dev/mailbox/messages',
+      },
+    ],
+    afterFiles: [],
+    fallback: [],
+  }),
 };
 
 export default config;
