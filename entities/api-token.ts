@@ -10,7 +10,7 @@ export const ApiTokenEntity = defineEntity({
     plantId: p.uuid().nullable(),
     name: p.text(),
     scope: p.text(),
-    tokenHash: p.blob().lazy().hidden(),
+    tokenHash: p.blob().lazy(true, false).hidden(),
     createdBy: p.uuid().nullable(),
     createdAt: p.datetime().defaultRaw('now()'),
     expiresAt: p.datetime().nullable(),

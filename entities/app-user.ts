@@ -8,7 +8,7 @@ export const AppUserEntity = defineEntity({
     id: p.uuid().primary().defaultRaw('gen_random_uuid()'),
     email: p.text().unique(),
     name: p.text(),
-    passwordHash: p.text().lazy().hidden(),
+    passwordHash: p.text().lazy(true, false).hidden(),
     unitSystem: p.text().default('ip'),
     mailSuppressedAt: p.datetime().nullable(),
     createdAt: p.datetime().defaultRaw('now()'),

@@ -11,10 +11,10 @@ export const SampleBlockEntity = defineEntity({
     pointId: p.uuid().primary(),
     step: p.smallint(),
     firstSlot: p.smallint().default(0),
-    v: p.type('string').columnType('real[]').lazy(),
-    lo: p.type('string').columnType('real[]').lazy(),
-    mean: p.type('string').columnType('real[]').lazy(),
-    hi: p.type('string').columnType('real[]').lazy(),
+    v: p.type('string').columnType('real[]').lazy(true, false),
+    lo: p.type('string').columnType('real[]').lazy(true, false),
+    mean: p.type('string').columnType('real[]').lazy(true, false),
+    hi: p.type('string').columnType('real[]').lazy(true, false),
   },
 });
 export type SampleBlock = InferEntity<typeof SampleBlockEntity>;

@@ -12,7 +12,7 @@ export const SampleLayerEntity = defineEntity({
     uploadSeq: p.integer().primary(),
     step: p.smallint(),
     firstSlot: p.smallint().default(0),
-    v: p.type('string').columnType('real[]').lazy(),
+    v: p.type('string').columnType('real[]').lazy(true, false),
   },
 });
 export type SampleLayer = InferEntity<typeof SampleLayerEntity>;

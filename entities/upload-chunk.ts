@@ -10,7 +10,7 @@ export const UploadChunkEntity = defineEntity({
     fileIndex: p.smallint().primary(),
     seq: p.integer().primary(),
     rawBytes: p.integer(),
-    data: p.blob().lazy(),
+    data: p.blob().lazy(true, false),
   },
 });
 export type UploadChunk = InferEntity<typeof UploadChunkEntity>;

@@ -23,8 +23,8 @@ export const UploadEntity = defineEntity({
       p.json<
         { code: string; severity: 'error' | 'warning'; message: string; row?: number; column?: string; count: number }[]
       >(),
-    preview: p.json<Record<string, unknown>>().nullable().lazy(),
-    confirmed: p.json<Record<string, unknown>>().nullable().lazy(),
+    preview: p.json<Record<string, unknown>>().nullable().lazy(true, false),
+    confirmed: p.json<Record<string, unknown>>().nullable().lazy(true, false),
     applied: p.boolean().default(false),
     createdBy: p.uuid().nullable(),
     createdByToken: p.uuid().nullable(),
