@@ -121,6 +121,8 @@ const dayRecord = (row: DayRow): PlantDay => ({
   coverage: row.coverage,
 });
 
+const add = (a: number, b: number): number => a + b;
+
 function weekOf(days: readonly DayRow[], hours: HourSums | undefined, cause: Cause | null): OverviewWeek {
   const total = (of: (row: DayRow) => number) => days.reduce((sum, row) => sum + of(row), 0);
   /** null when no day knows it. */
@@ -129,11 +131,11 @@ function weekOf(days: readonly DayRow[], hours: HourSums | undefined, cause: Cau
       const value = of(row);
       return value === null ? sofar : sofar === null ? value : fold(sofar, value);
     }, null);
-  const add = (a: number, b: number) => a + b;
-  const reverseMinutes = total((row) => row.reverse_minutes);
-  const part = (hours?.reverse_by_part ?? []).findIndex((minutes) => minutes > reverseMinutes / 2);
+  const byPart = hours?.reverse_by_part ?? [];
+  const reverseOfParts = byPart.reduce(add, 0);
+  const part = byPart.findIndex((minutes) => minutes > reverseOfParts / 2);
   return {
-    reverseMinutes,
+    reverseMinutes: total((row) => row.reverse_minutes),
     unknownMinutes: total((row) => row.unknown_minutes),
     stillMinutes: hours?.still_minutes ?? 0,
     runningMinutes: total((row) => row.running_minutes),
