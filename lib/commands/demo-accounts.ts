@@ -1,0 +1,43 @@
+import type { EntityManager } from '@mikro-orm/postgresql';
+import { query, queryOne } from '../db/sql';
+import type { Role } from '../schemas/common';
+
+interface Person {
+  email: string;
+  name: string;
+  memberships: readonly { organization: string; role: Role }[];
+}
+
+/**
+ * Organizations and people of the demo, made where they are missing. Runs as the database's owner: the sign-up door gives one
+ * organization and the role of its owner, and the demo has more than that. Returns each organization's id by key.
+ */
+export async function ensureDemoAccounts(
+  em: EntityManager,
+  demo: { organizations: readonly { key: string; name: string }[]; users: readonly Person[] },
+  passwordHash: string,
+): Promise<Map<string, string>> {
+  const ids = new Map<string, string>();
+  for (const { key, name } of demo.organizations) {
+    const row =
+      (await queryOne<{ id: string }>(em, `select id from organization where name = $1`, [name])) ??
+      (await queryOne<{ id: string }>(em, `insert into organization (name) values ($1) returning id`, [name]));
+    if (row) ids.set(key, row.id);
+  }
+  for (const person of demo.users) {
+    const user = await queryOne<{ id: string }>(
+      em,
+      `insert into app_user (email, name, password_hash) values ($1, $2, $3)
+       on conflict (email) do update set name = excluded.name returning id`,
+      [person.email, person.name, passwordHash],
+    );
+    for (const { organization, role } of person.memberships) {
+      await query(
+        em,
+        `insert into membership (organization_id, user_id, role) values ($1, $2, $3) on conflict do nothing`,
+        [ids.get(organization), user?.id, role],
+      );
+    }
+  }
+  return ids;
+}
