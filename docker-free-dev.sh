@@ -250,7 +250,7 @@ test_cluster() {
   port=$(free_port)
   start_cluster "$home" "$port" '-F -c synchronous_commit=off -c full_page_writes=off' >&2
   cluster_urls "$home"
-  trap 'if flock -x -n 7; then stop_cluster "$home" || true; fi' EXIT
+  trap 'if flock -x -n 7; then stop_cluster "$DATA/test" || true; fi' EXIT
   trap 'exit 0' TERM HUP
   trap '' INT
   say "DATABASE_URL=$DATABASE_URL" "DATABASE_APP_URL=$DATABASE_APP_URL" "DATABASE_WORKER_URL=$DATABASE_WORKER_URL" "FRESH=$CLUSTER_STARTED"
