@@ -11,7 +11,8 @@ export async function bootWeb(): Promise<void> {
     await checkDatabase();
     log.info({ address: env.LINK_ORIGIN }, 'web.started');
   } catch (error) {
-    console.error(error instanceof Error ? error.message : String(error));
+    // A sentence for whoever starts the program, not a log line.
+    process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
     process.exit(1);
   }
 }

@@ -28,7 +28,7 @@ export const otherBody = (): ProblemError =>
   problem(422, 'Other content', 'This Idempotency-Key was used with another body. Use a new key for a new request.');
 
 const respond = (answer: StoredAnswer, replayed: boolean): Response =>
-  json((answer.body ?? {}) as object, answer.status, replayed ? { 'idempotency-replayed': 'true' } : {});
+  json(answer.body ?? {}, answer.status, replayed ? { 'idempotency-replayed': 'true' } : {});
 
 /**
  * Does `work` once for an Idempotency-Key, inside the transaction of `em`: a replay gets the stored answer, a concurrent twin 409,

@@ -81,6 +81,6 @@ export function toSi(value: unknown): unknown {
 }
 
 /** The answer in the units asked for. */
-export function inUnits<Answer extends object>(answer: Answer, units: 'ip' | 'si'): object {
+export function inUnits(answer: object, units: 'ip' | 'si'): object {
   return units === 'si' ? (toSi(answer) as object) : answer;
 }

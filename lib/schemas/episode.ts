@@ -8,5 +8,5 @@ export const PatchEpisode = z
     note: z.string().trim().max(2000, 'Keep the note within 2,000 characters.').nullable().optional(),
   })
   .refine((patch) => patch.acknowledged !== undefined || patch.note !== undefined, {
-    message: 'Give acknowledged, note, or both.',
+    error: 'Give acknowledged, note, or both.',
   });

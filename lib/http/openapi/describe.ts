@@ -34,4 +34,4 @@ export interface Operation {
 }
 
 /** Gives a schema its name in the document. The schema itself is left as it is. */
-export const named = <Schema extends z.ZodType>(id: string, schema: Schema): Schema => schema.meta({ id }) as Schema;
+export const named = <Schema extends z.ZodType>(id: string, schema: Schema): Schema => schema.meta({ id });

@@ -47,7 +47,7 @@ function configOf(operation: Operation): RouteConfig {
     ...(operation.idempotent ? { 'Idempotency-Key': z.string().max(255).optional() } : {}),
     ...(operation.conditional ? { 'If-None-Match': z.string().optional() } : {}),
   };
-  const responses: RouteConfig['responses'] = {};
+  const responses: Partial<Record<string, RouteConfig['responses'][string]>> = {};
   for (const [status, answer] of Object.entries(operation.answers)) responses[status] = answerContent(answer);
   if (operation.conditional) responses[304] = { description: 'Nothing has changed since the tag that was sent.' };
   for (const status of refusalCodes(operation)) {
@@ -69,7 +69,7 @@ function configOf(operation: Operation): RouteConfig {
       ...(Object.keys(headers).length > 0 ? { headers: z.object(headers) } : {}),
       ...(Object.keys(content).length > 0 ? { body: { content } } : {}),
     },
-    responses,
+    responses: responses as RouteConfig['responses'],
   };
 }
 
