@@ -13,8 +13,8 @@ const FEWEST_DISTANCES = 3;
  *
  * A slot [t, t + step) holds the mean of the readings in it; a status too, so that 0.4 is "on for 40 % of the slot".
  * When the column is logged at about the plant's step or more rarely, a slot without a reading holds the last reading
- * for as long as the column's own usual distance, never longer and never interpolated; a reading that is missing ("Bad")
- * is missing for that long, too. The last reading of the day before may reach in.
+ * for as long as the column's own usual distance (if that covers the slot's middle), never longer and never interpolated;
+ * a reading that is missing ("Bad") is missing for that long, too. The last reading of the day before may reach in.
  *
  * Shapes  `out` has one element a slot, all of which are written.
  * Units   those of the file; the caller converts.
@@ -73,7 +73,7 @@ export class DayAligner {
         last = value;
         lastMs = timesMs[i]!;
       }
-      if (this.own[slot] === 0 && startMs < lastMs + holdMs) out[slot] = last;
+      if (this.own[slot] === 0 && startMs + this.stepMs / 2 < lastMs + holdMs) out[slot] = last;
     }
   }
 }

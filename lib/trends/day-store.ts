@@ -96,7 +96,7 @@ export class DayStore {
   takeAll(): DayOfColumn[] {
     const taken = this.takeOldest(0);
     for (const [day, tail] of [...this.tails]) {
-      const reachMs = Math.max(...tail.timesMs) + this.step.usualMs;
+      const reachMs = Math.max(...tail.timesMs) + this.step.holdMs;
       if (!this.spans.has(day + 1) && reachMs > DAY_MS) this.close(day + 1, new DayBuffer(this.columns.length), taken);
     }
     const days = [...this.spans].sort(([a], [b]) => a - b);
@@ -114,7 +114,7 @@ export class DayStore {
     const dayBefore = this.open.get(day - 1);
     const before = dayBefore ? tailOf(dayBefore) : this.tails.get(day - 1);
     this.columns.forEach(({ plan, unit }, column) => {
-      this.aligner.align(buffer, column, this.step.usualMs, before, this.scratch);
+      this.aligner.align(buffer, column, this.step.holdMs, before, this.scratch);
       const { toStored } = TREND_UNITS[unit];
       const values = new Float32Array(this.scratch.length);
       let stored = 0;

@@ -54,21 +54,24 @@ interface RowEnd {
  */
 export function lastRowEnd(text: string, delimiter: string, newline: Newline, final: boolean): RowEnd {
   let from = 0;
+  let end = 0;
   for (;;) {
     const quote = text.indexOf('"', from);
-    if (quote === -1) return { end: text.lastIndexOf(newline) + 1, strayQuote: -1 };
+    // Only what lies behind the last quoted cell can end a row.
+    const lineEnd = quote === -1 ? text.lastIndexOf(newline) : text.lastIndexOf(newline, quote);
+    if (lineEnd >= from) end = lineEnd + 1;
+    if (quote === -1) return { end, strayQuote: -1 };
     const before = quote === 0 ? newline : text[quote - 1];
     if (before !== newline && before !== delimiter) {
       from = quote + 1;
       continue;
     }
     const close = closingQuote(text, quote, delimiter, newline, final);
-    if (close !== -1) {
-      from = close + 1;
-      continue;
+    if (close === -1) {
+      const decided = final || text.length > quote + LONGEST_QUOTED_CELL + 2;
+      return { end, strayQuote: decided ? quote : -1 };
     }
-    const decided = final || text.length > quote + LONGEST_QUOTED_CELL + 2;
-    return { end: text.lastIndexOf(newline, quote) + 1, strayQuote: decided ? quote : -1 };
+    from = close + 1;
   }
 }
 
@@ -120,8 +123,8 @@ export class RowCutter {
 
   private cut(final: boolean): void {
     let text = this.pieces.join('');
-    // The last character may be the first half of a pair.
-    this.newline ??= newlineOf(final ? text : text.slice(0, -1));
+    // A carriage return at the very end may be the first half of a pair.
+    this.newline ??= newlineOf(final || !text.endsWith('\r') ? text : text.slice(0, -1));
     const newline = this.newline;
     // A line feed may follow in the next piece: keep a trailing carriage return back, so that pairs stay together.
     const held = !final && newline === '\n' && text.endsWith('\r') ? '\r' : '';

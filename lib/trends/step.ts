@@ -47,6 +47,11 @@ export class StepCounter {
     return this.backward * 2 > this.total;
   }
 
+  /** How long a reading may stand for: the usual distance, or 0 when most distances are others. */
+  get holdMs(): number {
+    return this.usualCount * 2 >= this.total ? this.usualMs : 0;
+  }
+
   /** Whether rows come at a regular distance at all: at least half of them, and at least two. */
   get isRegular(): boolean {
     return this.usualCount >= 2 && this.usualCount * 2 >= this.total;

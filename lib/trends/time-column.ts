@@ -179,11 +179,11 @@ function monthOrDayFirst(
     return { reading: monthFirst.share > dayFirst.share ? monthFirst : dayFirst, doubt: null };
   if (monthFirst.regular !== dayFirst.regular)
     return { reading: monthFirst.regular > dayFirst.regular ? monthFirst : dayFirst, doubt: null };
-  const dots = /^\s*\d{1,2}\./.test(first);
+  // Points part days from months only where the day comes first.
+  if (/^\s*\d{1,2}\./.test(first)) return { reading: dayFirst, doubt: null };
   const american = timeZone.startsWith('America/') || timeZone.startsWith('US/') || timeZone === 'Pacific/Honolulu';
-  const reading = american && !dots ? monthFirst : dayFirst;
-  const why = dots ? 'days and months are parted by points' : `the plant's zone is ${timeZone}`;
-  const doubt = `${quoted(first)} can be read with the month or the day first. Read as ${reading.form} because ${why}; check it.`;
+  const reading = american ? monthFirst : dayFirst;
+  const doubt = `${quoted(first)} can be read with the month or the day first. Read as ${reading.form} because the plant's zone is ${timeZone}; check it.`;
   return { reading, doubt };
 }
 

@@ -55,7 +55,7 @@ export interface HeadingUnit {
 }
 
 const BRACKETED = /[([{]\s*([^()[\]{}]*?)\s*[)\]}]\s*$/;
-const LAST_WORDS = /^(.*?[\s_.,;:-])((?:us[\s_]?|deg[\s_.]?)?[°º%\w³/²]+)\s*$/i;
+const LAST_WORDS = /^(.*?[\s_.,;:-])((?:us[\s_]?|deg[\s_.]?)?[°º%a-z0-9³/²]+)\s*$/i;
 /** Longest bracketed text that is taken for a unit although it is none that is known. */
 const LONGEST_UNKNOWN = 8;
 

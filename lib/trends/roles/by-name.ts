@@ -1,6 +1,7 @@
 import type { PointRoleName } from '../../point-roles';
 import type { PreviewOptions } from '../types';
 import { says, type Draft } from './draft';
+import { NUMBERED } from './names';
 import type { Concept } from './vocabulary';
 
 /** A role and how well the name bears it out; `ignore` with a note for a point that no role reads. */
@@ -18,8 +19,6 @@ const FULL = 0.9;
 const LIKELY = 0.65;
 /** A person has to look. */
 const OPEN = 0.4;
-
-const NUMBERED_ROLE: readonly Concept[] = ['chiller', 'pump', 'branch'];
 
 /** The role a name gives a column of a known quantity, or null when it gives none. */
 export function roleByName(draft: Draft, options: PreviewOptions): NamedRole | null {
@@ -213,7 +212,7 @@ function pressureRole(draft: Draft): NamedRole | null {
 /** The number of a chiller or pump counts from 1 among those of the file, so that CH-101 and CH-102 are units 1 and 2. */
 export function unitIndexes(drafts: readonly Draft[], options: PreviewOptions): Map<Draft, number | null> {
   const result = new Map<Draft, number | null>();
-  for (const concept of NUMBERED_ROLE) {
+  for (const concept of NUMBERED) {
     const numbered = drafts.filter((draft) => draft.name.index !== null && says(draft, concept) && !result.has(draft));
     const numbers = [...new Set(numbered.map(({ name }) => name.index!))].sort((a, b) => a - b);
     const plain = numbers.every((number) => number <= options.unitCount) || concept === 'branch';

@@ -1,6 +1,6 @@
 import { POINT_ROLES, pointRole, type PointRoleName } from '../../point-roles';
 import { TREND_UNITS } from '../../units';
-import { doubt, JUST_OPEN, says, type Draft } from './draft';
+import { doubt, JUST_OPEN, PERSON_DECIDES, says, type Draft } from './draft';
 import { number } from './quantity';
 import { stepSize } from './statistics';
 import type { PreviewOptions } from '../types';
@@ -79,7 +79,8 @@ function rankWater(water: readonly Draft[]): void {
 
 function bearOut(draft: Draft, clause: string): void {
   draft.shown.unshift(clause);
-  draft.confidence = Math.min(0.97, draft.confidence + BORNE_OUT);
+  // What a person has to decide stays so.
+  if (draft.confidence >= PERSON_DECIDES) draft.confidence = Math.min(0.97, draft.confidence + BORNE_OUT);
 }
 
 /** Row by row, the difference of two columns in F; rows where one is missing are left out. */
@@ -133,7 +134,8 @@ function findCrossed(water: readonly Draft[]): void {
 }
 
 function flowSteps(draft: Draft, options: PreviewOptions): void {
-  if (draft.role !== 'primaryFlow' || draft.unit === null || !options.unitFlowGpm) return;
+  if (draft.role !== 'primaryFlow' || draft.confidence < PERSON_DECIDES || draft.unit === null || !options.unitFlowGpm)
+    return;
   const { toStored } = TREND_UNITS[draft.unit];
   const oneUnit = options.unitFlowGpm / toStored(1);
   const size = stepSize(draft.statistics.values, oneUnit);

@@ -38,7 +38,8 @@ export function sharedPrefix(names: readonly (readonly string[])[]): number {
   return shared;
 }
 
-const NUMBERED: readonly Concept[] = ['chiller', 'pump', 'branch'];
+/** What carries a number in its name. */
+export const NUMBERED: readonly Concept[] = ['chiller', 'pump', 'branch'];
 
 export function readName(pieces: readonly string[]): NameReading {
   const says = new Map<Concept, string>();

@@ -34,7 +34,8 @@ function quantityOfName(draft: Draft): Quantity | null {
   if (says(draft, 'power')) return 'power';
   if (says(draft, 'temperature', 'wetBulb')) return 'temperature';
   if (says(draft, 'differential', 'pressure')) return 'pressure';
-  if (says(draft, 'speed', 'valve', 'position', 'percent', 'load') && !statistics.binary) return 'percent';
+  if (says(draft, 'speed', 'position', 'percent', 'load') && statistics.stateWords === 0) return 'percent';
+  if (says(draft, 'valve') && !statistics.binary) return 'percent';
   if (says(draft, 'status', 'command')) return 'status';
   if (name.letterF && statistics.count > 0 && !says(draft, 'setpoint') && name.setpointOrPump === null)
     return letterF(draft);

@@ -49,6 +49,7 @@ const BY_NAME: readonly { concept: Concept; unless?: readonly Concept[]; confide
 /** Why a column clearly is no point of the plant, or null. */
 export function refusal(draft: Draft): Refusal | null {
   const { statistics, heading, name } = draft;
+  if (says(draft, 'quality') && statistics.count === 0) return refused('quality');
   if (statistics.count === 0) {
     return statistics.words > 0
       ? { confidence: 0.85, reason: 'Holds words, not readings' }

@@ -6,7 +6,7 @@ import { roleByName, unitIndexes, type NamedRole } from './by-name';
 import { roleByValues } from './by-values';
 import { weighTogether } from './context';
 import { doubt, JUST_OPEN, type Draft } from './draft';
-import { piecesOf, readName, sharedPrefix } from './names';
+import { NUMBERED, piecesOf, readName, sharedPrefix } from './names';
 import { checkUnit, OPEN_UNIT_CONFIDENCE, quantityOf, unitByValues } from './quantity';
 import { refusal } from './refusals';
 import type { ColumnStatistics } from './statistics';
@@ -111,8 +111,12 @@ function leaveOut(draft: Draft, confidence: number, reason: string): void {
 }
 
 function piecesSaying(draft: Draft, named: NamedRole): string[] {
-  const { says, setpointOrPump } = draft.name;
-  const pieces = named.concepts.flatMap((concept) => says.get(concept) ?? []);
+  const { says, setpointOrPump, index } = draft.name;
+  const pieces = named.concepts.flatMap((concept) => {
+    const piece = says.get(concept);
+    if (piece === undefined) return [];
+    return index !== null && NUMBERED.includes(concept) ? `${piece} ${index}` : piece;
+  });
   return [...new Set(setpointOrPump ? [...pieces, setpointOrPump] : pieces)];
 }
 
@@ -156,7 +160,7 @@ export function sentenceOf(draft: Draft): string {
   const said = draft.said.length === 0 ? [] : [`name holds ${listed(draft.said.map((piece) => `"${piece}"`))}`];
   const clauses = [...draft.shown, ...said, ...(draft.unitClause ? [draft.unitClause] : [])];
   const text = clauses.length === 0 ? 'Neither name nor values tell what this is' : clauses.join('; ');
-  return `${text[0]!.toUpperCase()}${text.slice(1)}.`;
+  return `${text[0]!.toUpperCase()}${text.slice(1)}${text.endsWith('?') ? '' : '.'}`;
 }
 
 const listed = (items: readonly string[]): string =>
