@@ -7,7 +7,7 @@ import { DIRECTIONS, STATES, type ResultChannel } from '../hydronics/types';
 import { localHours } from '../queries/local-hours';
 import { PlantSettings } from '../schemas/plant';
 import type { DayFacts } from './daily-mail-model';
-import { dominantCause, hourBars, situationOf } from './day-facts';
+import { dominantCause, hourBars, situationOf, type DayHour } from './day-facts';
 import { readHours, type DaySums } from './day-rows';
 import { isBridged, reverseStretches, shortlist, type DaySlot } from './reverse-stretches';
 
@@ -82,12 +82,18 @@ export async function readDayFacts(em: EntityManager, plant: Plant, sums: DaySum
     currency: settings?.tariff?.currency ?? null,
     excessEnergyKwh: sums.excessEnergyKwh,
     cause: dominantCause(hours),
-    coverage: sums.coverage,
+    coverage: dataShare(hours, clockHours.length),
     situation: largest && situationOf(largest, hours, settings?.design.productionUnits.length ?? 0),
     worstHourMs:
       sums.worstHourMs ??
       (largest && (clockHours.findLast((hour) => hour.startMs <= largest.startMs)?.startMs ?? null)),
   };
+}
+
+/** Share of the day's data that came: an hour without a row has none of it. */
+function dataShare(hours: readonly DayHour[], hoursInDay: number): number {
+  const known = hours.map((hour) => (Number.isFinite(hour.quality) ? hour.quality : 0));
+  return known.reduce((sum, share) => sum + share, 0) / hoursInDay;
 }
 
 /** The intervals that start within [fromMs, toMs), from the UTC days they are stored in; days of another step are left out. */
