@@ -2,6 +2,7 @@ import { keepPreviousData, queryOptions } from '@tanstack/react-query';
 import { z } from 'zod';
 import { Alerts, Analysis } from '../schemas/alert';
 import { listOf } from '../schemas/common';
+import { OverviewPlant } from '../schemas/overview';
 import { Plant } from '../schemas/plant';
 import { Episode, HourDetail, HourRow, PlantDay, Tide, type Rank } from '../schemas/results';
 import { FINAL_UPLOAD_STATUSES, Preview, Upload } from '../schemas/upload';
@@ -98,4 +99,10 @@ export const analysisQuery = (plantId: string, analysisId: string) =>
     queryFn: ({ signal }) => getJson(`/plants/${plantId}/analyses/${analysisId}`, Analysis, signal),
     refetchInterval: ({ state }) =>
       state.data && ['done', 'failed'].includes(state.data.status) ? false : RUNNING_POLL_MS,
+  });
+
+export const overviewQuery = () =>
+  queryOptions({
+    queryKey: ['overview'],
+    queryFn: ({ signal }) => getJson('/overview?limit=200', listOf(OverviewPlant), signal),
   });
