@@ -277,7 +277,9 @@ function blendSupply(
   const predicted = out.cold + share * span;
   const predictedVariance =
     span * span * shareVariance + (1 - share) * (1 - share) * coldVariance + share * share * hotVariance;
-  pool(out.mix, out.mixSigma, predicted, Math.sqrt(predictedVariance));
+  // A main flow of zero predicts nothing: its share has no finite variance.
+  const usable = predictedVariance < Number.POSITIVE_INFINITY;
+  pool(out.mix, out.mixSigma, usable ? predicted : Number.NaN, Math.sqrt(predictedVariance));
   out.blend = pooled.value;
   out.blendVariance = pooled.variance;
 }
