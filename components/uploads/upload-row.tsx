@@ -1,0 +1,118 @@
+'use client';
+import { Check } from 'lucide-react';
+import Link from 'next/link';
+import { useId, useState } from 'react';
+import { plantPath } from '@/components/shell/tabs';
+import { TextButton } from '@/components/ui/button';
+import { ProgressBar } from '@/components/ui/progress-bar';
+import { Cell, RowHead } from '@/components/ui/table';
+import { Tag } from '@/components/ui/tag';
+import { formatBytes, formatNumber, MISSING } from '@/lib/client/format';
+import { formatDayTime, formatPeriod } from '@/lib/client/format-time';
+import type { Upload } from '@/lib/schemas/upload';
+import { ProblemTable } from './problem-table';
+import { RemoveUpload } from './remove-upload';
+import { ROW_ON_PHONE } from './sending-row';
+import { STATUS_WORDS } from './uploads-words';
+
+export interface UploadRowProps {
+  plantId: string;
+  timeZone: string;
+  upload: Upload;
+  may: { map: boolean; remove: boolean };
+}
+
+/** One file: state, what was read, what was noticed (opens under it), and what can be done. */
+export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
+  const [open, setOpen] = useState(upload.status === 'failed');
+  const details = useId();
+  const mapping = `${plantPath(plantId, 'uploads')}/${upload.id}/mapping`;
+  return (
+    <>
+      <tr className={ROW_ON_PHONE} data-upload={upload.id} data-status={upload.status}>
+        <RowHead className="font-semibold! break-all">{upload.filename}</RowHead>
+        <Cell numeric>{formatBytes(upload.sizeBytes)}</Cell>
+        <td>
+          <State upload={upload} />
+        </td>
+        <td className="phone:text-end">
+          {upload.rowsRead > 0 ? `${formatNumber(upload.rowsRead)} rows` : MISSING}
+          {upload.samplesStored > 0 ? (
+            <span className="text-ink-2">, {formatNumber(upload.samplesStored)} values</span>
+          ) : null}
+        </td>
+        <td>
+          {upload.from !== null && upload.to !== null
+            ? formatPeriod(Date.parse(upload.from), Date.parse(upload.to) + 1, timeZone)
+            : MISSING}
+        </td>
+        <td className="phone:text-end">
+          {upload.problems.length === 0 ? (
+            MISSING
+          ) : (
+            <TextButton aria-expanded={open} aria-controls={details} onClick={() => setOpen(!open)}>
+              {noticed(upload)}
+            </TextButton>
+          )}
+        </td>
+        <Cell numeric className="text-ink-2 phone:text-start!">
+          {formatDayTime(Date.parse(upload.createdAt), timeZone)}
+        </Cell>
+        <Cell numeric>
+          {upload.status === 'needs-mapping' && may.map ? (
+            <Link href={mapping} className="link mr-3.5 font-semibold">
+              map
+            </Link>
+          ) : null}
+          {may.remove ? <RemoveUpload plantId={plantId} upload={upload} timeZone={timeZone} /> : null}
+        </Cell>
+      </tr>
+      {open && upload.problems.length > 0 ? (
+        <tr id={details} className="phone:block">
+          <td colSpan={8} className="phone:block">
+            <ProblemTable problems={upload.problems} rowsRead={upload.rowsRead} />
+          </td>
+        </tr>
+      ) : null}
+    </>
+  );
+}
+
+function State({ upload }: { upload: Upload }) {
+  const words = STATUS_WORDS[upload.status];
+  switch (upload.status) {
+    case 'done':
+      return (
+        <span className="inline-flex items-center gap-1.5">
+          <Check size={16} strokeWidth={1.5} aria-hidden="true" />
+          {words}
+        </span>
+      );
+    case 'failed':
+    case 'needs-mapping':
+      return <Tag variant="reversed">{words}</Tag>;
+    case 'importing':
+    case 'analysing':
+      return (
+        <span className="inline-flex flex-wrap items-center gap-x-2">
+          <ProgressBar progress={upload.progress} label={`${words} ${upload.filename}`} />
+          <span className="text-ink-2">{words}</span>
+        </span>
+      );
+    default:
+      return <span className="text-ink-2">{words}</span>;
+  }
+}
+
+function noticed(upload: Upload): string {
+  const count = (severity: 'error' | 'warning') =>
+    upload.problems.filter((problem) => problem.severity === severity).length;
+  if (upload.status === 'failed') return 'what to do';
+  const parts = [
+    [count('error'), 'problem'],
+    [count('warning'), 'warning'],
+  ] as const;
+  return parts
+    .flatMap(([number, word]) => (number === 0 ? [] : [`${number} ${word}${number === 1 ? '' : 's'}`]))
+    .join(', ');
+}

@@ -1,0 +1,33 @@
+import 'server-only';
+import { notFound } from 'next/navigation';
+import { z } from 'zod';
+import type { Access } from '../auth/access';
+import { ACTIONS, can, type Action } from '../auth/can';
+import { requireAccess, withAccess } from '../auth/current';
+import { readPlant, type PlantRecord } from './plant-record';
+
+export interface PagePlant {
+  access: Access;
+  plant: PlantRecord;
+  /** What this person may do here: a control they may not use is absent. */
+  may: Record<Action, boolean>;
+}
+
+/** The plant a page is about, or the not-found page: another organization's plant does not exist here. */
+export async function pagePlant(params: Promise<{ plantId: string }>): Promise<PagePlant> {
+  const { plantId } = await params;
+  const access = await requireAccess();
+  if (!z.uuid().safeParse(plantId).success) notFound();
+  const plant = await withAccess(access, async (em) => {
+    for (const organizationId of access.organizationIds) {
+      const found = await readPlant(em, { organizationId, plantId });
+      if (found) return found;
+    }
+    return null;
+  });
+  if (!plant) notFound();
+  const may = Object.fromEntries(
+    ACTIONS.map((action) => [action, can(access, plant.organizationId, action)]),
+  ) as Record<Action, boolean>;
+  return { access, plant, may };
+}
