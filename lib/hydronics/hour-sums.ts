@@ -176,19 +176,13 @@ function unitsOnFor(
   from: number,
   to: number,
 ): UnitModel[] | undefined {
-  let heard = false;
-  const running = plant.units.filter((unit, index) => {
-    let on = 0;
-    let count = 0;
+  const shares = plant.units.map((unit, index) => {
+    const on = new Mean();
     for (let slot = Math.max(0, from); slot < Math.min(to, measurements.n); slot += 1) {
-      if (estimates.state[slot] !== RUNNING) continue;
-      const value = unitOn(measurements, unit, index, slot);
-      if (value !== value) continue;
-      on += value;
-      count += 1;
+      if (estimates.state[slot] === RUNNING) on.add(unitOn(measurements, unit, index, slot));
     }
-    if (count > 0) heard = true;
-    return on > count / 2;
+    return on.value;
   });
-  return heard ? running : undefined;
+  if (shares.every((share) => Number.isNaN(share))) return undefined;
+  return plant.units.filter((_, index) => (shares[index] ?? 0) > 0.5);
 }

@@ -1,6 +1,32 @@
-import type { PlantSettings } from '../schemas/plant';
 import { deltaTFromTonsF, flowFromTonsGpm } from './design-flow';
 import type { Arrangement, DistributionPumpsModel, Fluid, PlantModel, SensorModel, UnitModel } from './types';
+
+/** The parts of a plant's settings that the kernel reads; what nobody has given is absent. */
+export interface PlantSettingsLike {
+  fluid: Fluid;
+  design: {
+    productionSupplyF: number;
+    loadDeltaTF?: number | undefined;
+    loadTons?: number | undefined;
+    productionUnits: readonly {
+      tons: number;
+      flowGpm?: number | undefined;
+      deltaTF?: number | undefined;
+      minFlowGpm?: number | undefined;
+      maxFlowGpm?: number | undefined;
+      kwPerTon?: number | undefined;
+      auxiliaryKw?: number | undefined;
+    }[];
+    distributionPumps: { [Key in keyof DistributionPumpsModel]?: DistributionPumpsModel[Key] | undefined };
+    blendedSupplyF: number | null;
+    pumping: { speed?: 'constant' | 'variable' | undefined };
+    standbyUnits: number;
+  };
+  tariff: { energyPerKwh: number } | null;
+  /** By point role. */
+  sensors: Readonly<Record<string, { sigmaF?: number | undefined; sigmaPercent?: number | undefined }>>;
+  low: { loadShare: number; deltaTShare: number };
+}
 
 /** Design numbers that stand in for what nobody has given. Each is listed in `assumed` when it is used. */
 const DEFAULTS = {
@@ -30,7 +56,7 @@ const DEFAULTS = {
 /** Notes the path of every number that is taken from the defaults. */
 type Assume = <Value>(given: Value | null | undefined, path: string, fallback: Value) => Value;
 
-function unitModels(settings: PlantSettings, fluid: Fluid, assume: Assume): UnitModel[] {
+function unitModels(settings: PlantSettingsLike, fluid: Fluid, assume: Assume): UnitModel[] {
   const { productionUnits, productionSupplyF } = settings.design;
   return productionUnits.map((unit, index) => {
     const path = `design.productionUnits.${index}`;
@@ -46,7 +72,7 @@ function unitModels(settings: PlantSettings, fluid: Fluid, assume: Assume): Unit
   });
 }
 
-function pumpsModel(settings: PlantSettings, designFlowGpm: number, assume: Assume): DistributionPumpsModel {
+function pumpsModel(settings: PlantSettingsLike, designFlowGpm: number, assume: Assume): DistributionPumpsModel {
   const pumps = settings.design.distributionPumps;
   const path = 'design.distributionPumps';
   const headFt = assume(pumps.headFt, `${path}.headFt`, DEFAULTS.headFt);
@@ -59,7 +85,7 @@ function pumpsModel(settings: PlantSettings, designFlowGpm: number, assume: Assu
   };
 }
 
-function sensorModel(settings: PlantSettings, assume: Assume): SensorModel {
+function sensorModel(settings: PlantSettingsLike, assume: Assume): SensorModel {
   const sigmaF = (role: string, fallback: number = DEFAULTS.temperatureSigmaF) =>
     assume(settings.sensors[role]?.sigmaF, `sensors.${role}.sigmaF`, fallback);
   const sigmaPercent = (role: string, fallback: number = DEFAULTS.flowSigmaPercent) =>
@@ -82,7 +108,7 @@ function sensorModel(settings: PlantSettings, assume: Assume): SensorModel {
 }
 
 /** Tons the plant was designed to deliver: its units without the standby ones, which are listed last. */
-function dutyTons(settings: PlantSettings): number {
+function dutyTons(settings: PlantSettingsLike): number {
   const { productionUnits, standbyUnits } = settings.design;
   const duty = productionUnits.slice(0, Math.max(1, productionUnits.length - standbyUnits));
   return duty.reduce((total, unit) => total + unit.tons, 0);
@@ -97,7 +123,7 @@ function dutyTons(settings: PlantSettings): number {
  * Source  defaults: see DEFAULTS.
  */
 export function plantModelFromSettings(
-  settings: PlantSettings,
+  settings: PlantSettingsLike,
   arrangement: Arrangement,
 ): { model: PlantModel; assumed: string[] } {
   const assumed: string[] = [];

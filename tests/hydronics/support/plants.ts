@@ -43,9 +43,7 @@ export function recordOf(
   const channel = (value: number | readonly number[]) =>
     typeof value === 'number' ? new Float64Array(n).fill(value) : Float64Array.from(value);
   const units = (key: keyof typeof perUnit) => (perUnit[key] ?? []).map(channel);
-  const loop = Object.fromEntries(
-    Object.entries(channels).map(([key, value]) => [key, channel(value as number | readonly number[])]),
-  );
+  const loop = Object.fromEntries(Object.entries(channels).map(([key, value]) => [key, channel(value)]));
   return {
     ...loop,
     n,
