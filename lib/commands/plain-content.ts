@@ -112,7 +112,7 @@ async function* unpack(name: string, head: Buffer, rest: AsyncGenerator<Buffer>)
     yield head;
     yield* rest;
   }
-  let sourceFailure: unknown;
+  let sourceFailure: Error | undefined;
   const source = Readable.from(packed(), { objectMode: false });
   source.on('error', (error) => (sourceFailure = error));
   // Everything that goes wrong reaches the loop below through the last stream.

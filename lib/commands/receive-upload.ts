@@ -122,7 +122,7 @@ export async function hashOfBody(request: Request, filename: string | undefined,
   try {
     for await (const file of body.files) {
       const { pieces, summary } = plainContent(file.name, file.content, meter);
-      for await (const piece of pieces) void piece;
+      for await (const _ of pieces) continue;
       files.push(summary());
     }
   } catch (error) {

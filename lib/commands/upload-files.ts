@@ -1,4 +1,3 @@
-import type { IncomingHttpHeaders } from 'node:http';
 import { PassThrough, Readable, finished } from 'node:stream';
 import type { ReadableStream as NodeReadableStream } from 'node:stream/web';
 import busboy from 'busboy';
@@ -91,7 +90,7 @@ async function* formFiles(source: Readable, headers: Headers): AsyncGenerator<In
   });
   source.pipe(parser);
   try {
-    for await (const file of found) yield file as IncomingFile;
+    yield* found;
   } finally {
     source.unpipe(parser);
   }
@@ -100,7 +99,7 @@ async function* formFiles(source: Readable, headers: Headers): AsyncGenerator<In
 function formParser(headers: Headers): busboy.Busboy {
   try {
     return busboy({
-      headers: Object.fromEntries(headers) as IncomingHttpHeaders,
+      headers: Object.fromEntries(headers),
       defParamCharset: 'utf8',
       limits: { parts: MOST_FILES },
     });

@@ -19,6 +19,21 @@ export const TideQuery = Period.extend({
   ...units,
 });
 
+/** The hour's start as it stands in a path, where its colons and its plus may be escaped. */
+export const HourPathParams = z.object({
+  plantId: z.uuid(),
+  hourStart: z
+    .string()
+    .transform((text) => {
+      try {
+        return decodeURIComponent(text);
+      } catch {
+        return text;
+      }
+    })
+    .pipe(z.iso.datetime({ offset: true })),
+});
+
 /** `from` and `to` narrow only the rank: without them it is among all the plant's low hours. */
 export const HourQuery = Period.extend(units);
 

@@ -2,12 +2,19 @@ import { OpenAPIRegistry, OpenApiGeneratorV31, type RouteConfig } from '@asteaso
 import { z } from 'zod';
 import { Problem } from '../../schemas/common';
 import { ACCOUNT_OPERATIONS } from './account';
+import { DATA_OPERATIONS, UPLOAD_OPERATIONS } from './data';
 import { named, type Answer, type Operation } from './describe';
 import { PLANT_OPERATIONS } from './plants';
 import { SERVICE_OPERATIONS } from './service';
 
 /** Every operation of the API, subject by subject. */
-export const OPERATIONS: readonly Operation[] = [...ACCOUNT_OPERATIONS, ...PLANT_OPERATIONS, ...SERVICE_OPERATIONS];
+export const OPERATIONS: readonly Operation[] = [
+  ...ACCOUNT_OPERATIONS,
+  ...PLANT_OPERATIONS,
+  ...UPLOAD_OPERATIONS,
+  ...DATA_OPERATIONS,
+  ...SERVICE_OPERATIONS,
+];
 
 const REFUSALS: Readonly<Record<number, string>> = {
   400: 'The input is not right; `errors` says where.',
