@@ -10,7 +10,8 @@ const type = (name: string): [string, { lineHeight: string }] => [
 export default {
   content: [],
   theme: {
-    screens: { phone: { max: '760px' } },
+    // `narrow` is for the header alone: between a phone and the width where plant, tabs, units and person all fit.
+    screens: { narrow: { max: '1080px' }, phone: { max: '760px' } },
     colors: {
       transparent: 'transparent',
       current: 'currentColor',

@@ -27,61 +27,66 @@ export function DegreeLedger({ caption, lines, onPick, compact = false }: Degree
   const decimals = decimalsOf('temperatureDifference', units);
   const last = lines.length - 1;
   return (
-    <div className="grid grid-cols-[minmax(0,max-content)_minmax(112px,1fr)] gap-x-6">
-      <table className="border-collapse">
-        <caption className="sr-only">
-          {caption}, {print.unit('temperatureDifference')}
-        </caption>
-        <thead className="sr-only">
-          <tr>
-            <th scope="col">sign</th>
-            <th scope="col">line</th>
-            <th scope="col">amount</th>
-            <th scope="col">90 % interval</th>
-          </tr>
-        </thead>
-        <tbody>
-          {lines.map((line, index) => {
-            const amount = amounts[index] ?? Number.NaN;
-            const total = line.kind === 'total';
-            return (
-              <tr
-                key={line.key}
-                style={{ height: rowPx }}
-                className="align-middle"
-                onClick={() => setTapped((before) => (before === line.key ? null : line.key))}
-              >
-                <td className="pr-3.5 text-ink-2 italic">{signWord(line)}</td>
-                <th scope="row" className={total ? 'font-semibold' : 'font-normal'}>
-                  {onPick === undefined ? (
-                    line.label
-                  ) : (
-                    <button type="button" className="text-start hover:underline" onClick={() => onPick(line.key)}>
-                      {line.label}
-                    </button>
-                  )}
-                </th>
-                <td
-                  className={`relative w-16 pl-4 text-end text-figure ${total ? 'font-semibold' : ''}`}
-                  data-kind={line.kind}
+    <div className="@container">
+      <div className="grid grid-cols-[max-content_minmax(0,1fr)] gap-x-6 phone:gap-x-3.5">
+        <table className="border-collapse">
+          <caption className="sr-only">
+            {caption}, {print.unit('temperatureDifference')}
+          </caption>
+          <thead className="sr-only">
+            <tr>
+              <th scope="col">sign</th>
+              <th scope="col">line</th>
+              <th scope="col">amount</th>
+              <th scope="col">90 % interval</th>
+            </tr>
+          </thead>
+          <tbody>
+            {lines.map((line, index) => {
+              const amount = amounts[index] ?? Number.NaN;
+              const total = line.kind === 'total';
+              return (
+                <tr
+                  key={line.key}
+                  style={{ height: rowPx }}
+                  className="align-middle"
+                  onClick={() => setTapped((before) => (before === line.key ? null : line.key))}
                 >
-                  {total && index > 0 ? <span className="absolute top-0 right-0 left-2 h-px bg-ink" /> : null}
-                  {formatNumber(amount, { decimals, sign: total ? 'auto' : 'always' })}
-                  {total && index === last ? (
-                    <span className="absolute right-0 bottom-0 left-2 h-[3px] border-y border-ink" />
-                  ) : null}
-                </td>
-                <td
-                  className={`pl-2 text-micro whitespace-nowrap text-ink-2 ${tapped === line.key ? '' : 'phone:sr-only'}`}
-                >
-                  {print.plusMinus(line.plusMinusF, 'temperatureDifference')}
-                </td>
-              </tr>
-            );
-          })}
-        </tbody>
-      </table>
-      <Bars lines={lines} rowPx={rowPx} />
+                  <td className="pr-3.5 text-ink-2 italic phone:pr-2">{signWord(line)}</td>
+                  <th scope="row" className={`whitespace-nowrap ${total ? 'font-semibold' : 'font-normal'}`}>
+                    {onPick === undefined ? (
+                      line.label
+                    ) : (
+                      <button type="button" className="text-start hover:underline" onClick={() => onPick(line.key)}>
+                        {line.label}
+                      </button>
+                    )}
+                  </th>
+                  <td
+                    className={`relative w-16 pl-4 text-end text-figure phone:w-12 phone:pl-2 ${total ? 'font-semibold' : ''}`}
+                    data-kind={line.kind}
+                  >
+                    {total && index > 0 ? <span className="absolute top-0 right-0 left-2 h-px bg-ink" /> : null}
+                    {formatNumber(amount, { decimals, sign: total ? 'auto' : 'always' })}
+                    {total && index === last ? (
+                      <span className="absolute right-0 bottom-0 left-2 h-[3px] border-y border-ink" />
+                    ) : null}
+                  </td>
+                  <td
+                    className={`pl-2 text-micro whitespace-nowrap text-ink-2 ${tapped === line.key ? '' : 'phone:sr-only'}`}
+                  >
+                    {print.plusMinus(line.plusMinusF, 'temperatureDifference')}
+                  </td>
+                </tr>
+              );
+            })}
+          </tbody>
+        </table>
+        {/* Too narrow a column has room for the account only. */}
+        <div className="min-w-0 @max-[340px]:hidden">
+          <Bars lines={lines} rowPx={rowPx} />
+        </div>
+      </div>
     </div>
   );
 }

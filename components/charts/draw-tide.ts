@@ -147,13 +147,14 @@ function drawBeads({ context, palette, x, y }: Painter, marks: readonly TideMark
   for (const run of runsOf(marks, (mark) => mark.direction === 'still')) {
     const width = Math.max(BEAD_PX, x(run.endMs) - x(run.startMs));
     const left = crisp((x(run.startMs) + x(run.endMs) - width) / 2);
-    const top = crisp(y(0) - BEAD_PX / 2);
+    const top = y(0) - BEAD_PX / 2;
     context.fillRect(left, top, Math.round(width) - 1, BEAD_PX);
     context.strokeRect(left, top, Math.round(width) - 1, BEAD_PX);
   }
 }
 
-const crisp = (px: number): number => Math.round(px - 0.5) + 0.5;
+/** On whole pixels, rounded as the page rounds its own borders: lines of the plot and of the table under it then meet. */
+const crisp = (px: number): number => Math.round(px) + 0.5;
 const snap = (px: number, ratio: number): number => Math.round(px * ratio) / ratio;
 
 function line(context: CanvasRenderingContext2D, x0: number, y0: number, x1: number, y1: number): void {

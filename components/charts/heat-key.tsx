@@ -6,7 +6,7 @@ import { squareSide } from './heat-cells';
 /** What the squares of the heat calendar stand for; the reference is stated, so that areas can be read. */
 export function HeatKey({ referenceGpm, cellPx }: { referenceGpm: number; cellPx: number }) {
   const print = useFormat();
-  const steps = [0.18, 0.45, 1].map((share) => roundTo(referenceGpm * share));
+  const steps = [roundTo(referenceGpm * 0.18), roundTo(referenceGpm * 0.45), referenceGpm];
   return (
     <ul className="mt-3.5 flex flex-wrap gap-x-7 gap-y-1.5 text-small text-ink-2">
       <li className="flex items-center gap-2.5">
@@ -45,8 +45,8 @@ export function HeatKey({ referenceGpm, cellPx }: { referenceGpm: number; cellPx
   );
 }
 
-/** To one or two leading figures: 198 is 200, 495 is 500. */
+/** To one leading figure: 198 is 200, 495 is 500. */
 function roundTo(value: number): number {
   const unit = 10 ** Math.floor(Math.log10(value));
-  return value === unit * Math.round(value / unit) ? value : Math.round(value / unit) * unit || value;
+  return Math.max(1, Math.round(value / unit)) * unit;
 }

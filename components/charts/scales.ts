@@ -1,3 +1,5 @@
+import { formatNumber, toPrinted, type UnitSystem } from '@/lib/client/format';
+
 /** Round steps of an axis: 1, 2, 4, 5 and their tenfolds. */
 const STEPS = [1, 2, 4, 5, 10];
 
@@ -37,4 +39,10 @@ export function nudgeApart(positions: readonly number[], gap: number): number[] 
   const placed = [...positions];
   for (const { position, index } of order) placed[index] = position;
   return placed;
+}
+
+/** A flow on an axis, signed, with no more decimals than the round number has. */
+export function tickLabel(flowGpm: number, units: UnitSystem): string {
+  const printed = Number(toPrinted(flowGpm, 'flow', units).toPrecision(10));
+  return formatNumber(printed, { decimals: Number.isInteger(printed) ? 0 : 1, sign: 'always' });
 }

@@ -156,8 +156,11 @@ function Plot({ columns, range, timeZone, names, view }: PlotProps) {
       aria-label={`Supply and return temperatures on both sides of the tees. ${temperatureSentence(columns, print)} t shows them as a table.`}
       className="grid grid-cols-[64px_minmax(0,1fr)_124px] phone:grid-cols-[40px_minmax(0,1fr)]"
     >
-      <div className="col-start-2">
-        <TimeHeads columns={heads} view={view} />
+      {/* Wide, the columns are the strip's, named there; a phone shows one day, by its hours. */}
+      <div className="col-start-2 h-3 phone:h-5">
+        <div className="hidden phone:block">
+          <TimeHeads columns={heads} view={view} />
+        </div>
       </div>
       <div aria-hidden="true" className="relative col-start-1 row-start-2 text-micro text-ink-2">
         <span className="absolute -top-4 left-0">{unitLabel('temperature', units)}</span>

@@ -1,9 +1,9 @@
 'use client';
 import { useUnits } from '@/components/shell/units-context';
-import { formatQuantity, toPrinted } from '@/lib/client/format';
+import { toPrinted } from '@/lib/client/format';
 import { formatClock } from '@/lib/client/format-time';
 import type { Tide } from '@/lib/schemas/results';
-import { niceTicks } from './scales';
+import { niceTicks, tickLabel } from './scales';
 import { tideExtent, tideMarks } from './tide-marks';
 import { TideShapes } from './tide-svg';
 import { timeColumns } from './time-columns';
@@ -47,7 +47,7 @@ export function TideMinutes({ tide, timeZone, hourStart, heightPx = 84 }: TideMi
       <div aria-hidden="true" className="relative">
         {ticks.map((tick) => (
           <span key={tick} className="absolute right-2 -translate-y-1/2" style={{ top: top(tick) }}>
-            {tick === 0 ? 'still' : formatQuantity(tick, 'flow', units, 'always')}
+            {tick === 0 ? 'still' : tickLabel(tick, units)}
           </span>
         ))}
       </div>

@@ -6,7 +6,7 @@ import type uPlot from 'uplot';
 import { CursorLine } from './cursor-line';
 import { drawEmptyStill, drawFence, drawGrid, drawTide } from './draw-tide';
 import { PlotCanvas, type Limits, type Painter } from './plot-canvas';
-import { niceTicks } from './scales';
+import { niceTicks, tickLabel } from './scales';
 import { TimeHeads } from './time-heads';
 import type { TimeColumn } from './time-columns';
 import { zoomAt } from './tide-keys';
@@ -48,8 +48,10 @@ export function TidePlot(props: TidePlotProps) {
   // Round numbers of the reader's own unit, at their places in gpm.
   const ticks = useMemo(() => {
     const perGpm = toPrinted(1, 'flow', units);
+    // Before there are data the scale means nothing: the still line alone.
+    if (marks.length === 0) return [0];
     return niceTicks(extent.loGpm * perGpm, extent.hiGpm * perGpm).map((tick) => tick / perGpm);
-  }, [extent, units]);
+  }, [extent, units, marks]);
   const draw = useCallback(
     (painter: Painter) => {
       drawGrid(
@@ -119,7 +121,7 @@ function FlowAxis(props: { ticks: readonly number[]; atY: (flowGpm: number) => s
           className={`absolute right-2 -translate-y-1/2 ${tick === 0 ? 'font-semibold text-ink' : ''}`}
           style={{ top: props.atY(tick) }}
         >
-          {tick === 0 ? 'still' : formatQuantity(tick, 'flow', units, 'always')}
+          {tick === 0 ? 'still' : tickLabel(tick, units)}
         </span>
       ))}
       {top > 0 ? (

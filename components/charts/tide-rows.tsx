@@ -53,8 +53,8 @@ export function TideRows(props: TideRowsProps) {
       <div aria-hidden="true" className="grid grid-cols-[56px_minmax(0,1fr)_56px] text-micro text-ink-2">
         <span />
         <span ref={plot} className="relative block h-4">
-          {[0, 6, 12, 18].map((hour) => (
-            <span key={hour} className="absolute -translate-x-1/4" style={{ left: `${(hour / 24) * 100}%` }}>
+          {[0, 6, 12, 18, 24].map((hour) => (
+            <span key={hour} className="absolute -translate-x-1/2" style={{ left: `${(hour / 24) * 100}%` }}>
               {String(hour).padStart(2, '0')}
             </span>
           ))}

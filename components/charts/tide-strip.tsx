@@ -177,7 +177,7 @@ function Strip(props: StripProps) {
         Left and right move one bar, with Shift one day. Plus and minus zoom. n and p go to the next and previous
         reverse stretch. Enter opens the hour. t shows the numbers as a table.
       </p>
-      <TideSummary columns={columns} cells={cells} />
+      <TideSummary columns={columns} cells={cells} widthPx={widthPx} />
     </div>
   );
 }

@@ -7,12 +7,19 @@ import type { TideCell } from './tide-table';
 export interface TideSummaryProps {
   columns: readonly TimeColumn[];
   cells: readonly TideCell[];
+  /** Width of the plot above: a column cut off by the range's ends to less than its figures shows none. */
+  widthPx: number;
 }
 
+const ROOM_PX = 34;
+
 /** The tide table: numbers under the strip, on the strip's own columns. */
-export function TideSummary({ columns, cells }: TideSummaryProps) {
+export function TideSummary({ columns, cells, widthPx }: TideSummaryProps) {
   const print = useFormat();
   const shares = columns.map((column) => `minmax(0, ${column.endMs - column.startMs}fr)`).join(' ');
+  const lengthMs = (columns.at(-1)?.endMs ?? 0) - (columns[0]?.startMs ?? 0);
+  const tight = (column: TimeColumn | undefined) =>
+    column !== undefined && ((column.endMs - column.startMs) / lengthMs) * widthPx < ROOM_PX;
   const rows: readonly { name: string; figure: (cell: TideCell) => string }[] = [
     {
       name: 'reverse, h:min',
@@ -47,7 +54,7 @@ export function TideSummary({ columns, cells }: TideSummaryProps) {
               role="cell"
               className={`border-l border-rule pr-1.5 text-end last:border-r ${cell.heavy ? 'font-semibold' : ''}`}
             >
-              {figure(cell)}
+              {tight(columns[index]) ? <span className="sr-only">{figure(cell)}</span> : figure(cell)}
             </span>
           ))}
         </div>

@@ -139,12 +139,19 @@ function Fringes({ marks, at, level }: Omit<Scales, 'still'>) {
 }
 
 function Unknowns({ marks, at, level, still, bead }: Scales & { bead: number }) {
-  const d = marks
-    .filter((mark) => mark.direction === 'unknown')
-    .map((mark) => {
-      const top = Math.min(still - bead / 2, mark.hiGpm === null ? still : level(mark.hiGpm));
-      const bottom = Math.max(still + bead / 2, mark.loGpm === null ? still : level(mark.loGpm));
-      return `M${at(mark.startMs)} ${top}H${at(mark.endMs)}V${bottom}H${at(mark.startMs)}z`;
+  const top = (mark: TideMark) => Math.min(still - bead / 2, mark.hiGpm === null ? still : level(mark.hiGpm));
+  const bottom = (mark: TideMark) => Math.max(still + bead / 2, mark.loGpm === null ? still : level(mark.loGpm));
+  const offset = marks[0]?.index ?? 0;
+  // One outline round neighbours, so that only the bounds are drawn and not the hours between.
+  const d = runsOf(marks, (mark) => mark.direction === 'unknown')
+    .map((run) => {
+      const inside = marks.slice(run.first - offset, run.last - offset + 1);
+      const above = inside.map((mark) => `L${at(mark.startMs)} ${top(mark)}H${at(mark.endMs)}`).join('');
+      const below = inside
+        .toReversed()
+        .map((mark) => `V${bottom(mark)}H${at(mark.startMs)}`)
+        .join('');
+      return `M${at(run.startMs)} ${still}${above}${below}z`;
     })
     .join('');
   if (d === '') return null;

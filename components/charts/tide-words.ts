@@ -36,6 +36,8 @@ export function barSentence(bar: TideBar, timeZone: string, print: BoundFormat):
   if (direction === 'unknown') {
     return `${when}, direction unknown${interval === '-' ? '' : `, between ${interval} ${print.unit('flow')}`}${supply}`;
   }
-  const sure = bar.probability === null ? '' : `, probability ${formatPercent(bar.probability)} percent`;
+  // Never rounded up to certainty.
+  const sure =
+    bar.probability === null ? '' : `, probability ${formatPercent(Math.min(0.99, bar.probability))} percent`;
   return `${when}, ${direction}, ${print.bypass(bar.bypassFlowGpm)} ${print.unit('flow')}${sure}${supply}`;
 }

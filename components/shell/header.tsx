@@ -21,7 +21,7 @@ export interface HeaderProps {
   onSignOut: () => void;
 }
 
-/** 50 px and one ink rule: wordmark, plant, tabs, units, person. On a phone the tabs are a second row. */
+/** 50 px and one ink rule: wordmark, plant, tabs, units, person. Where it is too narrow for all, the tabs are a second row. */
 export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps) {
   const pathname = usePathname() ?? '';
   const router = useRouter();
@@ -38,8 +38,14 @@ export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps
     ),
   });
   const items = { onSignOut, onShowKeys: () => setHelp(true) };
-  const link = (tab: PlantTab) => (
-    <TabLink key={tab.key} href={plantPath(plantId ?? '', tab.key)} active={tab.key === active} label={tab.label} />
+  const link = (tab: PlantTab, className = '') => (
+    <TabLink
+      key={tab.key}
+      href={plantPath(plantId ?? '', tab.key)}
+      active={tab.key === active}
+      label={tab.label}
+      className={className}
+    />
   );
   return (
     <header className="no-print">
@@ -63,8 +69,8 @@ export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps
                   onOpenChange={setSwitching}
                 />
               </div>
-              <nav aria-label="Plant pages" className="flex gap-5 phone:hidden">
-                {shown.map(link)}
+              <nav aria-label="Plant pages" className="flex gap-5 narrow:hidden">
+                {shown.map((tab) => link(tab))}
               </nav>
             </>
           )}
@@ -73,28 +79,30 @@ export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps
             <PersonMenu email={person.email} {...items} />
           </div>
           {plantId === undefined ? (
-            <div className="ml-auto hidden items-center phone:flex">
+            <div className="ml-auto hidden shrink-0 items-center phone:flex">
               <PhoneMenu trigger="Menu" email={person.email} {...items} />
             </div>
           ) : null}
         </div>
       </div>
       {plantId === undefined ? null : (
-        <nav aria-label="Plant pages" className="hidden border-b border-rule phone:block">
-          <div className="page flex h-11 items-stretch justify-between">
-            {shown.filter(({ key }) => PHONE_TABS.includes(key)).map(link)}
-            <PhoneMenu trigger="More" email={person.email} {...items}>
-              {shown
-                .filter(({ key }) => !PHONE_TABS.includes(key))
-                .map(({ key, label }) => (
-                  <MenuItem key={key} asChild>
-                    <Link href={plantPath(plantId, key)} aria-current={key === active ? 'page' : undefined}>
-                      {label}
-                    </Link>
-                  </MenuItem>
-                ))}
-              <MenuRule />
-            </PhoneMenu>
+        <nav aria-label="Plant pages" className="hidden border-b border-rule narrow:block">
+          <div className="page flex h-11 items-stretch gap-7 phone:justify-between phone:gap-0">
+            {shown.map((tab) => link(tab, PHONE_TABS.includes(tab.key) ? '' : 'phone:hidden'))}
+            <div className="hidden items-center phone:flex">
+              <PhoneMenu trigger="More" email={person.email} {...items}>
+                {shown
+                  .filter(({ key }) => !PHONE_TABS.includes(key))
+                  .map(({ key, label }) => (
+                    <MenuItem key={key} asChild>
+                      <Link href={plantPath(plantId, key)} aria-current={key === active ? 'page' : undefined}>
+                        {label}
+                      </Link>
+                    </MenuItem>
+                  ))}
+                <MenuRule />
+              </PhoneMenu>
+            </div>
           </div>
         </nav>
       )}
@@ -103,12 +111,19 @@ export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps
   );
 }
 
-function TabLink({ href, active, label }: { href: string; active: boolean; label: string }) {
+interface TabLinkProps {
+  href: string;
+  active: boolean;
+  label: string;
+  className?: string;
+}
+
+function TabLink({ href, active, label, className = '' }: TabLinkProps) {
   return (
     <Link
       href={href}
       aria-current={active ? 'page' : undefined}
-      className={`relative flex items-center ${active ? 'font-semibold text-ink' : 'text-ink-2 hover:text-ink'}`}
+      className={`relative flex items-center ${className} ${active ? 'font-semibold text-ink' : 'text-ink-2 hover:text-ink'}`}
     >
       {label}
       {active ? <span aria-hidden="true" className="absolute inset-x-0 -bottom-px h-[3px] bg-ink" /> : null}

@@ -61,6 +61,8 @@ export const STILL_GAP_PX = 6;
 const NOMINAL_PX = 40;
 const LEAST_PIPE_PX = 2;
 const MOST_DOTS_PX = 150;
+/** A pipe thinner than this has no room for its chevron; its walls and the bands say the direction. */
+const ARROW_ROOM_PX = 16;
 const BEAD = { width: 16, height: 7 };
 
 /** Pixels a gpm so that the larger flow is `thickestPx` thick; nothing known: any scale will do. */
@@ -108,6 +110,9 @@ const crossesZero = (flows: TeeFlows): boolean =>
 
 const rect = (x: number, y: number, toX: number, toY: number): Rect => ({ x, y, width: toX - x, height: toY - y });
 
+const pipeArrow = (pipe: number, wide: number, y: number, to: TeeArrow['to'], on: TeeArrow['on']): TeeArrow[] =>
+  wide < ARROW_ROOM_PX ? [] : [{ x: pipe + wide / 2, y, to, on }];
+
 /** Return water rises and joins the supply: solid above, the hatched stripe below it. */
 function reverse(flows: TeeFlows, box: TeeBox, through: number, rise: number): TeeDrawing {
   const { left, right, top, bottom, pipe } = box;
@@ -136,7 +141,7 @@ function reverse(flows: TeeFlows, box: TeeBox, through: number, rise: number): T
     arrows: [
       { x: left + 46, y: top + through / 2, to: 'right', on: 'solid' },
       { x: right - 46, y: top + through / 2, to: 'right', on: 'solid' },
-      { x: pipe + wide / 2, y: middle, to: 'up', on: 'hatch' },
+      ...pipeArrow(pipe, wide, middle, 'up', 'hatch'),
       { x: left + 46, y: bottom - through / 2, to: 'left', on: 'hatch' },
       { x: right - 46, y: (returnRight + bottom) / 2, to: 'left', on: 'hatch' },
     ],
@@ -178,7 +183,7 @@ function forward(flows: TeeFlows, box: TeeBox, through: number, fall: number): T
     arrows: [
       { x: left + 46, y: (top + supplyLeft) / 2, to: 'right', on: 'solid' },
       { x: right - 46, y: top + through / 2, to: 'right', on: 'solid' },
-      { x: pipe + wide / 2, y: middle, to: 'down', on: 'solid' },
+      ...pipeArrow(pipe, wide, middle, 'down', 'solid'),
       { x: left + 46, y: bottom - through / 2, to: 'left', on: 'hatch' },
       { x: right - 46, y: bottom - through / 2, to: 'left', on: 'hatch' },
     ],
@@ -213,9 +218,7 @@ function straight(flows: TeeFlows, box: TeeBox, through: number): TeeDrawing {
     solid: [rect(left, top, right, supply)],
     hatch: [rect(left, back, right, bottom)],
     dots: unknown ? rect(from, supply, from + wide, back) : null,
-    pipeWalls: unknown
-      ? `M${from} ${supply}V${back}M${from + wide} ${supply}V${back}`
-      : `M${from} ${supply}V${back}M${from + wide} ${supply}V${back}`,
+    pipeWalls: `M${from} ${supply}V${back}M${from + wide} ${supply}V${back}`,
     bandWalls: `M${left} ${top}H${right}M${left} ${bottom}H${right}${unknown ? `M${left} ${supply}H${right}M${left} ${back}H${right}` : gap}`,
     wallsBroken: unknown,
     seams: '',

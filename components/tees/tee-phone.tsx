@@ -21,11 +21,13 @@ export function TeePhone({ detail, flows, valve }: { detail: HourDetail; flows: 
   const rightY = between(drawing.supplyRight, drawing.returnRight);
   const pipeRight =
     detail.direction === 'unknown' ? BANDS.pipe + drawing.pipeWidth / 2 : BANDS.pipe + drawing.pipeWidth;
+  // Where a band is of two waters the number stands on the one that goes right through.
+  const solid = Math.min(drawing.supplyLeft, drawing.supplyRight);
   const numbers = [
-    { number: 1, x: 92, y: between(BANDS.top, drawing.supplyLeft) },
-    { number: 2, x: 262, y: between(BANDS.top, drawing.supplyRight) },
+    { number: 1, x: 92, y: between(BANDS.top, solid) },
+    { number: 2, x: 262, y: between(BANDS.top, solid) },
     { number: 3, x: 262, y: between(drawing.returnRight, BANDS.bottom) },
-    { number: 4, x: 92, y: between(drawing.returnLeft, BANDS.bottom) },
+    { number: 4, x: 92, y: between(Math.max(drawing.returnLeft, drawing.returnRight), BANDS.bottom) },
     { number: 5, x: Math.min(pipeRight + 18, 240), y: between(drawing.supplyRight, drawing.returnRight) },
   ];
   return (

@@ -49,13 +49,13 @@ export function TeePipes({ drawing, arrows = true, valve }: TeePipesProps) {
   );
 }
 
-/** A chevron of flow. On hatch it stands on a halo of paper, or the lines would eat it. */
+/** A chevron of flow. On hatch it stands on a patch of paper, or the lines would eat it. */
 function Chevron({ x, y, to, on }: TeeArrow) {
   const turn = { right: 0, down: 90, left: 180, up: -90 }[to];
-  const d = 'M-4 -4.5L4 0L-4 4.5';
+  const d = 'M-3.5 -4.5L3.5 0L-3.5 4.5';
   return (
     <g transform={`translate(${x} ${y}) rotate(${turn})`} fill="none">
-      {on === 'hatch' ? <path d={d} stroke="var(--paper)" strokeWidth="6" strokeLinecap="square" /> : null}
+      {on === 'hatch' ? <circle r="8" fill="var(--paper)" /> : null}
       <path d={d} stroke={on === 'solid' ? 'var(--paper)' : 'var(--rev)'} strokeWidth="1.9" />
     </g>
   );

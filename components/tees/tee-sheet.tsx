@@ -16,6 +16,7 @@ import {
   STATIONS,
   teeFlows,
   teeSentence,
+  type Doubt,
   type StationName,
 } from './tee-words';
 
@@ -26,8 +27,7 @@ export interface TeeSheetProps {
   units?: readonly TeeUnit[];
   /** A building bridge blends by design, up to this much. */
   expectedBridgeGpm?: number;
-  /** Measurements that lie more than two standard uncertainties of the adjustment from what was worked out. */
-  doubted?: readonly { station: StationName; quantity: 'temperature' | 'flow' }[];
+  doubted?: readonly Doubt[];
 }
 
 const SIZE = { width: 854, height: 520 };
@@ -71,7 +71,7 @@ export function TeeSheet(props: TeeSheetProps) {
           <TeePhone detail={detail} flows={flows} valve={props.arrangement === 'variable-primary'} />
         </div>
         <div className="sr-only @max-[719px]:not-sr-only">
-          <TeeTable detail={detail} />
+          <TeeTable detail={detail} doubted={props.doubted} />
         </div>
       </div>
     </Section>

@@ -27,13 +27,13 @@ export function TeeStation({ x, y, number, label, figures, doubtTemp, doubtFlow 
       <text x="23" y="12.5" fontSize="13" fontWeight="600" fill="var(--ink)">
         {label}
       </text>
-      <text x="76" y="29" fontSize="11" textAnchor="end" fontStyle="italic" fill="var(--ink2)">
+      <text x="92" y="29" fontSize="11" textAnchor="end" fontStyle="italic" fill="var(--ink2)">
         measured
       </text>
-      <text x="140" y="29" fontSize="11" textAnchor="end" fill="var(--ink2)">
+      <text x="156" y="29" fontSize="11" textAnchor="end" fill="var(--ink2)">
         reconciled
       </text>
-      <line x1="0" x2="200" y1="34.5" y2="34.5" stroke="var(--rule)" />
+      <line x1="0" x2="198" y1="34.5" y2="34.5" stroke="var(--rule)" />
       <Row
         y={49}
         unit={print.unit('temperature')}
@@ -69,27 +69,26 @@ function Row({ y, unit, measured, reconciled, interval, doubt }: RowProps) {
       <text x="0" y={y} fontSize="11" fill="var(--ink3)">
         {unit}
       </text>
-      {doubt ? <DoubtTag right={76} y={y} text={measured} /> : null}
-      <text x="76" y={y} fontSize="13" textAnchor="end" fontStyle="italic" fill="var(--ink2)">
+      {doubt ? <DoubtTag y={y} /> : null}
+      <text x="92" y={y} fontSize="13" textAnchor="end" fontStyle="italic" fill="var(--ink2)">
         {measured}
       </text>
-      <text x="140" y={y} fontSize="17" fontWeight="600" textAnchor="end" fill="var(--ink)">
+      <text x="156" y={y} fontSize="17" fontWeight="600" textAnchor="end" fill="var(--ink)">
         {reconciled}
       </text>
-      <text x="147" y={y} fontSize="12" fill="var(--ink2)">
+      <text x="163" y={y} fontSize="12" fill="var(--ink2)">
         {interval}
       </text>
     </g>
   );
 }
 
-/** The reversed tag of a measurement that does not fit, left of its figure. */
-function DoubtTag({ right, y, text }: { right: number; y: number; text: string }) {
-  const end = right - 6 - text.length * 6.6;
+/** The reversed tag of a measurement that does not fit, between unit and figure. */
+function DoubtTag({ y }: { y: number }) {
   return (
     <g>
-      <rect x={end - 32} y={y - 10} width="32" height="13" fill="var(--ink)" />
-      <text x={end - 16} y={y - 0.5} fontSize="10.5" fontWeight="600" textAnchor="middle" fill="var(--paper)">
+      <rect x="25" y={y - 10.5} width="32" height="13" fill="var(--ink)" />
+      <text x="41" y={y - 0.5} fontSize="10.5" fontWeight="600" textAnchor="middle" fill="var(--paper)">
         doubt
       </text>
     </g>

@@ -6,6 +6,12 @@ import type { TeeFlows } from './tee-geometry';
 export type StationRecord = HourDetail['stations'][number];
 export type StationName = StationRecord['station'];
 
+/** A measurement that lies more than two standard uncertainties of the adjustment from what was worked out. */
+export interface Doubt {
+  station: StationName;
+  quantity: 'temperature' | 'flow';
+}
+
 /** The order and the numbers of the stations: round the loop, the pipe last. */
 export const STATIONS: readonly { station: StationName; number: number; label: string }[] = [
   { station: 'production-supply', number: 1, label: 'Production supply' },
@@ -47,7 +53,12 @@ export interface StationFigures {
 const SYMMETRY = 0.06;
 
 /** The printed figures of a station. The common pipe's flow carries its sign and its interval in full. */
-export function stationFigures(record: StationRecord | undefined, signed: boolean, print: BoundFormat): StationFigures {
+export function stationFigures(
+  record: StationRecord | undefined,
+  signed: boolean,
+  print: BoundFormat,
+  interval: 'in full' | 'short' = signed ? 'in full' : 'short',
+): StationFigures {
   const flow = signed ? print.bypass : print.flow;
   return {
     measuredTemp: print.temperature(record?.measuredTempF),
@@ -55,16 +66,21 @@ export function stationFigures(record: StationRecord | undefined, signed: boolea
     tempInterval: print.plusMinus(record?.tempPlusMinusF, 'temperature'),
     measuredFlow: flow(record?.measuredFlowGpm),
     reconciledFlow: flow(record?.reconciledFlowGpm),
-    flowInterval: flowInterval(record, signed, print),
+    flowInterval: flowInterval(record, signed, interval, print),
   };
 }
 
-function flowInterval(record: StationRecord | undefined, signed: boolean, print: BoundFormat): string {
+function flowInterval(
+  record: StationRecord | undefined,
+  signed: boolean,
+  form: 'in full' | 'short',
+  print: BoundFormat,
+): string {
   const lo = record?.flowLoGpm ?? null;
   const hi = record?.flowHiGpm ?? null;
   const value = record?.reconciledFlowGpm ?? null;
   if (lo === null || hi === null) return '';
-  if (!signed && value !== null && Math.abs((lo + hi) / 2 - value) <= SYMMETRY * (hi - lo)) {
+  if (form === 'short' && value !== null && Math.abs((lo + hi) / 2 - value) <= SYMMETRY * (hi - lo)) {
     return print.plusMinus((hi - lo) / 2, 'flow');
   }
   const text = signed ? print.bypassInterval(lo, hi) : print.interval(lo, hi, 'flow');

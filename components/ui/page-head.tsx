@@ -18,11 +18,15 @@ export function PageHead({ over, title, lead, block, actions }: PageHeadProps) {
     <div className="flex items-end justify-between gap-11 pt-6 pb-4.5 phone:block phone:pt-3.5">
       <div className="min-w-0 max-w-[860px]">
         {over === undefined ? null : <p className="mb-1 text-ink-2">{over}</p>}
-        <h1 className="mb-2 font-serif text-title font-medium">{title}</h1>
+        <h1 className="mb-2 font-serif text-title font-medium text-balance">{title}</h1>
         <p className="serif-numbers font-serif text-lead text-pretty">{lead}</p>
       </div>
-      {block === undefined ? null : <TitleBlock items={block} className="phone:mt-4" />}
-      {actions === undefined ? null : <div className="flex shrink-0 gap-2.5 phone:mt-4 phone:flex-wrap">{actions}</div>}
+      <div className="flex shrink-0 items-end gap-11 phone:block">
+        {block === undefined ? null : <TitleBlock items={block} className="phone:mt-4" />}
+        {actions === undefined ? null : (
+          <div className="flex shrink-0 gap-2.5 phone:mt-4 phone:flex-wrap">{actions}</div>
+        )}
+      </div>
     </div>
   );
 }

@@ -29,7 +29,7 @@ export function SectionHead({ title, sub, aside }: Pick<SectionProps, 'title' | 
     <div className="mb-2.5 flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1">
       <h2 className="font-semibold">
         {title}
-        {sub === undefined ? null : <span className="ml-3.5 font-normal text-ink-2">{sub}</span>}
+        {sub === undefined ? null : <span className="ml-3.5 font-normal text-ink-2 phone:ml-0 phone:block">{sub}</span>}
       </h2>
       {aside === undefined ? null : <div className="text-ink-2">{aside}</div>}
     </div>
