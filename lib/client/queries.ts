@@ -1,4 +1,4 @@
-import { keepPreviousData, queryOptions } from '@tanstack/react-query';
+import { infiniteQueryOptions, keepPreviousData, queryOptions } from '@tanstack/react-query';
 import { z } from 'zod';
 import { Alerts, Analysis } from '../schemas/alert';
 import { listOf } from '../schemas/common';
@@ -106,3 +106,24 @@ export const overviewQuery = () =>
     queryKey: ['overview'],
     queryFn: ({ signal }) => getJson('/overview?limit=200', listOf(OverviewPlant), signal),
   });
+
+type HoursPage = { items: HourRow[]; nextCursor: string | null };
+const hoursPages = (plantId: string, filter: HoursFilter, pageSize: number) =>
+  infiniteQueryOptions({
+    queryKey: ['plant', plantId, 'hours', 'pages', filter],
+    queryFn: ({ pageParam, signal }): Promise<HoursPage> =>
+      getJson(
+        `/plants/${plantId}/hours${queryString({ ...filter, limit: pageSize, cursor: pageParam })}`,
+        listOf(HourRow),
+        signal,
+      ),
+    initialPageParam: undefined as string | undefined,
+    getNextPageParam: (page) => page.nextCursor ?? undefined,
+    placeholderData: keepPreviousData,
+  });
+
+/** The ranked list, a screenful at a time. */
+export const rankedHoursQuery = (plantId: string, filter: HoursFilter) => hoursPages(plantId, filter, 24);
+/** Every hour of a period, in pages as large as the API gives. */
+export const allHoursQuery = (plantId: string, range: PeriodRange) =>
+  hoursPages(plantId, { ...range, rank: 'excess', all: true }, 500);

@@ -1,5 +1,6 @@
 import 'server-only';
 import { notFound } from 'next/navigation';
+import { cache } from 'react';
 import { z } from 'zod';
 import type { Access } from '../auth/access';
 import { ACTIONS, can, type Action } from '../auth/can';
@@ -13,9 +14,11 @@ export interface PagePlant {
   may: Record<Action, boolean>;
 }
 
-/** The plant a page is about, or the not-found page: another organization's plant does not exist here. */
-export async function pagePlant(params: Promise<{ plantId: string }>): Promise<PagePlant> {
-  const { plantId } = await params;
+/** The plant a page is about, or the not-found page: another organization's plant does not exist here. Read once a render. */
+export const pagePlant = async (params: Promise<{ plantId: string }>): Promise<PagePlant> =>
+  readPagePlant((await params).plantId);
+
+const readPagePlant = cache(async (plantId: string): Promise<PagePlant> => {
   const access = await requireAccess();
   if (!z.uuid().safeParse(plantId).success) notFound();
   const plant = await withAccess(access, async (em) => {
@@ -30,4 +33,4 @@ export async function pagePlant(params: Promise<{ plantId: string }>): Promise<P
     ACTIONS.map((action) => [action, can(access, plant.organizationId, action)]),
   ) as Record<Action, boolean>;
   return { access, plant, may };
-}
+});
