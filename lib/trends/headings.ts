@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { TrendError, type ReadPlan } from './types';
 
-const plain = (text: string) => text.normalize('NFKC').trim().replace(/\s+/g, ' ');
+const plain = (text: string) => text.trim().replace(/\s+/g, ' ');
 
 /**
  * The names columns go by: the heading's cells without outer blanks, `column 3` where a heading is empty, and
@@ -21,7 +21,7 @@ export function columnNames(heading: readonly string[]): string[] {
 
 /** SHA-256 of names and units, whatever their case and spacing: files with equal prints can share a mapping. */
 export function headingFingerprint(names: readonly string[], units: readonly string[] | null): string {
-  const parts = [...names, '', ...(units ?? [])].map((text) => plain(text).toLowerCase());
+  const parts = [...names, '', ...(units ?? [])].map((text) => plain(text).normalize('NFKC').toLowerCase());
   return createHash('sha256').update(parts.join('\u001f'), 'utf8').digest('hex');
 }
 

@@ -21,9 +21,9 @@ describe('days on which clocks change in America/Denver', () => {
     const read = readText(log('America/Denver', '2026-11-01T06:00Z', 25 * 60, 1), plan('America/Denver', 1));
     const samples = samplesOf(read);
     expect(samples).toHaveLength(25 * 60);
-    samples.forEach(([time, value]) =>
-      expect(Date.parse(`${time}Z`)).toBe(Date.parse('2026-11-01T06:00Z') + value * MINUTE_MS),
-    );
+    expect(
+      samples.filter(([time, value]) => Date.parse(`${time}Z`) !== Date.parse('2026-11-01T06:00Z') + value * MINUTE_MS),
+    ).toEqual([]);
     expect(read.report.problems).toEqual([
       {
         code: 'repeated-hour',
@@ -72,5 +72,7 @@ test.each([
 ])('a local day in %s from %s has %d minutes and comes back minute by minute', (timeZone, from, length) => {
   const samples = samplesOf(readText(log(timeZone, from, length, 1), plan(timeZone, 1)));
   expect(samples).toHaveLength(length);
-  samples.forEach(([time, value]) => expect(Date.parse(`${time}Z`)).toBe(Date.parse(from) + value * MINUTE_MS));
+  expect(samples.filter(([time, value]) => Date.parse(`${time}Z`) !== Date.parse(from) + value * MINUTE_MS)).toEqual(
+    [],
+  );
 });

@@ -20,6 +20,8 @@ const STEADY_F = 1.5;
 const CROSSED_F = 1;
 /** A step this near to the design flow of one unit is a unit's. */
 const STEP_SHARE = 0.25;
+/** A header whose name gives no side has at most this confidence. */
+const OPEN_SIDE = 0.6;
 /** A role is borne out by behaviour by this much. */
 const BORNE_OUT = 0.03;
 
@@ -46,11 +48,12 @@ export function weighTogether(drafts: readonly Draft[], options: PreviewOptions)
 function settleOpenSides(drafts: readonly Draft[], withRole: (role: PointRoleName) => Draft[]): void {
   const take = (draft: Draft, role: PointRoleName, other: Draft) => {
     draft.role = role;
-    draft.confidence = 0.6;
+    draft.confidence = OPEN_SIDE;
     draft.shown.push(`taken for the ${POINT_ROLES[role].label}, because "${other.column}" is the other side`);
   };
   for (const draft of drafts) {
-    if (draft.confidence > 0.55 || says(draft, 'primary', 'secondary') || draft.quantity !== 'temperature') continue;
+    if (draft.confidence > OPEN_SIDE || says(draft, 'primary', 'secondary') || draft.quantity !== 'temperature')
+      continue;
     const supply = draft.role === 'headerSupplyTemp';
     if (!supply && draft.role !== 'secondaryReturnTemp') continue;
     const [primary, secondary] = supply

@@ -25,6 +25,13 @@ export function piecesOf(name: string): string[] {
   return spaced.match(/[A-Z]+(?![a-zß-ÿ])|[A-Z]?[a-zß-ÿ]+|\d+/g) ?? [];
 }
 
+/** Pieces that may be the name of a site; words and letters that say what a point is are none. */
+function mayBePrefix(piece: string): boolean {
+  const word = piece.toLowerCase();
+  if (word.length === 1) return !'pstrfbec'.includes(word);
+  return word !== 'sp' && conceptsOfWord(word).every((concept) => ['plant', 'branch', 'counter'].includes(concept));
+}
+
 /** How many leading pieces all names share (a site or plant prefix), which say nothing about any one of them. */
 export function sharedPrefix(names: readonly (readonly string[])[]): number {
   if (names.length < 3) return 0;
@@ -32,6 +39,7 @@ export function sharedPrefix(names: readonly (readonly string[])[]): number {
   let shared = 0;
   while (
     shared < first!.length - 1 &&
+    mayBePrefix(first![shared]!) &&
     rest.every((name) => name.length > shared + 1 && name[shared] === first![shared])
   )
     shared++;
@@ -86,10 +94,12 @@ function readLetters(
     if (letter === 't') say('temperature', piece);
     if (letter === 'r') say('return', piece);
     if (letter === 'p') say('primary', piece);
-    if (letter === 'b') say('bypass', piece);
     if (letter === 'e' && chiller) say('evaporator', piece);
     if (letter === 'c' && chiller) say('condenser', piece);
   }
+  const b = letters.find(({ letter }) => letter === 'b');
+  const placed = has('primary', 'secondary', 'supply', 'return', 'leaving', 'entering', 'chiller', 'pump', 'branch');
+  if (b && !placed) say('bypass', b.piece);
   const esses = letters.filter(({ letter }) => letter === 's');
   if (esses.length === 0) return;
   const directed = has('supply', 'return', 'leaving', 'entering');

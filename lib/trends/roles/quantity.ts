@@ -100,10 +100,11 @@ function flowUnit(draft: Draft, hint: TrendUnitId | null, options: PreviewOption
     const mostGpm = TREND_UNITS[unit].toStored(most);
     return mostGpm >= one / FLOW_FACTOR && mostGpm <= one * options.unitCount * FLOW_FACTOR;
   });
-  const clause = (unit: TrendUnitId) => `${TREND_UNITS[unit].label} by the design flow`;
-  if (fits.length === 1 && metric === (fits[0] !== 'gpm')) return set(fits[0]!, 'values', clause(fits[0]!));
-  if (fits.includes('gpm') && !metric) return set('gpm', 'values', clause('gpm'));
-  return set(fits.find((unit) => metric === (unit !== 'gpm')) ?? 'gpm', 'open', 'no unit is named');
+  // Metric temperatures go with metric flows.
+  const likely = fits.filter((unit) => metric === (unit !== 'gpm'));
+  const unit = likely[0] ?? fits[0] ?? 'gpm';
+  if (likely.length === 1) return set(unit, 'values', `${TREND_UNITS[unit].label} by the design flow`);
+  return set(unit, 'open', 'no unit is named');
 }
 
 /** A named unit whose values cannot be right is left to a person. */

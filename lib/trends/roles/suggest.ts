@@ -5,7 +5,7 @@ import { unitOfCell, unitOfHeading } from '../unit-text';
 import { roleByName, unitIndexes, type NamedRole } from './by-name';
 import { roleByValues } from './by-values';
 import { weighTogether } from './context';
-import { doubt, JUST_OPEN, type Draft } from './draft';
+import { doubt, JUST_OPEN, says, type Draft } from './draft';
 import { NUMBERED, piecesOf, readName, sharedPrefix } from './names';
 import { checkUnit, OPEN_UNIT_CONFIDENCE, quantityOf, unitByValues } from './quantity';
 import { refusal } from './refusals';
@@ -33,12 +33,11 @@ export function suggestRoles(candidates: readonly Candidate[], options: PreviewO
   const drafts = startDrafts(candidates);
   for (const draft of drafts) draft.quantity = quantityOf(draft);
   const hint = usualTemperatureUnit(drafts);
-  for (const draft of drafts)
-    if (!(draft.quantity === 'temperature' && hint === null)) unitByValues(draft, hint, options);
-  // Without any named unit the water temperatures go first; the outdoor temperature follows them.
-  const water = drafts.filter((draft) => draft.unit === null && !draft.name.says.has('outdoor'));
-  for (const draft of water) unitByValues(draft, null, options);
-  for (const draft of drafts) unitByValues(draft, usualTemperatureUnit(drafts), options);
+  // Without any named unit the water temperatures go first; all else follows them.
+  const water = drafts.filter((draft) => draft.quantity === 'temperature' && !says(draft, 'outdoor', 'wetBulb'));
+  for (const draft of water) unitByValues(draft, hint, options);
+  const found = usualTemperatureUnit(drafts);
+  for (const draft of drafts) unitByValues(draft, found, options);
 
   const indexes = unitIndexes(drafts, options);
   for (const draft of drafts) decide(draft, indexes.get(draft) ?? null, options);
