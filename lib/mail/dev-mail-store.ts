@@ -42,14 +42,10 @@ const mailOf = (row: DevMailRow): DevMail => ({
 });
 
 /**
- * Keeps a mail and gives its id. Under a key that has kept one before: the same id for the same mail, 'other-mail' for another.
+ * Keeps a mail and gives its id. Under a key that has kept one before: the same id for the same mail, null for another.
  * Two at once under one key keep one.
  */
-export async function keepMail(
-  em: EntityManager,
-  mail: NewDevMail,
-  key: string | null,
-): Promise<string | 'other-mail'> {
+export async function keepMail(em: EntityManager, mail: NewDevMail, key: string | null): Promise<string | null> {
   const kept = await queryOne<{ id: string }>(
     em,
     `insert into dev_mail (idempotency_key, sender, recipients, subject, body_text, body_html, headers)
@@ -60,7 +56,7 @@ export async function keepMail(
   const before = await queryOne<DevMailRow>(em, `select ${COLUMNS} from dev_mail where idempotency_key = $1`, [key]);
   if (!before) throw new Error('The mail under this key went away while it was looked at.');
   const { id, createdAt: _, ...earlier } = mailOf(before);
-  return isDeepStrictEqual(earlier, mail) ? id : 'other-mail';
+  return isDeepStrictEqual(earlier, mail) ? id : null;
 }
 
 /** Newest first. */

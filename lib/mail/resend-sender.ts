@@ -34,10 +34,10 @@ export function resendSender({ apiKey, baseUrl, from, timeoutMs = TIMEOUT_MS }: 
 /** The SDK gives errors as values, a null status when no answer came. */
 function answerTo(error: ErrorResponse): SendAnswer {
   const { name, message } = error;
-  const status: number | null | undefined = error.statusCode;
+  const status = error.statusCode ?? null;
   // This key has sent a mail before, with other words: figures were worked out again between two tries. One mail is enough.
   if (name === 'invalid_idempotent_request') return { kind: 'sent', providerId: null };
-  const later = status === null || status === undefined || status >= 500 || LATER.has(status);
+  const later = status === null || status >= 500 || LATER.has(status);
   if (later || name === 'concurrent_idempotent_requests')
     throw new MailUnavailable(`The mail service could not take the mail (${status ?? 'no answer'}): ${message}`);
   return { kind: 'refused', words: `The mail service refused the mail (${status}): ${message}` };

@@ -115,7 +115,9 @@ describe('opening the link', () => {
     ['a token of a delivery that does not exist', () => deliveryToken(crypto.randomUUID(), SECRET)],
   ])('is a 404 with %s', async (_what, change) => {
     const { token } = await delivery();
-    await expect(AcknowledgePage(at(change(token)))).rejects.toMatchObject({ digest: expect.stringContaining('404') });
+    await expect(AcknowledgePage(at(change(token)))).rejects.toMatchObject({
+      digest: expect.stringContaining('404') as string,
+    });
   });
 });
 
@@ -128,7 +130,10 @@ describe('acknowledging', () => {
     const after = await episode('2026-07-25 00:00', '2026-07-25 02:00');
     const response = await post(acknowledge, token);
     expect(response.status).toBe(200);
-    expect(await response.json()).toEqual({ acknowledgedAt: expect.stringMatching(/^\d{2}:\d{2}$/), canUndo: true });
+    expect(await response.json()).toEqual({
+      acknowledgedAt: expect.stringMatching(/^\d{2}:\d{2}$/) as string,
+      canUndo: true,
+    });
     expect(await acknowledgedAt(id)).not.toBeNull();
     const found = await episodes();
     expect([inside, across].map((each) => found.get(each)?.acknowledged_by)).toEqual([operator.id, operator.id]);

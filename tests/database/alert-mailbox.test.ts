@@ -58,7 +58,7 @@ describe('the local fake of the mail service', () => {
     const sender = resendSender({ apiKey: 're_local', baseUrl: BASE, from: mail.from });
     const headers = { 'List-Unsubscribe': '<https://slackwater.example/a/x>' };
     const sent = await sender.send({ ...mail, to: 'operator@demo.example', headers, idempotencyKey: 'key-1' });
-    expect(sent).toEqual({ kind: 'sent', providerId: expect.any(String) });
+    expect(sent).toEqual({ kind: 'sent', providerId: expect.any(String) as string });
     const mails = (await (await list()).json()) as object[];
     expect(mails).toEqual([
       {
@@ -68,7 +68,7 @@ describe('the local fake of the mail service', () => {
         text: mail.text,
         html: mail.html,
         headers: { From: mail.from, ...headers },
-        createdAt: expect.stringMatching(/^\d{4}-\d{2}-\d{2}T.*Z$/),
+        createdAt: expect.stringMatching(/^\d{4}-\d{2}-\d{2}T.*Z$/) as string,
       },
     ]);
   });

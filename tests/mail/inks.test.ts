@@ -8,7 +8,9 @@ const tokens = readFileSync('components/ui/tokens.css', 'utf8');
 function block(opening: RegExp): Record<string, string> {
   const start = tokens.search(opening);
   const body = tokens.slice(start, tokens.indexOf('}', start));
-  return Object.fromEntries([...body.matchAll(/--([\w]+): (#[0-9a-f]{6})/g)].map(([, name, value]) => [name, value]));
+  return Object.fromEntries(
+    [...body.matchAll(/--([\w]+): (#[0-9a-f]{6})/g)].map(([, name = '', value = '']) => [name, value]),
+  );
 }
 
 /** WCAG 2.2, relative luminance and contrast ratio (definitions in section 6). */

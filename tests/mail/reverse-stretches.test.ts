@@ -13,7 +13,7 @@ const minute = 60_000;
 
 /** Slots of 5 minutes from a drawing: R is reverse, . is not, a blank has no slot. Flow and supply count up with the slot. */
 function drawn(picture: string): DaySlot[] {
-  return [...picture].flatMap((mark, at) =>
+  return picture.split('').flatMap((mark, at) =>
     mark === ' '
       ? []
       : [

@@ -1,5 +1,5 @@
 'use client';
-import { useCallback, useEffect, useRef, useState, type FormEvent } from 'react';
+import { useCallback, useEffect, useRef, useState, type SubmitEvent } from 'react';
 import { Button } from '@/components/ui/button';
 import { ErrorState } from '@/components/ui/states';
 import type { AcknowledgedState } from '../link';
@@ -42,7 +42,7 @@ export function Acknowledgement({ path, state: initial, atOnce }: Acknowledgemen
     void change('acknowledge');
   }, [atOnce, change, initial.acknowledgedAt]);
 
-  const submit = (verb: 'acknowledge' | 'undo') => (event: FormEvent) => {
+  const submit = (verb: 'acknowledge' | 'undo') => (event: SubmitEvent) => {
     event.preventDefault();
     void change(verb);
   };

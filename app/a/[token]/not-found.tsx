@@ -1,3 +1,4 @@
+import Link from 'next/link';
 import { LinkFrame } from '../link-frame';
 
 /** A link that opens nothing: changed on its way, too old, or of someone who has left. */
@@ -7,9 +8,9 @@ export default function LinkNotFound() {
       <p>
         It was not copied whole, it is more than 30 days old, or the person it was mailed to has left the organization.
         Nothing was changed. Open the mail again, or{' '}
-        <a href="/plants" className="link">
+        <Link href="/plants" className="link">
           sign in
-        </a>{' '}
+        </Link>{' '}
         and acknowledge there.
       </p>
     </LinkFrame>

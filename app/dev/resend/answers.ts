@@ -42,4 +42,4 @@ export const NewEmail = z
     text: z.string().default(''),
     headers: z.record(z.string(), z.string()).default({}),
   })
-  .refine((mail) => mail.html !== '' || mail.text !== '', { message: 'Missing `html` or `text` field.' });
+  .refine((mail) => mail.html !== '' || mail.text !== '', { error: 'Missing `html` or `text` field.' });

@@ -20,7 +20,7 @@ export async function POST(request: Request): Promise<Response> {
     return refusal(422, message.startsWith('Missing') ? 'missing_required_field' : 'validation_error', message);
   }
   const id = await withoutTenant((em) => keepMail(em, mail.data, key));
-  if (id === 'other-mail')
+  if (id === null)
     return refusal(409, 'invalid_idempotent_request', 'Same idempotency key used with a different request payload.');
   return Response.json({ id });
 }
