@@ -28,6 +28,8 @@ export async function signIn({ email, password }: { email: string; password: str
   await forgetCalls('sign-in', pair);
   await takeBack('sign-in-address', address);
   await takeBack('sign-in-place', place);
+  // Sessions that ended by themselves are cleared away whenever someone comes in.
+  await lucia().deleteExpiredSessions();
   const session = await lucia().createSession(user.id, {});
   return lucia().createSessionCookie(session.id).serialize();
 }

@@ -32,6 +32,8 @@ export interface RouteOptions<
   transaction?: Tx;
   /** Anyone may ask; `access` is then null for someone who is not signed in. */
   public?: Open;
+  /** Asked every few seconds by machines: its log line is for debugging. */
+  quiet?: boolean;
 }
 
 export interface RouteContext<
@@ -100,7 +102,7 @@ export function route<
       const refusal = error instanceof ProblemError ? error : failureProblem(error, requestId);
       response = refusal.toResponse(requestId);
     }
-    log.info(
+    log[options.quiet === true ? 'debug' : 'info'](
       {
         requestId,
         method: request.method,

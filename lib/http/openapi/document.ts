@@ -26,6 +26,7 @@ const REFUSALS: Readonly<Record<number, string>> = {
   415: 'A media type that is not taken here.',
   422: 'The Idempotency-Key was used with another body.',
   429: 'Too many tries; Retry-After says when.',
+  503: 'Not available, or not set up.',
 };
 
 const ProblemDocument = named('Problem', Problem);

@@ -22,6 +22,16 @@ export const SERVICE_OPERATIONS: readonly Operation[] = [
   },
   {
     ...common,
+    method: 'post',
+    path: '/webhooks/resend',
+    summary: 'Calls of the mail service: bounces and complaints stop further mail to that address.',
+    who: 'the mail service, by its signature',
+    body: z.looseObject({ type: z.string() }),
+    answers: { 200: { description: 'Taken.', schema: z.object({ received: z.literal(true) }) } },
+    refusals: [401, 503],
+  },
+  {
+    ...common,
     path: '/openapi.json',
     summary: 'This document.',
     answers: { 200: { description: 'OpenAPI 3.1.', schema: z.record(z.string(), z.unknown()) } },

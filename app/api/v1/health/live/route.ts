@@ -1,4 +1,4 @@
 import { route } from '@/lib/http/route';
 
 /** GET: this process answers. */
-export const GET = route({ public: true, transaction: false }, async () => ({ status: 'live' }));
+export const GET = route({ public: true, transaction: false, quiet: true }, async () => ({ status: 'live' }));
