@@ -86,7 +86,10 @@ function streamed(total: number, onPull?: (made: number) => Promise<void>): Read
   return new ReadableStream(
     {
       async pull(controller) {
-        if (made >= total) return controller.close();
+        if (made >= total) {
+          controller.close();
+          return;
+        }
         made += block.length;
         controller.enqueue(block);
         await onPull?.(made);
