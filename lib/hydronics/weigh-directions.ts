@@ -132,9 +132,20 @@ function decide(forward: WayEvidence, reverse: WayEvidence, inputs: SlotInputs, 
   }
 }
 
+/** Squared disagreement for each comparison, 1 or more: what sigmas squared are stretched by (Birge's ratio). */
+const disagreement = (way: WayEvidence): number =>
+  way.comparisons > 0 ? Math.max(1, way.chiSquare / way.comparisons) : Math.max(1, way.chiSquare);
+
+/** Sigmas that leave room for the measurements' disagreement: what differs by more than its doubt is doubted more. */
+function stretchSigmas(closest: WayEvidence, out: Verdict): void {
+  const stretch = Math.sqrt(disagreement(closest));
+  out.bypassSigma *= stretch;
+  out.blendSigma *= stretch;
+}
+
 /**
- * Measurements that no way explains: flows and blended supply as measured, odds and sigmas weakened by the disagreement
- * (its square root stretches sigmas, Birge's ratio; its whole divides log odds, which go with squared sigmas).
+ * Measurements that no way explains: flows and blended supply as measured, and odds weakened by the disagreement as the
+ * squared sigmas are.
  */
 function contradicted(
   closest: WayEvidence,
@@ -143,16 +154,13 @@ function contradicted(
   inputs: SlotInputs,
   out: Verdict,
 ): void {
-  const stretch = closest.chiSquare / Math.max(1, closest.comparisons);
   out.direction = 'unknown';
   out.reason = ranBothWays(inputs) ? 'both ways within the interval' : 'sensors contradict';
-  out.bypassSigma *= Math.sqrt(stretch);
-  out.reverseProbability = 1 / (1 + Math.exp(-logOdds / stretch));
+  out.reverseProbability = 1 / (1 + Math.exp(-logOdds / disagreement(closest)));
   if (known(reverse.mix)) {
     out.blend = reverse.mix;
     out.blendSigma = reverse.mixSigma;
   }
-  out.blendSigma *= Math.sqrt(stretch);
   out.primaryFlowGpm = inputs.primaryFlowGpm;
   out.secondaryFlowGpm = inputs.secondaryFlowGpm;
 }
@@ -169,18 +177,15 @@ function weighForwardOnly(forward: WayEvidence, reverse: WayEvidence, inputs: Sl
   if (!forward.informed) {
     out.direction = 'unknown';
     out.reason = 'no data';
-  } else if (excessDisagreement(forward) > 0) {
-    contradicted(forward, reverse.logLikelihood - forward.logLikelihood, reverse, inputs, out);
-  } else if (stillProbability(out.bypassGpm, out.bypassSigma, out.secondaryFlowGpm) > 0.5) {
-    out.direction = 'still';
-    out.reason = '';
-  } else if (normalCdf(forward.z) >= DECIDED_PROBABILITY) {
-    out.direction = 'forward';
-    out.reason = '';
-  } else {
-    out.direction = 'unknown';
-    out.reason = 'too near balance';
+    return;
   }
+  const contradicts = excessDisagreement(forward) > 0;
+  if (contradicts) contradicted(forward, reverse.logLikelihood - forward.logLikelihood, reverse, inputs, out);
+  stretchSigmas(forward, out);
+  if (contradicts) return;
+  if (stillProbability(out.bypassGpm, out.bypassSigma, out.secondaryFlowGpm) > 0.5) out.direction = 'still';
+  else out.direction = normalCdf(forward.z) >= DECIDED_PROBABILITY ? 'forward' : 'unknown';
+  out.reason = out.direction === 'unknown' ? 'too near balance' : '';
 }
 
 /**
@@ -217,8 +222,10 @@ export function weighDirections(
   out.blend = mixed.mean;
   out.blendSigma = mixed.sigma;
   const closest = excessDisagreement(forward) < excessDisagreement(reverse) ? forward : reverse;
-  if (excessDisagreement(closest) > 0) contradicted(closest, logOdds, reverse, inputs, out);
-  else decide(forward, reverse, inputs, out);
+  const noWayFits = excessDisagreement(closest) > 0;
+  if (noWayFits) contradicted(closest, logOdds, reverse, inputs, out);
+  stretchSigmas(closest, out);
+  if (!noWayFits) decide(forward, reverse, inputs, out);
 }
 
 function settleNothing(inputs: SlotInputs, forward: WayEvidence, out: Verdict): void {
