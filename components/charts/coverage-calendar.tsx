@@ -35,7 +35,7 @@ export function CoverageCalendar({ from, rows, onPick }: CoverageCalendarProps) 
   const count = Math.max(0, ...rows.map((row) => row.days.length));
   const days = Array.from({ length: count }, (_, index) => addLocalDays(from, index));
   const weeks = days.filter((day, index) => index === 0 || new Date(`${day}T00:00:00Z`).getUTCDay() === 1);
-  const [box, widthPx] = useWidth<HTMLDivElement>(1140);
+  const [box, widthPx] = useWidth(1140);
   const most = Math.max(1, Math.floor(widthPx / 60));
   const every = Math.max(1, Math.ceil(weeks.length / most));
   const at = (day: string) => (days.indexOf(day) / Math.max(1, count)) * 100;

@@ -102,7 +102,7 @@ const PAINT = {
 
 /** Hidden from readers: the numbers are there. Hair-lines carry the running sum from bar to bar. */
 function Bars({ lines, rowPx }: { lines: readonly LedgerLine[]; rowPx: number }) {
-  const [box, widthPx] = useWidth<HTMLDivElement>(330);
+  const [box, widthPx] = useWidth(330);
   const bars = ledgerBars(lines);
   const ends = bars.flatMap((bar) => (bar === null ? [] : [bar.fromF, bar.toF]));
   const lo = Math.min(0, ...ends);

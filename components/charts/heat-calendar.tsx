@@ -35,7 +35,7 @@ export function HeatCalendar(props: HeatCalendarProps) {
   const { hours, fromMs, toMs, timeZone, referenceGpm = 1100, directionOf, ringed = null, onHover, onSelect } = props;
   const { units } = useUnits();
   const phone = usePhone();
-  const [box, widthPx] = useWidth<HTMLDivElement>(454);
+  const [box, widthPx] = useWidth(454);
   const rows = useMemo(
     () => heatRows(hours, fromMs, toMs, timeZone, directionOf),
     [hours, fromMs, toMs, timeZone, directionOf],

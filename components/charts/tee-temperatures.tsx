@@ -19,7 +19,7 @@ import { PlotCanvas, type Limits, type Painter } from './plot-canvas';
 import { niceTicks, nudgeApart } from './scales';
 import { fourOf, temperatureColumns, temperatureLimits, type TemperatureColumns } from './temperature-columns';
 import { TimeHeads } from './time-heads';
-import { columnLevel, timeColumns } from './time-columns';
+import { columnLevel, gridLines, timeColumns } from './time-columns';
 import { createTimeView, useTimeView, useTimeViewState, type TimeRange } from './time-view';
 
 export interface TeeTemperaturesProps {
@@ -132,10 +132,9 @@ function Plot({ columns, range, timeZone, names, view }: PlotProps) {
   const limits = useMemo(() => temperatureLimits(columns), [columns]);
   const [lo, hi] = limits;
   const xLimits: Limits = useMemo(() => [range.fromMs, range.toMs], [range]);
-  const heads = useMemo(
-    () => timeColumns(range.fromMs, range.toMs, timeZone, columnLevel(range.fromMs, range.toMs, widthPx)),
-    [range, timeZone, widthPx],
-  );
+  const level = columnLevel(range.fromMs, range.toMs, widthPx);
+  const heads = useMemo(() => timeColumns(range.fromMs, range.toMs, timeZone, level), [range, timeZone, level]);
+  const verticals = useMemo(() => gridLines(heads, level, timeZone), [heads, level, timeZone]);
   const ticks = useMemo(() => {
     const shown = niceTicks(toPrinted(lo, 'temperature', units), toPrinted(hi, 'temperature', units));
     return shown.map((label) => ({ label, tempF: units === 'ip' ? label : label * 1.8 + 32 }));
@@ -143,10 +142,14 @@ function Plot({ columns, range, timeZone, names, view }: PlotProps) {
   const data = useMemo<uPlot.AlignedData>(() => [columns.centresMs, ...fourOf(columns)], [columns]);
   const draw = useCallback(
     (painter: Painter) => {
-      drawGrid(painter, ticks.map((tick) => tick.tempF), heads); // prettier-ignore
+      drawGrid(
+        painter,
+        ticks.map((tick) => tick.tempF),
+        verticals,
+      );
       drawTemperatures(painter, columns);
     },
-    [columns, ticks, heads],
+    [columns, ticks, verticals],
   );
   const atY = (tempF: number) => ((hi - tempF) / (hi - lo)) * HEIGHT_PX;
   return (

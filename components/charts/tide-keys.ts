@@ -25,7 +25,10 @@ export function tideKey(event: Pick<KeyboardEvent, 'key' | 'shiftKey'>, context:
     follow(view, centre(mark), context.leastMs);
   };
   const step = (by: 1 | -1) => {
-    if (here === null) return to(by > 0 ? firstIn(marks, range.fromMs) : lastIn(marks, range.toMs));
+    if (here === null) {
+      to(by > 0 ? firstIn(marks, range.fromMs) : lastIn(marks, range.toMs));
+      return;
+    }
     const next = event.shiftKey ? nearest(marks, centre(here) + by * DAY_MS) : marks[here.index + by];
     to(next ?? here);
   };

@@ -23,7 +23,7 @@ const HOUR_MS = 3_600_000;
 /** Inside and around one hour, interval by interval. Text is the page's own; only ink is drawn. */
 export function TideMinutes({ tide, timeZone, hourStart, heightPx = 84 }: TideMinutesProps) {
   const { units } = useUnits();
-  const [box, widthPx] = useWidth<HTMLDivElement>(800);
+  const [box, widthPx] = useWidth(800);
   const fromMs = Date.parse(tide.from);
   const toMs = Date.parse(tide.to);
   const marks = tideMarks(tide);

@@ -24,6 +24,7 @@ export interface TidePlotProps {
   marks: readonly TideMark[];
   extent: Extent;
   columns: readonly TimeColumn[];
+  verticals: readonly { startMs: number; opensDay: boolean }[];
   view: TimeView;
   leastMs: number;
   heightPx: number;
@@ -36,7 +37,7 @@ export interface TidePlotProps {
 
 /** The strip's drawing: heads, axis, canvas, words at the right. */
 export function TidePlot(props: TidePlotProps) {
-  const { marks, extent, columns, view, leastMs, heightPx, notes, pending, frameWords, onWidth } = props;
+  const { marks, extent, columns, verticals, view, leastMs, heightPx, notes, pending, frameWords, onWidth } = props;
   const { units } = useUnits();
   const range = useTimeViewState(view, (state) => state.range);
   const xLimits: Limits = useMemo(() => [range.fromMs, range.toMs], [range]);
@@ -57,13 +58,13 @@ export function TidePlot(props: TidePlotProps) {
       drawGrid(
         painter,
         ticks.filter((tick) => tick !== 0),
-        columns,
+        verticals,
       );
       if (marks.length === 0) drawEmptyStill(painter);
       else drawTide(painter, marks);
       if (pending !== null) drawFence(painter, { startMs: pending.fromMs, endMs: pending.toMs });
     },
-    [marks, ticks, columns, pending],
+    [marks, ticks, verticals, pending],
   );
   const atX = (epochMs: number) => `${((epochMs - range.fromMs) / (range.toMs - range.fromMs)) * 100}%`;
   const atY = (flowGpm: number) => `${((extent.hiGpm - flowGpm) / (extent.hiGpm - extent.loGpm)) * 100}%`;

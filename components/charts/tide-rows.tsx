@@ -47,7 +47,7 @@ export function TideRows(props: TideRowsProps) {
       return { startMs, endMs, marks: inside, reverseMinutes };
     });
   }, [tide, marks, fromMs, toMs, timeZone]);
-  const [plot, widthPx] = useWidth<HTMLSpanElement>(PLOT_AT_FIRST_PX);
+  const [plot, widthPx] = useWidth(PLOT_AT_FIRST_PX);
   return (
     <div role="group" aria-label={label}>
       <div aria-hidden="true" className="grid grid-cols-[56px_minmax(0,1fr)_56px] text-micro text-ink-2">

@@ -17,7 +17,7 @@ import { TideRows } from './tide-rows';
 import { TideSummary } from './tide-summary';
 import { tideTable } from './tide-table';
 import { barSentence, deepestReverse, stripSentence } from './tide-words';
-import { columnLevel, timeColumns } from './time-columns';
+import { columnLevel, gridLines, timeColumns } from './time-columns';
 import { useTimeView, useTimeViewState, type TimeView } from './time-view';
 import { useThrottled } from './use-throttled';
 
@@ -147,10 +147,9 @@ function Strip(props: StripProps) {
   const { view, marks, extent, label, leastMs, onKeyDown } = props;
   const [widthPx, setWidthPx] = useState(WIDTH_AT_FIRST_PX);
   const range = useTimeViewState(view, (state) => state.range);
-  const columns = useMemo(
-    () => timeColumns(range.fromMs, range.toMs, timeZone, columnLevel(range.fromMs, range.toMs, widthPx)),
-    [range, timeZone, widthPx],
-  );
+  const level = columnLevel(range.fromMs, range.toMs, widthPx);
+  const columns = useMemo(() => timeColumns(range.fromMs, range.toMs, timeZone, level), [range, timeZone, level]);
+  const verticals = useMemo(() => gridLines(columns, level, timeZone), [columns, level, timeZone]);
   const cells = useMemo(
     () => tideTable(tide?.bars ?? NOTHING, columns, timeZone, days),
     [tide, columns, timeZone, days],
@@ -163,6 +162,7 @@ function Strip(props: StripProps) {
           marks={marks}
           extent={extent}
           columns={columns}
+          verticals={verticals}
           view={view}
           leastMs={leastMs}
           heightPx={PLOT_HEIGHT_PX}

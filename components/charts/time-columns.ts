@@ -59,6 +59,19 @@ export function timeColumns(fromMs: number, toMs: number, timeZone: string, leve
     .filter((column) => column.endMs > column.startMs);
 }
 
+/** Vertical lines of the plot: the columns' own, and between those of weeks the days', in the fainter ink. */
+export function gridLines(
+  columns: readonly TimeColumn[],
+  level: ColumnLevel,
+  timeZone: string,
+): { startMs: number; opensDay: boolean }[] {
+  if (level !== 'week') return [...columns];
+  const fromMs = columns[0]?.startMs ?? 0;
+  const days = localDayStarts(fromMs, columns.at(-1)?.endMs ?? fromMs, timeZone);
+  const strong = new Set(columns.map((column) => column.startMs));
+  return days.filter((ms) => ms >= fromMs).map((startMs) => ({ startMs, opensDay: strong.has(startMs) }));
+}
+
 function boundaries(fromMs: number, toMs: number, timeZone: string, level: ColumnLevel): Omit<TimeColumn, 'endMs'>[] {
   const days = localDayStarts(fromMs, toMs, timeZone);
   if (level === 'hour' || level === 'quarter' || level === 'half') {

@@ -30,14 +30,12 @@ export interface TimeView {
   back: () => void;
 }
 
-export function createTimeView(bounds: TimeRange, onRange?: (range: TimeRange, whole: boolean) => void): TimeView {
+export function createTimeView(bounds: TimeRange): TimeView {
   let state: TimeViewState = { range: bounds, cursorMs: null, pinned: false };
   const before: TimeRange[] = [];
   const listeners = new Set<() => void>();
   const set = (patch: Partial<TimeViewState>) => {
-    const earlier = state;
     state = { ...state, ...patch };
-    if (state.range !== earlier.range) onRange?.(state.range, state.range === bounds);
     for (const listener of listeners) listener();
   };
   const inside = ({ fromMs, toMs }: TimeRange): TimeRange => {
@@ -90,19 +88,23 @@ export interface TimeViewProviderProps extends TimeRange {
 
 /** Charts inside share range and cursor. A new period starts afresh: give it another `key` or other ends. */
 export function TimeViewProvider({ fromMs, toMs, onRange, children }: TimeViewProviderProps) {
-  const view = useOwnView({ fromMs, toMs }, onRange);
+  const view = useOwnView({ fromMs, toMs });
+  useEffect(() => {
+    let shown = view.get().range;
+    return view.subscribe(() => {
+      const { range } = view.get();
+      if (range === shown) return;
+      shown = range;
+      onRange?.(range, range === view.bounds);
+    });
+  }, [view, onRange]);
   return <TimeViewContext value={view}>{children}</TimeViewContext>;
 }
 
-function useOwnView({ fromMs, toMs }: TimeRange, onRange?: TimeViewProviderProps['onRange']): TimeView {
-  const [told] = useState<{ current: TimeViewProviderProps['onRange'] }>({ current: onRange });
-  useEffect(() => {
-    told.current = onRange;
-  });
-  const make = () => createTimeView({ fromMs, toMs }, (range, whole) => told.current?.(range, whole));
-  const [view, setView] = useState(make);
+function useOwnView({ fromMs, toMs }: TimeRange): TimeView {
+  const [view, setView] = useState(() => createTimeView({ fromMs, toMs }));
   if (view.bounds.fromMs !== fromMs || view.bounds.toMs !== toMs) {
-    const fresh = make();
+    const fresh = createTimeView({ fromMs, toMs });
     setView(fresh);
     return fresh;
   }

@@ -5,10 +5,8 @@ import { useEffect, useState } from 'react';
  * The width an element has, so that an SVG can be drawn in true pixels: stretching one would stretch its hatch. Before
  * the first measure (and on the server) `atFirstPx`.
  */
-export function useWidth<Kind extends Element>(
-  atFirstPx: number,
-): [ref: (element: Kind | null) => void, widthPx: number] {
-  const [element, setElement] = useState<Kind | null>(null);
+export function useWidth(atFirstPx: number): [ref: (element: Element | null) => void, widthPx: number] {
+  const [element, setElement] = useState<Element | null>(null);
   const [widthPx, setWidthPx] = useState(atFirstPx);
   useEffect(() => {
     if (element === null) return;

@@ -23,7 +23,7 @@ export interface HeaderProps {
 
 /** 50 px and one ink rule: wordmark, plant, tabs, units, person. Where it is too narrow for all, the tabs are a second row. */
 export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps) {
-  const pathname = usePathname() ?? '';
+  const pathname = usePathname();
   const router = useRouter();
   const [switching, setSwitching] = useState(false);
   const [help, setHelp] = useState(false);

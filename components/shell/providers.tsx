@@ -1,7 +1,7 @@
 'use client';
 // First: every schema made after it must find zod without code generation.
 import './zod-jitless';
-import { QueryClient, QueryClientProvider, isServer } from '@tanstack/react-query';
+import { QueryClient, QueryClientProvider } from '@tanstack/react-query';
 import { setNonce } from 'get-nonce';
 import type { ReactNode } from 'react';
 import { Toaster } from 'sonner';
@@ -26,6 +26,7 @@ const makeQueryClient = (): QueryClient =>
     },
   });
 
+const isServer = typeof window === 'undefined';
 let browserClient: QueryClient | undefined;
 /** One client for the life of the tab; on the server one a request, or answers would cross between people. */
 const queryClient = (): QueryClient => (isServer ? makeQueryClient() : (browserClient ??= makeQueryClient()));
