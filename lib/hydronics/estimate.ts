@@ -120,8 +120,8 @@ function writeOff(out: Estimates, slot: number, inputs: SlotInputs): void {
  *
  * Both directions are weighed (way-evidence.ts) and mixed by their probability (weigh-directions.ts). Flows are taken at
  * one density: their volume differs by less than 0.07 % between the tees, far below any meter's doubt; the mixing of
- * temperatures is exact in enthalpy. Where the measurements agree with neither direction, the direction is unknown with
- * the reason 'sensors contradict' and the interval is widened by the disagreement.
+ * temperatures is exact in enthalpy. Intervals are widened by what the measurements disagree; where they fit neither
+ * direction, it is unknown with the reason 'sensors contradict', and flows and supply are passed on as measured.
  *
  * Shapes  every channel has length n; so has every result channel. Codes index DIRECTIONS, STATES and REASONS.
  * Units   as named: deg F, gpm, tons. Bypass is positive from supply to return.

@@ -95,7 +95,8 @@ function setFromOne(evidence: FlowEvidence, out: FlowFit): void {
  *
  * Units   gpm; fraction 0 to 1. With no flow at all the answer is in shares of the main flow and `relative` is true.
  * Gaps    fewer than two measurements: only what one measurement says, the rest NaN; chi-square 0, redundancy 0.
- * Source  weighted least squares, JCGM 100:2008 annex H.3 form; the balance of methods in lib/hydronics/tees.ts.
+ * Source  weighted least squares by the normal equations (S. Narasimhan, C. Jordache, Data Reconciliation and Gross Error
+ *         Detection, 2000, ch. 3); the fraction: lib/hydronics/tees.ts.
  */
 export function fitFlows(evidence: FlowEvidence, out: FlowFit): void {
   const wMain = weight(evidence.mainGpm, evidence.mainSigma);
