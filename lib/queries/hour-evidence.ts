@@ -266,7 +266,7 @@ function price(row: HourFacts['row'], plant: HourFacts['plant']): string {
     row.excessCost !== null && plant.currency !== null
       ? `, ${formatMoney(row.excessCost, 'hour')}${NO_BREAK_SPACE}${plant.currency}`
       : '';
-  return ` It took ${energy}${money}.`;
+  return ` It took ${energy} more${money}.`;
 }
 
 const CURED: Readonly<Record<HourFacts['row']['cause'], string>> = {

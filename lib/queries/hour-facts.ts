@@ -127,7 +127,8 @@ export function workOutHour(slots: readonly number[], stepMinutes: number, value
   };
 }
 
+/** The direction of most minutes; on a tie the more cautious word, and `unknown` of no minutes at all. */
 function mostMinutes(minutes: Readonly<Record<Direction, number>>): Direction {
-  const order: readonly Direction[] = ['reverse', 'forward', 'still', 'unknown'];
+  const order: readonly Direction[] = ['unknown', 'reverse', 'forward', 'still'];
   return order.reduce((most, each) => (minutes[each] > minutes[most] ? each : most));
 }
