@@ -155,9 +155,9 @@ export async function writeEstimates(scene: Scene): Promise<void> {
     channels: Object.fromEntries(
       RESULT_CHANNELS.map((channel) => [
         channel,
-        Float64Array.from({ length: SLOTS }, (_, slot) => slotOf(day, slot)[channel] ?? NaN),
+        Float32Array.from({ length: SLOTS }, (_, slot) => slotOf(day, slot)[channel] ?? NaN),
       ]),
-    ) as Record<ResultChannel, Float64Array>,
+    ) as Record<ResultChannel, Float32Array>,
   }));
   await asWorker(scene, () =>
     withTenant({ organizationIds: [organizationId] }, (em) =>
