@@ -181,7 +181,7 @@ function titleBlock(plant: Plant, { hour, steadyIntervals, intervals }: HourDeta
       value:
         hour.low === 0
           ? 'not low'
-          : `${hour.cause === 'none' ? 'none that counts' : causeWords(hour.cause)}${hour.causeConfidence === null ? '' : `, confidence ${formatProbability(hour.causeConfidence)}`}`,
+          : `${causeWords(hour.cause)}${hour.causeConfidence === null ? '' : `, confidence ${formatProbability(hour.causeConfidence)}`}`,
     },
     {
       term: 'load',

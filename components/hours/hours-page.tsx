@@ -89,10 +89,7 @@ function PlantHours({ plant }: { plant: Plant }) {
             onChange={setCause}
             aria-label="Cause"
             className="w-[190px]"
-            options={[
-              { value: ANY, label: 'all' },
-              ...CAUSES.map((value) => ({ value, label: value === 'none' ? 'none that counts' : causeWords(value) })),
-            ]}
+            options={[{ value: ANY, label: 'all' }, ...CAUSES.map((value) => ({ value, label: causeWords(value) }))]}
           />
         </div>
       </div>

@@ -167,7 +167,7 @@ export function HoursTable({
                 </span>
               </Cell>
               <td className="phone:col-start-2">
-                {hour.cause === 'none' ? <span className="text-ink-2">none that counts</span> : causeWords(hour.cause)}{' '}
+                {causeWords(hour.cause)}{' '}
                 {hour.causeConfidence === null || hour.cause === 'none' ? null : (
                   <span className="text-micro text-ink-3">{formatProbability(hour.causeConfidence)}</span>
                 )}

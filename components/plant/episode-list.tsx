@@ -71,7 +71,7 @@ function EpisodeItem({ plant, episode, mayAcknowledge }: { plant: Plant; episode
       : `${formatMoney(episode.excessCost, 'hour')} ${plant.tariff?.currency ?? ''}`.trim(),
   ].filter((fact) => fact !== null);
   return (
-    <li className="grid grid-cols-[20px_minmax(0,1fr)_auto] gap-x-3 border-b border-grid py-2">
+    <li className="grid grid-cols-[20px_minmax(0,1fr)_auto] gap-x-3 items-start border-b border-grid py-2">
       <DirectionMark
         direction={reverse ? 'reverse' : 'forward'}
         label={reverse ? 'reverse' : 'not reverse'}

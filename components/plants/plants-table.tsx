@@ -141,14 +141,16 @@ function PlantRow({ plant, position, onOpen }: { plant: OverviewPlant; position:
         if (!(event.target as HTMLElement).closest('a')) onOpen();
       }}
     >
-      <td className="font-serif text-[24px] leading-7 font-medium">{position}</td>
-      <RowHead className="align-top!">
+      <td className="font-serif text-[24px] leading-7 font-medium align-middle! phone:col-start-1 phone:row-start-1">
+        {position}
+      </td>
+      <RowHead className="align-middle! phone:col-start-2 phone:row-start-1">
         <Link href={plantPath(plant.id)} className="link text-[15px] font-semibold">
           {plant.name}
         </Link>
         <span className="block text-ink-2">{plant.organizationName}</span>
       </RowHead>
-      <td className="phone:col-span-3 phone:row-start-2 phone:pt-2!">
+      <td className="align-middle! phone:col-span-3 phone:row-start-2 phone:pt-2!">
         <div className="w-[322px] phone:w-full">
           <TideStripSmall
             tide={tideOf(plant)}
@@ -159,32 +161,32 @@ function PlantRow({ plant, position, onOpen }: { plant: OverviewPlant; position:
           />
         </div>
       </td>
-      <td className="max-w-[210px] text-ink-2 phone:col-span-3 phone:max-w-none">{plant.why}</td>
-      <Cell numeric className="font-semibold phone:hidden">
+      <td className="max-w-[210px] align-middle! text-ink-2 phone:col-span-3 phone:max-w-none">{plant.why}</td>
+      <Cell numeric className="align-middle! font-semibold phone:hidden">
         {yesterday ? formatHoursMinutes(yesterday.reverseMinutes) : MISSING}
       </Cell>
-      <Cell numeric className="phone:hidden">
+      <Cell numeric className="align-middle! phone:hidden">
         {yesterday?.largestReverseFlowGpm == null ? MISSING : print.bypass(-yesterday.largestReverseFlowGpm)}
       </Cell>
-      <Cell numeric className="phone:hidden">
+      <Cell numeric className="align-middle! phone:hidden">
         {print.temperature(yesterday?.warmestSupplyF)}
       </Cell>
-      <Cell numeric className="phone:hidden">
+      <Cell numeric className="align-middle! phone:hidden">
         {formatNumber(week.lowHours)}
       </Cell>
-      <Cell numeric className="phone:hidden">
+      <Cell numeric className="align-middle! phone:hidden">
         {print.deltaT(week.deltaTF)} <span className="text-ink-3">/</span> {print.deltaT(week.productionDeltaTF)}
       </Cell>
-      <Cell numeric className="font-semibold phone:row-start-1">
+      <Cell numeric className="align-middle! font-semibold phone:col-start-3 phone:row-start-1">
         {cost}
         {plant.currency && cost !== MISSING ? (
           <span className="text-micro font-normal text-ink-3"> {plant.currency}</span>
         ) : null}
       </Cell>
-      <Cell numeric className="phone:hidden">
+      <Cell numeric className="align-middle! phone:hidden">
         <Through plant={plant} stale={stale} />
       </Cell>
-      <Cell numeric className="phone:hidden">
+      <Cell numeric className="align-middle! phone:hidden">
         {plant.openEpisodes === 0 ? MISSING : plant.openEpisodes}
       </Cell>
       <td className="hidden phone:col-span-3 phone:mt-2 phone:block">

@@ -6,6 +6,7 @@ import { Section } from '@/components/ui/section';
 import { EmptyState, ErrorState, LoadingWords } from '@/components/ui/states';
 import { formatDayTime } from '@/lib/client/format-time';
 import { plantQuery, uploadsQuery } from '@/lib/client/queries';
+import { CoverageSection } from './coverage-section';
 import { DropZone } from './drop-zone';
 import { UploadTable } from './upload-table';
 import { uploadsLead } from './uploads-words';
@@ -56,6 +57,7 @@ export function UploadsPage({ plantId, limitBytes, may }: UploadsPageProps) {
           <UploadTable plantId={plantId} timeZone={zone} uploads={data.items} sending={sending} may={may} />
         )}
       </Section>
+      {plant?.dataThrough == null ? null : <CoverageSection plant={{ ...plant, dataThrough: plant.dataThrough }} />}
     </Page>
   );
 }

@@ -2,6 +2,7 @@ import { infiniteQueryOptions, keepPreviousData, queryOptions } from '@tanstack/
 import { z } from 'zod';
 import { Alerts, Analysis } from '../schemas/alert';
 import { listOf } from '../schemas/common';
+import { Coverage } from '../schemas/data-requests';
 import { OverviewPlant } from '../schemas/overview';
 import { Plant } from '../schemas/plant';
 import { Episode, HourDetail, HourRow, PlantDay, Tide, type Rank } from '../schemas/results';
@@ -127,3 +128,10 @@ export const rankedHoursQuery = (plantId: string, filter: HoursFilter) => hoursP
 /** Every hour of a period, in pages as large as the API gives. */
 export const allHoursQuery = (plantId: string, range: PeriodRange) =>
   hoursPages(plantId, { ...range, rank: 'excess', all: true }, 500);
+
+export const coverageQuery = (plantId: string, period: PeriodRange) =>
+  queryOptions({
+    queryKey: ['plant', plantId, 'coverage', period],
+    queryFn: ({ signal }) => getJson(`/plants/${plantId}/coverage${queryString({ ...period })}`, Coverage, signal),
+    placeholderData: keepPreviousData,
+  });

@@ -3,8 +3,9 @@ import type { HourDetail, HourRow } from '../schemas/results';
 export type Direction = HourDetail['direction'];
 export type Cause = HourRow['cause'];
 
-/** A cause as pages write it: `reverse-flow` is "reverse flow". */
-export const causeWords = (cause: Cause): string => cause.replaceAll('-', ' ');
+/** A cause as pages write it: `reverse-flow` is "reverse flow"; in a low hour `none` means that no cure would save enough. */
+export const causeWords = (cause: Cause): string =>
+  cause === 'none' ? 'none that counts' : cause.replaceAll('-', ' ');
 
 /** What a direction is, in the few words that stand beside its name. */
 export const DIRECTION_MEANS: Readonly<Record<Direction, string>> = {
