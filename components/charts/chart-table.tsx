@@ -11,8 +11,8 @@ export interface ChartTableProps {
 /** The numbers of a chart in its place: scrolls inside its own frame, which the keyboard can reach. */
 export function ChartTable({ caption, head, rows }: ChartTableProps) {
   return (
-    <div tabIndex={0} role="region" aria-label={caption} className="max-h-105 overflow-y-auto border-y border-rule">
-      <Table caption={caption} dense className="narrow">
+    <div tabIndex={0} role="region" aria-label={caption} className="max-h-105 overflow-auto border-y border-rule">
+      <Table bare caption={caption} dense className="narrow">
         <thead className="sticky top-0 bg-paper">
           <tr>
             {head.map(({ label, numeric }, index) => (

@@ -132,7 +132,7 @@ function CoverageTable({
   const starts = weeks.map((week) => days.indexOf(week));
   return (
     <div className="sr-only">
-      <Table caption="Coverage: share of each week that arrived and passed, by point">
+      <Table bare caption="Coverage: share of each week that arrived and passed, by point">
         <thead>
           <tr>
             <HeadCell>point</HeadCell>

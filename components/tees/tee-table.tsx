@@ -24,7 +24,7 @@ export function TeeTable({ detail, doubted = [] }: { detail: HourDetail; doubted
       </span>
     );
   return (
-    <Table caption="Stations of the tee sheet: measured beside reconciled">
+    <Table bare caption="Stations of the tee sheet: measured beside reconciled">
       <thead>
         <tr>
           <HeadCell>

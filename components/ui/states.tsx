@@ -66,9 +66,9 @@ export function PartialNote({ children }: { children: ReactNode }) {
   );
 }
 
-/** Wraps what is drawn from an old answer: ink at 0.55, still readable, still usable. */
+/** Wraps what is drawn from an old answer: the drawings' ink at 0.55, the words and figures in full, or none could read them. */
 export function Stale({ stale, children }: { stale: boolean; children: ReactNode }) {
-  return <div style={stale ? { opacity: 'var(--stale)' } : undefined}>{children}</div>;
+  return <div className={stale ? 'stale' : undefined}>{children}</div>;
 }
 
 /** A message that belongs to a form or a section: ink bar at its left, the triangle, words. */

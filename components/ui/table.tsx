@@ -1,4 +1,5 @@
 import type { ComponentProps, ReactNode } from 'react';
+import { TableFrame } from './table-frame';
 
 export interface TableProps extends ComponentProps<'table'> {
   /** Names the table; hidden from sight unless `showCaption`, since a section's heading usually says it. */
@@ -10,18 +11,20 @@ export interface TableProps extends ComponentProps<'table'> {
   ruled?: boolean;
   /** Rows answer the pointer. */
   hover?: boolean;
+  /** No scrolling frame: a table that is never too wide, or that stands hidden for readers. */
+  bare?: boolean;
 }
 
 /** A table with the house's lines. Wide ones scroll inside their own frame, never the page. */
-export function Table({ caption, showCaption, dense, ruled, hover, className = '', children, ...rest }: TableProps) {
-  return (
-    <div className="max-w-full overflow-x-auto">
-      <table className={`table ${className}`} data-dense={dense} data-ruled={ruled} data-hover={hover} {...rest}>
-        <caption className={showCaption ? 'mb-2' : 'sr-only'}>{caption}</caption>
-        {children}
-      </table>
-    </div>
+export function Table(props: TableProps) {
+  const { caption, showCaption, dense, ruled, hover, bare = false, className = '', children, ...rest } = props;
+  const table = (
+    <table className={`table ${className}`} data-dense={dense} data-ruled={ruled} data-hover={hover} {...rest}>
+      <caption className={showCaption ? 'mb-2' : 'sr-only'}>{caption}</caption>
+      {children}
+    </table>
   );
+  return bare ? table : <TableFrame label={typeof caption === 'string' ? caption : undefined}>{table}</TableFrame>;
 }
 
 export interface HeadCellProps extends ComponentProps<'th'> {
