@@ -9,7 +9,7 @@ import { localDaysOf, localDayStart, MINUTE_MS } from './local-time';
 import { apiInstant, blockDays, type PeriodMs } from './period';
 
 /** Beyond this many values the hourly bands are counted instead: a bar a day cannot show the difference. */
-const MOST_VALUES = 1_500_000;
+const MOST_VALUES = 500_000;
 /** UTC days of samples held in memory at once. */
 const SLICE_DAYS = 31;
 
