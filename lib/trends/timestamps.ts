@@ -20,6 +20,8 @@ const ZERO = 48;
 const COLON = 58;
 const DOT = 46;
 const COMMA = 44;
+const SLASH = 47;
+const SPACE = 32;
 const PLUS = 43;
 const MINUS = 45;
 
@@ -142,13 +144,15 @@ export class StampParser {
     return this.text.slice(start, this.at);
   }
 
-  private skipSeparator(): boolean {
+  /** The sign between two parts of a date (a blank when there is nothing else), or 0 when there is none. */
+  private skipSeparator(): number {
     const start = this.at;
     this.skipSpaces();
     const code = this.code();
-    if (code === 47 || code === MINUS || code === DOT || code === COMMA) this.at++;
+    const sign = code === SLASH || code === MINUS || code === DOT || code === COMMA;
+    if (sign) this.at++;
     this.skipSpaces();
-    return this.at > start;
+    return this.at === start ? 0 : sign ? code : SPACE;
   }
 
   private readDate(): boolean {
@@ -168,7 +172,9 @@ export class StampParser {
     }
     if (firstDigits === 8 && (this.form === 'iso' || this.form === 'year/month/day'))
       return this.setDate(Math.floor(first / 10_000), Math.floor(first / 100) % 100, first % 100, 4);
-    if ((named === 0 && (firstDigits === 0 || firstDigits > 4)) || !this.skipSeparator()) return false;
+    if (named === 0 && (firstDigits === 0 || firstDigits > 4)) return false;
+    const sign = this.skipSeparator();
+    if (sign === 0) return false;
     let second = 0;
     let secondDigits = 0;
     if (named === 0 && isLetter(this.code())) {
@@ -179,7 +185,9 @@ export class StampParser {
       secondDigits = this.digits;
       if (secondDigits === 0) return false;
     }
-    if (!this.skipSeparator()) return false;
+    // 08/28 00:05 has no year: numbers are parted by the same sign twice.
+    const again = this.skipSeparator();
+    if (again === 0 || (named === 0 && again !== sign)) return false;
     const third = this.readNumber();
     const thirdDigits = this.digits;
     if (thirdDigits === 0) return false;

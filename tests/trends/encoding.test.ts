@@ -1,12 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { detectEncoding, TextStream } from '@/lib/trends/encoding';
-import { bytesOf } from './support';
+import { bytesOf, utf16Of } from './support';
 
-const utf16 = (text: string, littleEndian: boolean, mark: boolean): Uint8Array => {
-  const view = new DataView(new ArrayBuffer((text.length + (mark ? 1 : 0)) * 2));
-  [...(mark ? '\ufeff' : ''), ...text].forEach((char, i) => view.setUint16(i * 2, char.charCodeAt(0), littleEndian));
-  return new Uint8Array(view.buffer);
-};
 const TEXT = 'Time,Temp °C\n2026-07-20 00:00,6.7\n';
 const latin1 = Uint8Array.from(TEXT, (char) => char.charCodeAt(0));
 
@@ -14,10 +9,10 @@ describe('detectEncoding', () => {
   test.each([
     ['UTF-8 without a mark', bytesOf(TEXT), 'utf-8'],
     ['UTF-8 with a mark', bytesOf(`\ufeff${TEXT}`), 'utf-8'],
-    ['UTF-16 little-endian with a mark', utf16(TEXT, true, true), 'utf-16le'],
-    ['UTF-16 big-endian with a mark', utf16(TEXT, false, true), 'utf-16be'],
-    ['UTF-16 little-endian without a mark', utf16(TEXT, true, false), 'utf-16le'],
-    ['UTF-16 big-endian without a mark', utf16(TEXT, false, false), 'utf-16be'],
+    ['UTF-16 little-endian with a mark', utf16Of(TEXT, true, true), 'utf-16le'],
+    ['UTF-16 big-endian with a mark', utf16Of(TEXT, false, true), 'utf-16be'],
+    ['UTF-16 little-endian without a mark', utf16Of(TEXT, true, false), 'utf-16le'],
+    ['UTF-16 big-endian without a mark', utf16Of(TEXT, false, false), 'utf-16be'],
     ['Windows-1252', latin1, 'windows-1252'],
   ] as const)('knows %s', (_, bytes, encoding) => {
     expect(detectEncoding(bytes)).toBe(encoding);
@@ -54,9 +49,8 @@ describe('detectEncoding', () => {
       'The file holds binary data, not text.',
     ],
   ] as const)('refuses %s and says what it is and what to do', (_, bytes, code, sentence) => {
-    expect(() => detectEncoding(bytes)).toThrow(
-      expect.objectContaining({ name: 'TrendError', code, message: expect.stringContaining(sentence) }),
-    );
+    expect(() => detectEncoding(bytes)).toThrow(expect.objectContaining({ name: 'TrendError', code }));
+    expect(() => detectEncoding(bytes)).toThrow(sentence);
     expect(() => detectEncoding(bytes)).toThrow(/Export the trend/);
   });
 });
@@ -70,7 +64,7 @@ describe('TextStream', () => {
           ? bytesOf(TEXT)
           : encoding === 'windows-1252'
             ? latin1
-            : utf16(TEXT, encoding === 'utf-16le', true);
+            : utf16Of(TEXT, encoding === 'utf-16le', true);
       const stream = new TextStream(encoding);
       let text = '';
       for (const byte of bytes) text += stream.decode(Uint8Array.of(byte));

@@ -2,6 +2,14 @@ import { createTrendReader, type DayOfColumn, type ReadPlan, type ReadReport } f
 
 export const bytesOf = (text: string): Uint8Array => new TextEncoder().encode(text);
 
+/** UTF-16 bytes, with or without a byte-order mark. */
+export function utf16Of(text: string, littleEndian: boolean, mark: boolean): Uint8Array {
+  const marked = mark ? `\ufeff${text}` : text;
+  const view = new DataView(new ArrayBuffer(marked.length * 2));
+  for (let i = 0; i < marked.length; i++) view.setUint16(i * 2, marked.charCodeAt(i), littleEndian);
+  return new Uint8Array(view.buffer);
+}
+
 /** A plan for `time,a` in UTC at one minute, changed as a test needs it. */
 export function planFor(
   change: Partial<Omit<ReadPlan, 'dialect'>> & { dialect?: Partial<ReadPlan['dialect']> } = {},

@@ -54,19 +54,19 @@ export function readName(pieces: readonly string[]): NameReading {
   const say = (concept: Concept, piece: string) => {
     if (!says.has(concept)) says.set(concept, piece);
   };
-  const letters: { letter: string; piece: string; next: string }[] = [];
+  const letters: { letter: string; piece: string }[] = [];
   let index: number | null = null;
   let setpointOrPump: string | null = null;
-  pieces.forEach((piece, i) => {
+  for (const [i, piece] of pieces.entries()) {
     const word = piece.toLowerCase();
     const next = pieces[i + 1] ?? '';
     if (word === 'sp') setpointOrPump = piece;
     const concepts =
       word.length === 1 ? (word === 'p' && /^\d{1,2}$/.test(next) ? (['pump'] as const) : []) : conceptsOfWord(word);
     for (const concept of concepts) say(concept, piece);
-    if (concepts.length === 0 && word.length === 1) letters.push({ letter: word, piece, next });
-    if (index === null && concepts.some((concept) => NUMBERED.includes(concept))) index = numberOfPiece(next);
-  });
+    if (concepts.length === 0 && word.length === 1) letters.push({ letter: word, piece });
+    if (concepts.some((concept) => NUMBERED.includes(concept))) index ??= numberOfPiece(next);
+  }
   readLetters(letters, says, say);
   if (index === null && NUMBERED.some((concept) => says.has(concept))) index = loneNumber(pieces);
   return { says, index, setpointOrPump, letterF: letters.some(({ letter }) => letter === 'f') };
