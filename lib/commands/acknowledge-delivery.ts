@@ -17,7 +17,6 @@ export interface LinkedDelivery {
   organizationId: string;
   plantId: string;
   userId: string;
-  plantName: string;
   timeZone: string;
   /** Local day the mail is about. */
   day: string;
@@ -122,7 +121,6 @@ async function findDelivery(
   const row = await queryOne<{
     plant_id: string;
     user_id: string;
-    plant_name: string;
     time_zone: string;
     day: string;
     subject: string;
@@ -131,7 +129,7 @@ async function findDelivery(
     stopped: boolean;
   }>(
     em,
-    `select d.plant_id, d.user_id, p.name as plant_name, p.time_zone, d.day, d.subject, d.acknowledged_at,
+    `select d.plant_id, d.user_id, p.time_zone, d.day, d.subject, d.acknowledged_at,
        coalesce(d.acknowledged_at > now() - $3 * interval '1 minute', false) as can_undo,
        u.mail_suppressed_at is not null as stopped
      from alert_delivery d
@@ -147,7 +145,6 @@ async function findDelivery(
     organizationId,
     plantId: row.plant_id,
     userId: row.user_id,
-    plantName: row.plant_name,
     timeZone: row.time_zone,
     day: row.day,
     subject: row.subject,

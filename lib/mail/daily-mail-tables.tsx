@@ -40,7 +40,7 @@ export function Stretches({ model }: { model: DailyMailModel }) {
             const look = { ...cell, ...(row.worst ? { fontWeight: 600 } : {}), ...(at < rows.length - 1 ? ruled : {}) };
             return (
               <tr key={row.times}>
-                <th scope="row" className="ink rule" style={look}>
+                <th scope="row" className="ink rule" style={{ ...look, whiteSpace: 'nowrap' }}>
                   {row.times}
                 </th>
                 <td className="ink rule" style={{ ...look, ...toTheRight }}>

@@ -52,6 +52,7 @@ export async function readDayFacts(em: EntityManager, plant: Plant, sums: DaySum
   const stretches = reverseStretches(slots, plant.stepMinutes);
   const { shown, further } = shortlist(stretches);
   const clockHours = localHours(timeZone, fromMs, toMs);
+  const hourOf = (ms: number) => clockHours.findLast((hour) => hour.startMs <= ms)?.startMs ?? null;
   return {
     plantName: plant.name,
     organizationName: organization.name,
@@ -84,9 +85,8 @@ export async function readDayFacts(em: EntityManager, plant: Plant, sums: DaySum
     cause: dominantCause(hours),
     coverage: dataShare(hours, clockHours.length),
     situation: largest && situationOf(largest, hours, settings?.design.productionUnits.length ?? 0),
-    worstHourMs:
-      sums.worstHourMs ??
-      (largest && (clockHours.findLast((hour) => hour.startMs <= largest.startMs)?.startMs ?? null)),
+    // The mail is about reverse flow: its worst hour is that of most flow backwards, not that of most excess flow.
+    worstHourMs: (largest && hourOf(largest.startMs)) ?? sums.worstHourMs,
   };
 }
 

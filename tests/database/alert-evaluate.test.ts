@@ -122,8 +122,8 @@ describe('what the mail says', () => {
     await evaluate();
     const [mail] = service.sent;
     expect(mail?.text).toMatch(/https:\/\/slackwater\.example\/a\/[\w-]{44}\n/);
-    // The hours of the afternoon weigh alike: the first of them is named, 12:00 in New York, 16:00 UTC.
-    expect(mail?.text).toContain(`/plants/${scene.plantId}/hours/2026-07-24T16:00:00Z`);
+    // Most came back at 15:05 in New York: the hour from 19:00 UTC, whichever hour has most excess flow.
+    expect(mail?.text).toContain(`/plants/${scene.plantId}/hours/2026-07-24T19:00:00Z`);
     expect(mail?.headers['List-Unsubscribe']).toMatch(/^<https:\/\/slackwater\.example\/a\/[\w-]{44}\/stop-mail>$/);
     expect(mail?.headers['List-Unsubscribe-Post']).toBe('List-Unsubscribe=One-Click');
   });

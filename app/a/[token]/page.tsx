@@ -1,6 +1,5 @@
 import type { Metadata } from 'next';
 import { notFound } from 'next/navigation';
-import { formatDayYear, startOfLocalDay } from '@/lib/client/format-time';
 import { openLink, stateOf } from '../link';
 import { LINK_METADATA, LinkFrame } from '../link-frame';
 import { Acknowledgement } from './acknowledgement';
@@ -20,9 +19,8 @@ export default async function AcknowledgePage({ params, searchParams }: PageProp
   const [link, { undone }] = await Promise.all([openLink({ params }), searchParams]);
   if (!link) notFound();
   const { delivery, token } = link;
-  const day = formatDayYear(startOfLocalDay(delivery.day, delivery.timeZone), delivery.timeZone);
   return (
-    <LinkFrame over={`${delivery.plantName}, ${day}`} title={delivery.subject}>
+    <LinkFrame over="The morning mail" title={delivery.subject}>
       <Acknowledgement path={`/a/${token}`} state={stateOf(delivery)} atOnce={undone === undefined} />
     </LinkFrame>
   );

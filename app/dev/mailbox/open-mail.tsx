@@ -32,7 +32,7 @@ export function OpenMail({ mail, nonce }: { mail: DevMail; nonce: string | undef
           title={`The mail: ${mail.subject}`}
           srcDoc={html}
           sandbox="allow-popups allow-popups-to-escape-sandbox"
-          className="mb-7 h-[1180px] w-full border border-rule"
+          className="mb-7 h-[1180px] w-full phone:h-[1400px] border border-rule"
         />
       )}
       {mail.text === '' ? null : (

@@ -14,7 +14,7 @@ export default async function NotePage({ params }: LinkParams) {
   const { delivery, token } = link;
   const { acknowledgedAt } = stateOf(delivery);
   return (
-    <LinkFrame over={delivery.plantName} title={delivery.subject}>
+    <LinkFrame over="The morning mail" title={delivery.subject}>
       {acknowledgedAt === null ? null : <p className="mb-4">Acknowledged, {acknowledgedAt}.</p>}
       <form method="post" action={`/a/${token}/acknowledge`}>
         <label htmlFor="note" className="mb-1 block font-semibold">
