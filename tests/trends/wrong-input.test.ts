@@ -1,6 +1,8 @@
+import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { TrendError } from '@/lib/trends';
+import { createTrendReader, TrendError } from '@/lib/trends';
 import { previewOf } from './preview-support';
+import { bytesOf } from './support';
 
 /** The error a preview throws, or a failure. */
 function refused(text: string | Uint8Array): TrendError {
@@ -93,4 +95,69 @@ describe('a file that cannot be read gets a sentence that says what, where and w
   test('the row is there for the page to show', () => {
     expect(refused('Timestamp,a\n')).toMatchObject({ code: 'no-rows', row: 1 });
   });
+});
+
+describe('whatever bytes are dropped', () => {
+  /** Previews and, when that works, reads the file as suggested. */
+  function tryAll(bytes: Uint8Array): void {
+    try {
+      const preview = previewOf(bytes);
+      const reader = createTrendReader({ ...preview, stepMinutes: 5 });
+      reader.push(bytes);
+      reader.finish();
+      expect(reader.report().rowsRead).toBeGreaterThan(0);
+    } catch (error) {
+      if (!(error instanceof TrendError)) throw error;
+      expect(error.message).toMatch(/^[A-Z"].*[.]$/s);
+    }
+  }
+
+  test('the answer is a preview that can be confirmed as it is, or a TrendError in a sentence', () => {
+    fc.assert(fc.property(fc.uint8Array({ maxLength: 300 }), tryAll), { numRuns: 300 });
+  });
+
+  test('so it is for tables of every kind of cell', () => {
+    const cell = fc.constantFrom(
+      ...[
+        '44.1',
+        '1,044',
+        '44,2',
+        '',
+        'Bad',
+        'On',
+        '07/20/2026 00:05',
+        '20.07.2026',
+        '00:05',
+        '2026-07-20T00:05Z',
+        '46223.5',
+      ],
+      ...[
+        '1784505900',
+        'CHWS T',
+        'Time',
+        '"',
+        '"x',
+        'a "b" c',
+        '°F',
+        'gpm',
+        '-9999',
+        '99/99/2026',
+        '\0',
+        '{ok}',
+        'Pri Flow (gpm)',
+      ],
+    );
+    const table = fc.array(fc.array(cell, { minLength: 1, maxLength: 5 }), { minLength: 1, maxLength: 12 });
+    const delimiter = fc.constantFrom(',', ';', '\t', '|');
+    const end = fc.constantFrom('\n', '\r\n', '\r');
+    fc.assert(
+      fc.property(table, delimiter, end, fc.boolean(), (rows, sign, newline, timed) => {
+        // Half of the tables have a heading and a time in every row, so that their cells are read.
+        const dated = rows.map((cells, i) => [`2026-07-20 00:${10 + i}`, ...cells]);
+        const lines = timed ? [['Time', 'Pri CHWS T', 'CH-1 Status', 'Pri Flow (gpm)'], ...dated] : rows;
+        tryAll(bytesOf(lines.map((cells) => cells.join(sign)).join(newline)));
+      }),
+      { numRuns: 1500 },
+    );
+  }, 60_000);
 });
