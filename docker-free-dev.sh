@@ -54,6 +54,7 @@ PORT=${PORT:-3000} HOST=${HOST:-127.0.0.1} PGPORT=${PGPORT:-54329}
 DATABASE_URL=${DATABASE_URL:-} DATABASE_APP_URL=${DATABASE_APP_URL:-} DATABASE_WORKER_URL=${DATABASE_WORKER_URL:-}
 GIVEN_URL=$DATABASE_URL
 unset NODE_ENV
+export NEXT_TELEMETRY_DISABLED=1
 
 # Where the user postgres could not walk to its own files, the data goes to a place it can.
 choose_data_folder() {
@@ -143,7 +144,7 @@ need_packages() {
 
 # A long step runs beside the shell, so that a signal to the shell is heard at once and passed on.
 step() {
-  "$@" 9>&- &
+  "$@" 7>&- 9>&- &
   STEP_PID=$!
   local code=0
   wait "$STEP_PID" || code=$?
@@ -219,7 +220,7 @@ open_psql() {
   [ -n "${PGBIN:-}" ] || find_postgres || true
   local psql=psql
   [ ! -x "${PGBIN:-}/psql" ] || psql=$PGBIN/psql
-  trap 'code=$?; [ "$CLUSTER_STARTED" = 0 ] || stop_cluster "$DATA"; exit $code' EXIT
+  trap '[ -n "$GIVEN_URL" ] || release_cluster "$DATA"' EXIT
   "$psql" "${!url}" "$@"
 }
 
@@ -233,7 +234,7 @@ reset() {
   fi
   [ ! -d "$DATA/run" ] || stop
   ! stop_cluster "$DATA/test" || say "Stopped the test database."
-  rm -rf "$DATA/cluster" "$DATA/test" "$DATA/secrets" "$DATA/log" "$DATA/run" "$DATA/cluster.lock"
+  rm -rf "$DATA/cluster" "$DATA/test" "$DATA/product" "$DATA/bench" "$DATA/secrets" "$DATA/log" "$DATA/run" "$DATA/cluster.lock" "$DATA/users.lock"
   rmdir "$DATA" 2>/dev/null || true
   say "Deleted what was in $DATA."
 }
@@ -244,27 +245,36 @@ test_cluster() {
   [ "${1:-}" = hold ] || usage_error "test-cluster hold"
   local home=$DATA/test port
   make_data_folder
-  mkdir -p "$home"
-  exec 7>"$home/users.lock"
-  flock -s 7
   port=$(free_port)
   start_cluster "$home" "$port" '-F -c synchronous_commit=off -c full_page_writes=off' >&2
   cluster_urls "$home"
-  trap 'if flock -x -n 7; then stop_cluster "$DATA/test" || true; fi' EXIT
+  trap 'release_cluster "$DATA/test"' EXIT
   trap 'exit 0' TERM HUP
   trap '' INT
   say "DATABASE_URL=$DATABASE_URL" "DATABASE_APP_URL=$DATABASE_APP_URL" "DATABASE_WORKER_URL=$DATABASE_WORKER_URL" "FRESH=$CLUSTER_STARTED"
   cat >/dev/null
 }
 
-run_tests() {
+# What tests and measurements need besides; they start databases and products of their own, whatever is set for this one.
+prepare_checks() {
   check_node
   make_data_folder
   need_postgres "$DATA/test"
-  [ -n "${CHROMIUM_PATH:-}" ] || command -v chromium >/dev/null || install_package chromium 'The browser for the end-to-end tests'
-  export CHROMIUM_PATH=${CHROMIUM_PATH:-$(command -v chromium)} SLACKWATER_DATA=$DATA
   need_packages
-  unset DATABASE_URL DATABASE_APP_URL DATABASE_WORKER_URL PORT PGPORT PUBLIC_URL
+  export SLACKWATER_DATA=$DATA
+  unset DATABASE_URL DATABASE_APP_URL DATABASE_WORKER_URL PORT PGPORT HOST PUBLIC_URL APP_SECRET DEMO DEMO_PASSWORD
+  unset "${!RESEND_@}" MAIL_FROM SIGN_UP UPLOAD_LIMIT_BYTES LOG_LEVEL LOCAL_FAKES
+}
+
+run_bench() {
+  prepare_checks
+  exec node --import tsx tests/bench/main-job.bench.ts
+}
+
+run_tests() {
+  prepare_checks
+  [ -n "${CHROMIUM_PATH:-}" ] || command -v chromium >/dev/null || install_package chromium 'The browser for the end-to-end tests'
+  export CHROMIUM_PATH=${CHROMIUM_PATH:-$(command -v chromium)}
   exec node --import tsx lib/build/checks.ts
 }
 

@@ -81,6 +81,9 @@ const FIELDS = {
   DEMO_PASSWORD: z.string().min(8, 'must have at least 8 characters.').default(DEFAULT_DEMO_PASSWORD),
 } as const;
 
+/** Every variable that some program reads; `./docker-free-dev.sh help` explains each. */
+export const ENVIRONMENT_NAMES = Object.keys(FIELDS);
+
 const SERVING = {
   PORT: FIELDS.PORT,
   HOST: FIELDS.HOST,

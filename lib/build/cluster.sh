@@ -46,10 +46,13 @@ cluster_pid() {
 
 cluster_port() { sed -n 4p "$1/cluster/data/postmaster.pid"; }
 
-# start_cluster HOME PORT [SERVER OPTIONS]: sets CLUSTER_PORT, and CLUSTER_STARTED to 1 when it was not running before.
+# start_cluster HOME PORT [SERVER OPTIONS]: starts it or joins those who use it (a shared lock, number 7). Sets CLUSTER_PORT, and
+# CLUSTER_STARTED to 1 when it was not running before.
 start_cluster() {
   local home=$1 port=$2 options=${3:-} data=$1/cluster/data tries
   mkdir -p "$home"
+  exec 7>"$home/users.lock"
+  flock -s 7
   exec 9>"$home/cluster.lock"
   flock 9
   CLUSTER_STARTED=0
@@ -112,6 +115,12 @@ stop_cluster() {
   pg pg_ctl stop -s -w -t 60 -m fast -D "$1/cluster/data"
 }
 
+# release_cluster HOME: the last of its users stops it.
+release_cluster() {
+  if flock -x -n 7 2>/dev/null; then stop_cluster "$1" || true; fi
+  exec 7>&-
+}
+
 # cluster_urls HOME: the three connections to the cluster's own database.
 cluster_urls() {
   local at=127.0.0.1:$CLUSTER_PORT/slackwater
@@ -130,7 +139,6 @@ given_url() {
 }
 
 open_database() {
-  CLUSTER_STARTED=0
   if [ -n "$GIVEN_URL" ]; then
     [ -n "$DATABASE_APP_URL" ] || DATABASE_APP_URL=$(given_url slackwater_app)
     [ -n "$DATABASE_WORKER_URL" ] || DATABASE_WORKER_URL=$(given_url slackwater_worker)

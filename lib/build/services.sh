@@ -55,9 +55,10 @@ alive() {
   [ -n "$start" ] && [ "$(began "$pid")" = "$start" ] && printf '%s\n' "$pid"
 }
 
-# end NAME...: asks all politely, waits, insists after 20 seconds, and clears away what children they left in their sessions.
+# end NAME...: asks all politely, waits, insists after 10 seconds (a browser's unused
+# connection keeps the web server waiting for ever), and clears away what children they left in their sessions.
 end() {
-  local name pid tries
+  local name pid deadline=$((SECONDS + 10))
   local -A pids=()
   for name; do
     pid=$(alive "$name") || continue
@@ -65,10 +66,7 @@ end() {
     kill -TERM "$pid" 2>/dev/null || true
   done
   for name in "${!pids[@]}"; do
-    for tries in {1..200}; do
-      alive "$name" >/dev/null || break
-      sleep 0.1
-    done
+    while [ "$SECONDS" -lt "$deadline" ] && alive "$name" >/dev/null; do sleep 0.1; done
     kill -KILL -- "-${pids[$name]}" 2>/dev/null || true
   done
   for name; do rm -f "$DATA/run/$name"; done
@@ -91,7 +89,7 @@ load_demo() {
   # Kept, because what opens the demo is the password it was loaded with.
   [[ ${PUBLIC_URL:-} == https:* ]] || DEMO_PASSWORD=$(secret "$DATA" demo-password "${DEMO_PASSWORD:-still-water-runs-back}")
   export DEMO_PASSWORD
-  step "$@"
+  step "$@" > >(tee "$DATA/log/demo.log")
 }
 
 # start_service NAME COMMAND...: in a session of its own, so that Ctrl-C reaches only this script, which stops things in order.
@@ -99,8 +97,9 @@ start_service() {
   local name=$1 log=$DATA/log/$1.log
   shift
   [ ! -f "$log" ] || mv "$log" "$log.1"
-  setsid "$@" >"$log" 2>&1 </dev/null 6>&- 9>&- &
+  setsid "$@" >"$log" 2>&1 </dev/null 6>&- 7>&- 9>&- &
   remember "$name" $!
+  disown $! # what ends it is said by check_services
 }
 
 is_ready() {
@@ -108,9 +107,10 @@ is_ready() {
     "$1/api/v1/health/ready"
 }
 
-# Says which service ended by itself, with the end of its log; the exit handler stops the rest.
+# Says what ended by itself, with the end of its log; the exit handler stops the rest.
 check_services() {
   local name
+  [ -n "$GIVEN_URL" ] || cluster_pid "$DATA" >/dev/null || die "The database server ended by itself. All it said is in $DATA/cluster/server.log."
   for name in web worker; do
     alive "$name" >/dev/null || { tail -n 20 "$DATA/log/$name.log" >&2 && die "The $name process ended by itself. All it said is in $DATA/log/$name.log."; }
   done
@@ -123,7 +123,7 @@ leave() {
   [ -z "${STEP_PID:-}" ] || kill -TERM "$STEP_PID" 2>/dev/null || true
   [ -z "${BUILD_PID:-}" ] || kill -TERM "$BUILD_PID" 2>/dev/null || true
   end worker web
-  [ "${CLUSTER_STARTED:-0}" = 0 ] || stop_cluster "$DATA" || true
+  [ -n "$GIVEN_URL" ] || release_cluster "$DATA"
   rm -f "$DATA/run/script" "$DATA/run/address"
   [ "$code" != 0 ] || say "Stopped."
   exit "$code"
@@ -175,7 +175,8 @@ serve() {
 greet() {
   say "" "Slackwater is ready at ${PUBLIC_URL:-$LOCAL_URL}"
   [ "$LOCAL_FAKES" != 1 ] || say "Mails stay on this machine: $LOCAL_URL/dev/mailbox"
-  if [ "$DEMO" = 1 ]; then
+  # A database with organizations of its own gets no demo.
+  if [ "$DEMO" = 1 ] && grep -qs 'demo is loaded' "$DATA/log/demo.log"; then
     say "Demo sign-ins: owner@demo.example, engineer@demo.example, consultant@demo.example, operator@demo.example"
     say "Password:      $DEMO_PASSWORD"
   fi

@@ -18,8 +18,9 @@ export interface TestCluster {
  *
  * Throws  with what the script said, when the server cannot be started.
  */
-export async function holdTestCluster(root: string): Promise<TestCluster> {
+export async function holdTestCluster(root: string, env: NodeJS.ProcessEnv = process.env): Promise<TestCluster> {
   const holder = spawn(path.join(root, 'docker-free-dev.sh'), ['test-cluster', 'hold'], {
+    env,
     stdio: ['pipe', 'pipe', 'pipe'],
   });
   let said = '';
