@@ -60,7 +60,8 @@ interface Receiving {
 }
 
 async function receiveFile(receiving: Receiving, file: IncomingFile): Promise<void> {
-  const { owner } = receiving.options;
+  const { owner, request } = receiving.options;
+  const announcedBytes = announced(request);
   const { pieces, summary } = plainContent(file.name, file.content, receiving.meter);
   let seq = 0;
   for await (const piece of pieces) {
@@ -71,7 +72,8 @@ async function receiveFile(receiving: Receiving, file: IncomingFile): Promise<vo
       fileIndex: receiving.files.length,
       seq: seq++,
     };
-    if (!(await storeChunk(chunk, piece, receiving.body.receivedBytes()))) throw givenUp();
+    const arrived = { receivedBytes: receiving.body.receivedBytes(), announcedBytes };
+    if (!(await storeChunk(chunk, piece, arrived))) throw givenUp();
   }
   if (seq === 0) {
     const others =
@@ -147,7 +149,7 @@ function meterOf(body: IncomingBody, limitBytes: number): Meter {
 
 /** A body that says beforehand that it is too large is refused before it is read, and still leaves a row that says so. */
 async function refuseAnnouncedSize({ owner, request, filename, limitBytes }: ReceiveOptions): Promise<void> {
-  if (Number(request.headers.get('content-length') ?? 0) <= limitBytes) return;
+  if ((announced(request) ?? 0) <= limitBytes) return;
   const refusal = overLimit(limitBytes, false);
   // A form's file names stand in the body, which is not read any more.
   const name = filename === undefined ? 'a file over the limit' : safeFilename(filename);
@@ -156,10 +158,16 @@ async function refuseAnnouncedSize({ owner, request, filename, limitBytes }: Rec
   throw refusal;
 }
 
+/** The length a client says its body has; null when it does not say. */
+function announced(request: Request): number | null {
+  const length = request.headers.get('content-length');
+  return length === null ? null : Number(length);
+}
+
 function refuseShortBody(request: Request, receivedBytes: number): void {
-  const announced = request.headers.get('content-length');
-  if (announced !== null && Number(announced) !== receivedBytes) {
-    const message = `${receivedBytes} of ${announced} bytes arrived: the file is cut short. Nothing of it is kept; send it again.`;
+  const announcedBytes = announced(request);
+  if (announcedBytes !== null && announcedBytes !== receivedBytes) {
+    const message = `${receivedBytes} of ${announcedBytes} bytes arrived: the file is cut short. Nothing of it is kept; send it again.`;
     throw problem(400, 'Invalid input', message);
   }
 }

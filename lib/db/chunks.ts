@@ -26,14 +26,20 @@ export interface ChunkOf {
  * Stores one chunk and notes the upload's progress. False when the upload is no longer being received (it was given up as
  * abandoned, or removed): then nothing is stored and nothing further should be.
  */
-export async function storeChunk(of: ChunkOf, plain: Uint8Array, receivedBytes: number): Promise<boolean> {
+export async function storeChunk(
+  of: ChunkOf,
+  plain: Uint8Array,
+  arrived: { receivedBytes: number; announcedBytes: number | null },
+): Promise<boolean> {
+  const { receivedBytes, announcedBytes } = arrived;
+  const progress = announcedBytes === null ? 0 : Math.min(1, receivedBytes / Math.max(1, announcedBytes));
   const data = await pack(plain, { level: LEVEL });
   return withTenant({ organizationIds: [of.organizationId] }, async (em) => {
     const open = await queryOne(
       em,
-      `update upload set last_chunk_at = now(), size_bytes = $3
+      `update upload set last_chunk_at = now(), size_bytes = $3, progress = $4
        where id = $1 and organization_id = $2 and status = 'receiving' returning 1`,
-      [of.uploadId, of.organizationId, receivedBytes],
+      [of.uploadId, of.organizationId, receivedBytes, progress],
     );
     if (!open) return false;
     await query(

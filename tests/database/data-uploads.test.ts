@@ -162,6 +162,22 @@ describe('an upload', () => {
     expect(ahead).toBeLessThanOrEqual(3 * CHUNK_BYTES);
   });
 
+  it('shows while it is received which share of it has arrived', async () => {
+    const total = 8 * CHUNK_BYTES;
+    let seen: Record<string, unknown> = {};
+    const body = streamed(total, async (made) => {
+      if (made !== 6 * CHUNK_BYTES) return;
+      const uploadId = (await lastRow()).id;
+      seen = (await (
+        await ask(getUpload, 'GET', { params: { uploadId }, cookie: scene.operator.cookie })
+      ).json()) as typeof seen;
+    });
+    expect((await raw(body, { length: total })).status).toBe(202);
+    expect(seen.status).toBe('receiving');
+    expect(seen.progress).toBeGreaterThan(0.3);
+    expect(seen.progress).toBeLessThan(0.9);
+  });
+
   it('gets a place of its own in the plant’s order when two end at once', async () => {
     const answers = await Promise.all(
       Array.from({ length: 6 }, (_, index) => raw(csv(5000), { name: `at-once-${index}` })),
