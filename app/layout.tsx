@@ -21,12 +21,18 @@ export const viewport: Viewport = {
   ],
 };
 
+/** The upright text face: every page sets most of its words in it, so it need not wait for the style sheet. */
+const TEXT_FACE = new URL('@fontsource-variable/asap/files/asap-latin-standard-normal.woff2', import.meta.url).pathname;
+
 export default async function RootLayout({ children }: { children: ReactNode }) {
   // Reading the request also makes every page dynamic, which a nonce in the policy needs.
   const [head, kept] = await Promise.all([headers(), cookies()]);
   const theme = readTheme(kept.get(THEME_COOKIE)?.value);
   return (
     <html lang="en" data-theme={theme === 'system' ? undefined : theme}>
+      <head>
+        <link rel="preload" href={TEXT_FACE} as="font" type="font/woff2" crossOrigin="anonymous" />
+      </head>
       <body>
         <PatternDefs />
         <Providers nonce={head.get('x-nonce') ?? undefined} units={readUnits(kept.get(UNITS_COOKIE)?.value) ?? 'ip'}>

@@ -144,10 +144,7 @@ function Plane(props: LoadFlowScatterProps) {
           onBack={() => onBrush?.([])}
           onWidth={setWidthPx}
         />
-        <PlaneWords
-          {...{ x, y, flow, chosen, unitFlowsGpm, timeZone, widthPx, designDeltaTF }}
-          expected={expected !== undefined}
-        />
+        <PlaneWords {...{ x, y, flow, chosen, unitFlowsGpm, timeZone, widthPx }} />
       </div>
       <div aria-hidden="true" className="relative col-start-2 h-9">
         {ticks.load.map(({ label, value }) => (
@@ -157,6 +154,7 @@ function Plane(props: LoadFlowScatterProps) {
         ))}
         <span className="absolute right-0 bottom-0">load, {unitLabel('load', units)}</span>
       </div>
+      <LineKey expected={expected !== undefined} designDeltaTF={designDeltaTF} />
     </div>
   );
 }
@@ -177,18 +175,17 @@ function axisTicks(load: [number, number], flow: [number, number], units: 'ip' |
   return { load: ticks(load, 'load'), flow: ticks(flow, 'flow') };
 }
 
-interface PlaneWordsProps extends Pick<LoadFlowScatterProps, 'timeZone' | 'designDeltaTF'> {
+interface PlaneWordsProps extends Pick<LoadFlowScatterProps, 'timeZone'> {
   x: (loadTons: number) => number;
   y: (flowGpm: number) => number;
   flow: [number, number];
   chosen: ScatterPoint | null;
   unitFlowsGpm: readonly number[];
   widthPx: number;
-  expected: boolean;
 }
 
 function PlaneWords(props: PlaneWordsProps) {
-  const { x, y, flow, chosen, unitFlowsGpm, timeZone, widthPx, expected, designDeltaTF } = props;
+  const { x, y, flow, chosen, unitFlowsGpm, timeZone, widthPx } = props;
   const print = useFormat();
   // Lines of unit flow carry their words where fewest marks are: the last at the left, the lowest at the right.
   const lines = unitFlowsGpm
@@ -219,19 +216,26 @@ function PlaneWords(props: PlaneWordsProps) {
           {formatDayTime(chosen.startMs, timeZone)}
         </span>
       )}
-      <ul className="absolute right-0 bottom-[22%] bg-paper pl-2">
-        {expected ? (
-          <li className="flex items-center justify-end gap-2 font-semibold text-ink">
-            <LineSwatch strong /> expected at the load
-          </li>
-        ) : null}
-        {designDeltaTF === undefined ? null : (
-          <li className="flex items-center justify-end gap-2">
-            <LineSwatch broken /> design, {print.with(print.deltaT(designDeltaTF), 'temperatureDifference')}
-          </li>
-        )}
-      </ul>
     </div>
+  );
+}
+
+/** The two lines, named under the plot where no mark can lie. */
+function LineKey({ expected, designDeltaTF }: { expected: boolean; designDeltaTF?: number }) {
+  const print = useFormat();
+  return (
+    <ul aria-hidden="true" className="col-start-2 flex flex-wrap gap-x-6 text-small">
+      {expected ? (
+        <li className="flex items-center gap-2 font-semibold text-ink">
+          <LineSwatch strong /> expected at the load
+        </li>
+      ) : null}
+      {designDeltaTF === undefined ? null : (
+        <li className="flex items-center gap-2">
+          <LineSwatch broken /> design, {print.with(print.deltaT(designDeltaTF), 'temperatureDifference')}
+        </li>
+      )}
+    </ul>
   );
 }
 
