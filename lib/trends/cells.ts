@@ -1,4 +1,4 @@
-import { isMissingWord, stateOfWord } from './values';
+import { isMissingWord, stateOfWord } from './cell-text';
 
 /** What a cell looks like on its own, before anything is known of its column. */
 export type CellKind = 'blank' | 'number' | 'time' | 'word' | 'text';

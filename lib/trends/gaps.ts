@@ -1,6 +1,7 @@
 import { durationText, type ProblemLog } from './problems';
 import type { StepCounter } from './step';
-import { clockText, DAY_MS, stampText } from './timestamps';
+import { clockText, stampText } from './stamp-text';
+import { DAY_MS } from './timestamps';
 import type { TimestampPlan } from './types';
 import type { LocalClock } from './zone-offsets';
 

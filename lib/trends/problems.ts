@@ -19,12 +19,15 @@ interface Sighting {
   count?: number;
 }
 
+export type CountedProblem = TrendProblem & { row: number };
+
 /** Counts troubles by kind: code, column and detail. Keeps the sentence of the first row, in row order. */
 export class ProblemLog {
-  private readonly kinds = new Map<string, TrendProblem & { row: number }>();
+  private readonly kinds = new Map<string, CountedProblem>();
   private readonly words = new Map<string, number>();
 
-  add(seen: Sighting): void {
+  /** The kind that counted it: whoever meets the same trouble in a later row may raise its count directly. */
+  add(seen: Sighting): CountedProblem {
     const count = seen.count ?? 1;
     const family = `${seen.code}\n${seen.column ?? ''}`;
     const key = `${family}\n${seen.detail ?? ''}`;
@@ -35,17 +38,19 @@ export class ProblemLog {
         known.row = seen.row;
         known.message = detached(seen.message());
       }
-      return;
+      return known;
     }
     if (seen.detail !== undefined) this.words.set(family, (this.words.get(family) ?? 0) + 1);
-    this.kinds.set(detached(key), {
+    const kind: CountedProblem = {
       code: seen.code,
       severity: seen.severity,
       message: detached(seen.message()),
       row: seen.row,
       column: seen.column,
       count,
-    });
+    };
+    this.kinds.set(detached(key), kind);
+    return kind;
   }
 
   list(): TrendProblem[] {
@@ -53,7 +58,7 @@ export class ProblemLog {
   }
 
   /** The kind that takes what is too various to be listed one by one; undefined while there is room. */
-  private overflow(seen: Sighting, family: string): (TrendProblem & { row: number }) | undefined {
+  private overflow(seen: Sighting, family: string): CountedProblem | undefined {
     const many = (this.words.get(family) ?? 0) >= MOST_WORDS_OF_A_COLUMN && seen.detail !== undefined;
     if (!many && this.kinds.size < MOST_PROBLEM_KINDS - 1) return undefined;
     const full = this.kinds.size >= MOST_PROBLEM_KINDS - 1;

@@ -6,7 +6,8 @@ import { ProblemLog, quoted } from './problems';
 import { RowShape, SHAPE_ROWS } from './row-shape';
 import { BLOCK_CHARACTERS, isBlankRow, linesOfRow, parseRows, RowCutter, type Newline } from './rows';
 import { StepCounter } from './step';
-import { StampParser, stampText } from './timestamps';
+import { stampText } from './stamp-text';
+import { StampParser } from './timestamps';
 import {
   TrendError,
   type DayOfColumn,

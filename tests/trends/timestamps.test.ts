@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { clockText, StampParser, stampText } from '@/lib/trends/timestamps';
+import { clockText, stampText } from '@/lib/trends/stamp-text';
+import { StampParser } from '@/lib/trends/timestamps';
 import type { TimestampForm } from '@/lib/trends';
 
 function parsed(form: TimestampForm, text: string, decimal: '.' | ',' = '.'): string | null {

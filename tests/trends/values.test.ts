@@ -1,7 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { ProblemLog } from '@/lib/trends/problems';
-import { BLANK, numberOfText, ValueReader } from '@/lib/trends/values';
+import { numberOfText } from '@/lib/trends/cell-text';
+import { BLANK, ValueReader } from '@/lib/trends/values';
 import { unitOfHeading, unitOfText } from '@/lib/trends/unit-text';
 import type { TrendUnitId } from '@/lib/units';
 

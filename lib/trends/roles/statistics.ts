@@ -1,5 +1,5 @@
 import type { TrendUnitId } from '../../units';
-import { isMissingWord, isSentinel, numberOfText, readableRange, stateOfWord } from '../values';
+import { isMissingWord, isSentinel, numberOfText, readableRange, stateOfWord } from '../cell-text';
 
 /** What the values of one column look like, in the file's unit. */
 export interface ColumnStatistics {
