@@ -31,9 +31,17 @@ let browserClient: QueryClient | undefined;
 /** One client for the life of the tab; on the server one a request, or answers would cross between people. */
 const queryClient = (): QueryClient => (isServer ? makeQueryClient() : (browserClient ??= makeQueryClient()));
 
+let keptNonce: string | undefined;
+/** The policy in force is the document's: a later navigation brings another nonce, which would fit no policy. */
+function keepNonce(nonce: string | undefined): void {
+  if (isServer || keptNonce !== undefined || nonce === undefined) return;
+  keptNonce = nonce;
+  setNonce(nonce);
+}
+
 /** What every page stands in: queries, units, messages. */
 export function Providers({ nonce, units, children }: ProvidersProps) {
-  if (!isServer && nonce !== undefined) setNonce(nonce);
+  keepNonce(nonce);
   return (
     <QueryClientProvider client={queryClient()}>
       <UnitsProvider initial={units}>{children}</UnitsProvider>

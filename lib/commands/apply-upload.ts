@@ -20,11 +20,12 @@ interface Hooks {
 /** Makes an upload's layers count, derives the days they touch, and starts their analysis in the transaction that ends the job. */
 export async function applyUpload(upload: Upload, plant: Plant, result: ImportResult, hooks: Hooks): Promise<void> {
   const tenancy = { organizationIds: [plant.organizationId] };
-  await withTenant(tenancy, async (em) => {
+  const counts = await withTenant(tenancy, async (em) => {
     await hooks.fence(em);
-    await query(
+    const applied = await query(
       em,
-      `update upload set applied = true, rows_read = $2, samples_stored = $3, data_from = $4, data_to = $5, problems = $6 where id = $1`,
+      `update upload set applied = true, rows_read = $2, samples_stored = $3, data_from = $4, data_to = $5, problems = $6
+       where id = $1 and removed_at is null returning id`,
       [
         upload.id,
         result.rowsRead,
@@ -34,7 +35,13 @@ export async function applyUpload(upload: Upload, plant: Plant, result: ImportRe
         JSON.stringify(result.problems),
       ],
     );
+    if (applied.length > 0) return true;
+    // Taken out while it was being read: what was written goes, and nothing of it ever counted.
+    await dropLayers(em, upload, plant);
+    await hooks.complete(em);
+    return false;
   });
+  if (!counts) return;
   await deriveDays(plant, result.days, hooks);
   await withTenant(tenancy, async (em) => {
     await refreshCoverage(em, plant);
@@ -61,11 +68,7 @@ export async function takeOutUpload(upload: Upload, plant: Plant, hooks: Hooks):
   // The upload no longer counts (applied is false): derive first and drop the layers last, so that a crash leaves the list of days.
   await deriveDays(plant, days, hooks);
   await withTenant(tenancy, async (em) => {
-    await query(em, `delete from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3`, [
-      plant.organizationId,
-      plant.id,
-      upload.uploadSeq,
-    ]);
+    await dropLayers(em, upload, plant);
     if (upload.removedAt !== null) {
       await query(em, `delete from upload_chunk where organization_id = $1 and upload_id = $2`, [
         plant.organizationId,
@@ -76,6 +79,14 @@ export async function takeOutUpload(upload: Upload, plant: Plant, hooks: Hooks):
     await startAnalysisOfStale(em, plant, null);
     await hooks.complete(em);
   });
+}
+
+async function dropLayers(em: EntityManager, upload: Upload, plant: Plant): Promise<void> {
+  await query(em, `delete from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3`, [
+    plant.organizationId,
+    plant.id,
+    upload.uploadSeq,
+  ]);
 }
 
 async function deriveDays(plant: Plant, days: readonly string[], hooks: Hooks): Promise<void> {

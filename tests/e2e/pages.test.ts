@@ -9,6 +9,7 @@ for (const colorScheme of ['light', 'dark'] as const) {
     test('every page of a plant stands without complaint, sideways scroll or accessibility fault', async ({
       page,
     }, info) => {
+      test.slow(); // many pages, each looked at and checked
       const heard = complaints(page);
       const look = async (name: string) => {
         await page.waitForLoadState('networkidle');
@@ -68,7 +69,7 @@ test("another organization's plant is not there", async ({ page }) => {
 
 test('signing up starts an organization with nothing in it', async ({ page }) => {
   await page.goto('/sign-up');
-  await page.getByLabel('Organization').fill('A new house');
+  await page.getByLabel('Organization', { exact: true }).fill('A new house');
   await page.getByLabel('Your name').fill('Nia Tor');
   await page.getByLabel('E-mail').fill(`nia-${Date.now()}-${Math.round(performance.now())}@new.example`);
   await page.getByLabel('Password').fill('a long enough secret');
