@@ -106,7 +106,7 @@ export function Header({ person, plants, plantId, tabs, onSignOut }: HeaderProps
           </div>
         </nav>
       )}
-      <KeyHelp open={help} onOpenChange={setHelp} />
+      <KeyHelp open={help} onOpenChange={setHelp} tabs={go} />
     </header>
   );
 }

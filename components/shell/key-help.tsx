@@ -7,7 +7,6 @@ const then = <span className="text-ink-3"> then </span>;
 const or = <span className="text-ink-3"> or </span>;
 
 const KEYS: readonly { keys: ReactNode; does: string }[] = [
-  { keys: <><KeyCap>g</KeyCap>{then}<KeyCap>p</KeyCap> <KeyCap>h</KeyCap> <KeyCap>s</KeyCap> <KeyCap>u</KeyCap></>, does: 'go to Plant, Hours, Sensors, Uploads' }, // prettier-ignore
   { keys: <KeyCap>/</KeyCap>, does: 'change plant' },
   { keys: <KeyCap>?</KeyCap>, does: 'this list' },
   { keys: <KeyCap>Esc</KeyCap>, does: 'close, or clear the selection' },
@@ -20,8 +19,16 @@ const KEYS: readonly { keys: ReactNode; does: string }[] = [
   { keys: <KeyCap>Enter</KeyCap>, does: 'open what the cursor or the row is on' },
 ];
 
+export interface KeyHelpProps {
+  open: boolean;
+  onOpenChange: (open: boolean) => void;
+  /** Tabs with a key of their own, as far as they exist here. */
+  tabs: readonly { label: string; shortcut: string | null }[];
+}
+
 /** Every key, in one list (`?`). */
-export function KeyHelp({ open, onOpenChange }: { open: boolean; onOpenChange: (open: boolean) => void }) {
+export function KeyHelp({ open, onOpenChange, tabs }: KeyHelpProps) {
+  const reached = tabs.filter((tab) => tab.shortcut !== null);
   return (
     <Dialog
       open={open}
@@ -30,6 +37,20 @@ export function KeyHelp({ open, onOpenChange }: { open: boolean; onOpenChange: (
       description="They are silent while a field has focus, and can be switched off in the menu of your name."
     >
       <dl className="grid grid-cols-[max-content_1fr] gap-x-6 gap-y-2">
+        {reached.length === 0 ? null : (
+          <div className="col-span-2 grid grid-cols-subgrid items-baseline">
+            <dt className="whitespace-nowrap">
+              <KeyCap>g</KeyCap>
+              {then}
+              {reached.map((tab) => (
+                <span key={tab.label} className="mr-1">
+                  <KeyCap>{tab.shortcut}</KeyCap>
+                </span>
+              ))}
+            </dt>
+            <dd>go to {reached.map((tab) => tab.label).join(', ')}</dd>
+          </div>
+        )}
         {KEYS.map(({ keys, does }) => (
           <div key={does} className="col-span-2 grid grid-cols-subgrid items-baseline">
             <dt className="whitespace-nowrap">{keys}</dt>
