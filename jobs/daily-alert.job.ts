@@ -11,7 +11,8 @@ export function dailyAlert(env: MailEnv): JobDefinition<'daily-alert'> {
   const mail = resendSender({ apiKey: env.RESEND_API_KEY, baseUrl: env.RESEND_BASE_URL, from: env.MAIL_FROM });
   return defineJob({
     name: 'daily-alert',
-    run: ({ signal }, payload) => evaluateAlert(payload, { mail, publicUrl: env.LINK_ORIGIN, secret: env.APP_SECRET, signal }),
+    run: ({ signal }, payload) =>
+      evaluateAlert(payload, { mail, publicUrl: env.LINK_ORIGIN, secret: env.APP_SECRET, signal }),
     async giveUp(em, { organizationId, runId }, message) {
       await query(
         em,

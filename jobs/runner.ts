@@ -74,7 +74,7 @@ export class QueueRunner<Name extends JobName> {
     const startedAt = Date.now();
     const lost = new AbortController();
     const signal = AbortSignal.any([lost.signal, this.stopping.signal]);
-    let completed = false;
+    const progress = { completed: false };
     const fence = async (em: EntityManager): Promise<void> => {
       const client = await transactionClient(em);
       const held = await client.query(
@@ -92,14 +92,14 @@ export class QueueRunner<Name extends JobName> {
         {},
         { db: { executeSql: (text: string, values: unknown[]) => client.query(text, values) } },
       );
-      completed = true;
+      progress.completed = true;
     };
     const context: JobContext = { jobId: job.id, signal, fence, complete };
     const heartbeat = setInterval(() => void this.beat(job, lost), this.heartbeatMs);
     try {
       const payload = JOB_PAYLOADS[this.definition.name].parse(job.data) as JobPayload<Name>;
       await this.definition.run(context, payload);
-      if (!completed) await this.boss.complete(job.name, job.id);
+      if (!progress.completed) await this.boss.complete(job.name, job.id);
       log.info({
         event: 'job.done',
         queue: job.name,

@@ -1,6 +1,6 @@
 'use client';
 import { usePathname, useRouter, useSearchParams } from 'next/navigation';
-import { useMemo } from 'react';
+import { useMemo, useState } from 'react';
 import { addLocalDays, localDay, startOfLocalDay } from '@/lib/client/format-time';
 import type { Plant } from '@/lib/schemas/plant';
 
@@ -57,9 +57,10 @@ export function usePeriod(plant: Pick<Plant, 'timeZone' | 'dataThrough'>) {
   const from = search.get('from');
   const to = search.get('to');
   const { timeZone, dataThrough } = plant;
+  const [openedMs] = useState(() => Date.now());
   const period = useMemo(
-    () => pagePeriod({ from, to }, { timeZone, dataThrough }, Date.now()),
-    [from, to, timeZone, dataThrough],
+    () => pagePeriod({ from, to }, { timeZone, dataThrough }, openedMs),
+    [from, to, timeZone, dataThrough, openedMs],
   );
   const go = (next: { from: string; to: string }) => {
     const query = new URLSearchParams(search);

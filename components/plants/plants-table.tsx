@@ -1,7 +1,7 @@
 'use client';
 import Link from 'next/link';
 import { useRouter } from 'next/navigation';
-import { useRef } from 'react';
+import { useRef, type ReactNode } from 'react';
 import { TideStripSmall } from '@/components/charts/tide-strip-small';
 import { plantPath } from '@/components/shell/tabs';
 import { useFormat } from '@/components/shell/units-context';
@@ -191,20 +191,24 @@ function PlantRow({ plant, position, onOpen }: { plant: OverviewPlant; position:
       </Cell>
       <td className="hidden phone:col-span-3 phone:mt-2 phone:block">
         <dl className="grid grid-cols-4 text-small">
-          {[
-            ['reverse yesterday', yesterday ? formatHoursMinutes(yesterday.reverseMinutes) : MISSING],
-            ['warmest supply', print.temperature(yesterday?.warmestSupplyF)],
-            ['low hours, week', formatNumber(week.lowHours)],
-            ['data through', <Through key="through" plant={plant} stale={stale} />],
-          ].map(([term, value]) => (
-            <div key={String(term)}>
-              <dt className="text-micro text-ink-3">{term}</dt>
-              <dd className="font-semibold">{value}</dd>
-            </div>
-          ))}
+          <Fact term="reverse yesterday">{yesterday ? formatHoursMinutes(yesterday.reverseMinutes) : MISSING}</Fact>
+          <Fact term="warmest supply">{print.temperature(yesterday?.warmestSupplyF)}</Fact>
+          <Fact term="low hours, week">{formatNumber(week.lowHours)}</Fact>
+          <Fact term="data through">
+            <Through plant={plant} stale={stale} />
+          </Fact>
         </dl>
       </td>
     </tr>
+  );
+}
+
+function Fact({ term, children }: { term: string; children: ReactNode }) {
+  return (
+    <div>
+      <dt className="text-micro text-ink-3">{term}</dt>
+      <dd className="font-semibold">{children}</dd>
+    </div>
   );
 }
 

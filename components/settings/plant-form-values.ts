@@ -28,7 +28,7 @@ const UnitRow = z
   })
   .refine((unit) => unit.flowGpm !== undefined || unit.deltaTF !== undefined, {
     path: ['flowGpm'],
-    message: 'Give its design flow or its delta-T.',
+    error: 'Give its design flow or its delta-T.',
   });
 
 /** The plant form's fields as typed; `plantBody` makes the API's body of what comes out. */
@@ -54,7 +54,7 @@ export const PlantForm = z
   })
   .refine((plant) => plant.arrangement !== 'building-bridge' || plant.blendedSupplyF !== undefined, {
     path: ['blendedSupplyF'],
-    message: 'A building bridge needs the supply temperature it is meant to blend to.',
+    error: 'A building bridge needs the supply temperature it is meant to blend to.',
   });
 export type PlantFormInput = z.input<typeof PlantForm>;
 export type PlantFormOutput = z.output<typeof PlantForm>;

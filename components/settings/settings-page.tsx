@@ -6,7 +6,7 @@ import { Page } from '@/components/shell/app-shell';
 import { PageHead } from '@/components/ui/page-head';
 import { Section } from '@/components/ui/section';
 import { sendJson } from '@/lib/client/api';
-import { formatNumber } from '@/lib/client/format';
+import { formatNumber, MISSING } from '@/lib/client/format';
 import { plantQuery } from '@/lib/client/queries';
 import { KERNEL_VERSION } from '@/lib/hydronics/types';
 import { Plant } from '@/lib/schemas/plant';
@@ -80,9 +80,8 @@ function numberAt(plant: Plant, path: string): string {
       (node, step) => (node !== null && typeof node === 'object' ? (node as Record<string, unknown>)[step] : undefined),
       plant,
     );
-  return typeof value === 'number'
-    ? formatNumber(value, { decimals: Number.isInteger(value) ? 0 : 2 })
-    : String(value ?? '-');
+  if (typeof value === 'number') return formatNumber(value, { decimals: Number.isInteger(value) ? 0 : 2 });
+  return typeof value === 'string' ? value : MISSING;
 }
 
 const FORM_TO_PATH: Readonly<Record<string, string>> = {

@@ -86,10 +86,10 @@ const GROUPS: readonly { group: string; roles: readonly PointRoleName[] }[] = [
   { group: 'branches', roles: POINT_ROLE_NAMES.filter((name) => pointRole(name).indexed === 'branch') },
 ];
 
-export const ROLE_OPTIONS = [
-  { group: 'not a point of the plant', options: [{ value: IGNORE_ROLE as MappedRole, label: 'leave out' }] },
+export const ROLE_OPTIONS: readonly { group: string; options: readonly { value: MappedRole; label: string }[] }[] = [
+  { group: 'not a point of the plant', options: [{ value: IGNORE_ROLE, label: 'leave out' }] },
   ...GROUPS.map(({ group, roles }) => ({
     group,
-    options: roles.map((role) => ({ value: role as MappedRole, label: POINT_ROLES[role].label as string })),
+    options: roles.map((role) => ({ value: role, label: POINT_ROLES[role].label })),
   })),
 ];

@@ -1,16 +1,15 @@
 import type { EntityManager } from '@mikro-orm/postgresql';
 import type { ClientBase, QueryResultRow } from 'pg';
-import type { Knex } from '@mikro-orm/knex';
 
 /**
  * The PostgreSQL connection of the entity manager's transaction: for arrays, COPY and ranked queries, which do not go through
  * entities. Throws outside a transaction, because only inside one is the tenant set.
  */
 export async function transactionClient(em: EntityManager): Promise<ClientBase> {
-  const context = em.getTransactionContext<Knex.Transaction>();
+  const context = em.getTransactionContext<unknown>();
   if (!context) throw new Error('This query needs a transaction: call it inside withTenant().');
   // In a transaction knex answers with the one connection the transaction holds.
-  const client: { acquireConnection(): Promise<ClientBase> } = context.client;
+  const { client } = context as { client: { acquireConnection(): Promise<ClientBase> } };
   return client.acquireConnection();
 }
 

@@ -17,10 +17,10 @@ export async function withTenant<Result>(
 ): Promise<Result> {
   const { em } = await orm();
   return em.fork().transactional(async (inner) => {
-    const client = await transactionClient(inner as EntityManager);
+    const client = await transactionClient(inner);
     // Local to the transaction: the next borrower of this connection starts with no tenant.
     await client.query(`select set_config('app.orgs', $1, true)`, [`{${tenancy.organizationIds.join(',')}}`]);
-    return work(inner as EntityManager);
+    return work(inner);
   });
 }
 

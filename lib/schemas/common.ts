@@ -42,5 +42,5 @@ export const TimeZone = z.string().refine(
       return false;
     }
   },
-  { message: 'Give an IANA time zone such as "America/Denver".' },
+  { error: 'Give an IANA time zone such as "America/Denver".' },
 );

@@ -12,7 +12,7 @@ export const Fluid = z
   })
   .refine((fluid) => fluid.kind === 'water' || fluid.massPercent > 0, {
     path: ['massPercent'],
-    message: 'Give the mass percent of glycol.',
+    error: 'Give the mass percent of glycol.',
   });
 
 export const ProductionUnit = z
@@ -28,7 +28,7 @@ export const ProductionUnit = z
   })
   .refine((unit) => unit.flowGpm !== undefined || unit.deltaTF !== undefined, {
     path: ['flowGpm'],
-    message: 'Give the unit’s design flow or its design delta-T.',
+    error: 'Give the unit’s design flow or its design delta-T.',
   });
 
 export const DistributionPumps = z.object({
@@ -95,7 +95,7 @@ export const CreatePlant = z
   .object({ organizationId: z.uuid().optional(), ...identity, ...PlantSettings.shape })
   .refine((plant) => plant.arrangement !== 'building-bridge' || plant.design.blendedSupplyF !== null, {
     path: ['design', 'blendedSupplyF'],
-    message: 'A building bridge needs the supply temperature it is meant to blend to.',
+    error: 'A building bridge needs the supply temperature it is meant to blend to.',
   });
 export type CreatePlant = z.infer<typeof CreatePlant>;
 

@@ -37,7 +37,7 @@ export const CreateToken = z
   })
   .refine((token) => token.scope !== 'ingest' || token.plantId !== undefined, {
     path: ['plantId'],
-    message: 'A token that uploads belongs to one plant: give plantId.',
+    error: 'A token that uploads belongs to one plant: give plantId.',
   });
 export const CreatedToken = z.object({ id: z.uuid(), token: z.string() });
 export const Token = z.object({
