@@ -91,6 +91,11 @@ const config = tseslint.config(
     rules: { 'import/no-default-export': 'error' },
   },
   {
+    // Pages render on the server, once a request, where the time of the request is a fair input.
+    files: ['app/**'],
+    rules: { 'react-hooks/purity': 'off' },
+  },
+  {
     // Holds the very texts that the rule refuses.
     files: ['tests/lint/**'],
     rules: { 'no-restricted-syntax': 'off' },
