@@ -153,15 +153,18 @@ export interface Extent {
 
 /**
  * How far the strip reaches above and below the line. Bars decide; the fringe may add half as much again; a bar far
- * beyond the others (over 2.5 times their 98th percentile) is left to be cut flat. Zero is always inside, and a side
- * with nothing on it keeps a seventh of the other, so that its emptiness is seen.
+ * beyond the others (over 2.5 times the 98th percentile of all) and beyond 20 times the floor is left to be cut flat: a
+ * meter's spike, not the one deep hour of a calm week. Zero is always inside, and a side with nothing on it keeps a
+ * seventh of the other, so that its emptiness is seen.
  *
- * Units   gpm. `floorGpm`: the least that either side of a drawing is worth, so that noise near zero stays small.
+ * Units   gpm. `floorGpm`: the least that either side of a drawing is worth, a twentieth of design flow where it is
+ *         known, so that noise near zero stays small.
  */
 export function tideExtent(marks: readonly TideMark[], floorGpm = 60): Extent {
+  const all = marks.flatMap((mark) => [mark.forwardGpm, -mark.reverseGpm]);
+  const cap = Math.max(quantile(all, 0.98) * 2.5, floorGpm * 20);
   const side = (bars: number[], fringes: number[], unknowns: number[]): number => {
-    const cap = quantile(bars, 0.98) * 2.5;
-    const bar = Math.max(0, ...bars.filter((height) => cap === 0 || height <= cap));
+    const bar = Math.max(0, ...bars.filter((height) => height <= cap));
     const fringe = Math.min(quantile(fringes, 0.98), bar * 1.5);
     const unknown = quantile(unknowns, 0.9);
     return Math.max(bar * 1.06, fringe, Math.min(unknown, Math.max(bar, floorGpm) * 1.5));
@@ -184,5 +187,5 @@ export function tideExtent(marks: readonly TideMark[], floorGpm = 60): Extent {
 
 function quantile(values: readonly number[], share: number): number {
   const sorted = values.filter((value) => value > 0).sort((left, right) => left - right);
-  return sorted[Math.min(sorted.length - 1, Math.floor(share * sorted.length))] ?? 0;
+  return sorted[Math.floor(share * (sorted.length - 1))] ?? 0;
 }

@@ -34,7 +34,7 @@ export function barSentence(bar: TideBar, timeZone: string, print: BoundFormat):
   const supply =
     bar.blendedSupplyF === null ? '' : `, supply ${print.with(print.temperature(bar.blendedSupplyF), 'temperature')}`;
   if (direction === 'unknown') {
-    return `${when}, direction unknown${interval === '-' ? '' : `, between ${interval} ${print.unit('flow')}`}${supply}`;
+    return `${when}, direction unknown${interval === '-' ? '' : `, from ${interval} ${print.unit('flow')}`}${supply}`;
   }
   // Never rounded up to certainty.
   const sure =

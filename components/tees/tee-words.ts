@@ -110,7 +110,7 @@ export function teeSentence(detail: HourDetail, share: number | null, print: Bou
     case 'still':
       return `Tee sheet. Still: ${flow}${between}; nothing to speak of flows in the common pipe.`;
     default:
-      return `Tee sheet. Direction unknown${interval === MISSING ? '' : `: between ${interval} ${print.unit('flow')}`}; no sign is given.`;
+      return `Tee sheet. Direction unknown${interval === MISSING ? '' : `: from ${interval} ${print.unit('flow')}`}; no sign is given.`;
   }
 }
 

@@ -101,6 +101,11 @@ describe('the extent of the strip', () => {
     expect(extent.hiGpm).toBeLessThan(1000);
   });
 
+  test('the one deep hour of a calm week is not cut: it is what the strip is for', () => {
+    const flows = [...Array.from({ length: 167 }, () => -20), -966];
+    expect(marks.tideExtent(marks.tideMarks(hourlyTide(FROM, flows))).loGpm).toBeLessThan(-966);
+  });
+
   test('has some size even without a bar', () => {
     const { loGpm, hiGpm } = marks.tideExtent([]);
     expect(loGpm).toBeLessThan(0);

@@ -10,7 +10,9 @@ function colours(selector: string): Record<string, string> {
   const from = css.indexOf(`${selector} {`);
   if (from < 0) throw new Error(`no block for ${selector}`);
   const block = css.slice(from, css.indexOf('}', from));
-  return Object.fromEntries([...block.matchAll(/--([a-z0-9]+): (#[0-9a-f]{6});/g)].map(([, name, hex]) => [name, hex]));
+  const found: Record<string, string> = {};
+  for (const [, name = '', hex = ''] of block.matchAll(/--([a-z0-9]+): (#[0-9a-f]{6});/g)) found[name] = hex;
+  return found;
 }
 
 const light = colours('\n:root');
