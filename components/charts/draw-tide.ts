@@ -96,14 +96,12 @@ function drawFringe({ context, palette, x, y }: Painter, marks: readonly TideMar
       context.strokeStyle = colour;
       line(context, middle, y(from), middle, y(to));
     };
+    // A bar has no height on its other side: an interval that reaches over the line is drawn there too.
     hair(Math.max(loGpm, mark.forwardGpm), hiGpm, palette.ink2);
     hair(loGpm, Math.min(hiGpm, mark.reverseGpm), palette.ink2);
     if (mark.split) continue;
     hair(Math.max(loGpm, 0), Math.min(hiGpm, mark.forwardGpm), palette.paper);
     hair(Math.max(loGpm, mark.reverseGpm), Math.min(hiGpm, 0), palette.paper);
-    // An interval that reaches over the line is drawn on the other side too.
-    if (mark.direction === 'forward') hair(loGpm, Math.min(0, hiGpm), palette.ink2);
-    else hair(Math.max(0, loGpm), hiGpm, palette.ink2);
   }
 }
 

@@ -32,17 +32,21 @@ export interface LoadFlowScatterProps {
   /** Production flow with 1, 2, ... units running. */
   unitFlowsGpm?: readonly number[];
   stale?: boolean;
+  /** What one mark is, where the bars are not hours. */
+  sub?: string;
   /** The hours inside a dragged rectangle; an empty list when the selection is cleared. */
   onBrush?: (startsMs: number[]) => void;
 }
 
 const HEIGHT_PX = 326;
+/** The name of the upright axis stands at its top left; a line so near goes to the right. */
+const AXIS_NAME_PX = 32;
 /** gpm per ton at 1 deg F of delta-T: 12,000 Btu/h over 500 Btu/h per gpm and deg F, the trade's rounded factor. */
 const GPM_DEGF_PER_TON = 24;
 
 /** Load against distribution flow, one mark an hour: above a unit's line an hour has to be reverse. */
 export function LoadFlowScatter(props: LoadFlowScatterProps) {
-  const { points, timeZone, stale = false } = props;
+  const { points, timeZone, stale = false, sub = 'one mark an hour' } = props;
   const [asTable, setAsTable] = useState(false);
   const toggle = () => setAsTable((before) => !before);
   const onKeyDown = (event: KeyboardEvent) => {
@@ -51,7 +55,7 @@ export function LoadFlowScatter(props: LoadFlowScatterProps) {
   return (
     <Section
       title="Load against flow"
-      sub="one mark an hour"
+      sub={sub}
       aside={
         <TextButton onClick={toggle} aria-pressed={asTable}>
           <Table2 size={16} strokeWidth={1.5} aria-hidden="true" className="mr-1 inline align-[-3px]" />
@@ -198,7 +202,7 @@ function PlaneWords(props: PlaneWordsProps) {
       {lines.map(({ flowGpm, count }, index) => (
         <span
           key={count}
-          className={`absolute -translate-y-full ${index === 0 && lines.length > 1 ? 'right-0' : 'left-1.5'}`}
+          className={`absolute -translate-y-full ${(index === 0 && lines.length > 1) || y(flowGpm) < AXIS_NAME_PX ? 'right-0' : 'left-1.5'}`}
           style={{ top: y(flowGpm) - 1 }}
         >
           {count} {count === 1 ? 'unit' : 'units'} running, {print.flow(flowGpm)}
