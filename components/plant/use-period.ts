@@ -1,4 +1,5 @@
 'use client';
+import { differenceInCalendarDays, parseISO } from 'date-fns';
 import { usePathname, useRouter, useSearchParams } from 'next/navigation';
 import { useMemo, useState } from 'react';
 import { addLocalDays, localDay, startOfLocalDay } from '@/lib/client/format-time';
@@ -18,7 +19,6 @@ export interface PagePeriod {
 }
 
 const DAY = /^\d{4}-\d{2}-\d{2}$/;
-const daysApart = (from: string, to: string): number => Math.round((Date.parse(to) - Date.parse(from)) / 86_400_000);
 
 /** The period a page starts with: two weeks that end with the last day of data. */
 export function defaultPeriod(
@@ -36,7 +36,7 @@ export function pagePeriod(
 ): PagePeriod {
   const fits = DAY.test(asked.from ?? '') && DAY.test(asked.to ?? '') && (asked.from ?? '') < (asked.to ?? '');
   const { from, to } = fits ? { from: asked.from ?? '', to: asked.to ?? '' } : defaultPeriod(plant, nowMs);
-  const days = daysApart(from, to);
+  const days = differenceInCalendarDays(parseISO(to), parseISO(from));
   const name =
     (Object.keys(PERIOD_DAYS) as (keyof typeof PERIOD_DAYS)[]).find((key) => PERIOD_DAYS[key] === days) ?? 'own';
   return {

@@ -1,3 +1,4 @@
+import { addDays, formatISO, parseISO } from 'date-fns';
 import { TZDate } from '@date-fns/tz';
 import { EN_DASH, NO_BREAK_SPACE } from './format';
 
@@ -19,7 +20,6 @@ export interface LocalParts {
   monthName: string;
 }
 
-const DAY_MS = 86_400_000;
 const HOUR_MS = 3_600_000;
 // Making an Intl formatter costs far more than using one; a page has one or two zones.
 const formatters = new Map<string, Intl.DateTimeFormat>();
@@ -77,7 +77,7 @@ export function startOfLocalDay(day: string, timeZone: string): number {
 
 /** The local day so many days later, by the calendar. */
 export function addLocalDays(day: string, days: number): string {
-  return new Date(Date.parse(`${day}T00:00:00Z`) + days * DAY_MS).toISOString().slice(0, 10);
+  return formatISO(addDays(parseISO(day), days), { representation: 'date' });
 }
 
 /** Epoch ms of `from` or `to`, which is an instant or a local day; NaN when it is neither. */
