@@ -5,7 +5,9 @@
 
 # What the build is made of, as one number.
 sources_hash() {
-  { find app components entities fixtures jobs lib migrations public -type f -print0 | sort -z | xargs -0 sha256sum
+  local rooms=() room
+  for room in app components entities fixtures jobs lib migrations public; do [ ! -d "$room" ] || rooms+=("$room"); done
+  { find "${rooms[@]}" -type f -print0 | sort -z | xargs -0 sha256sum
     sha256sum ./*.ts ./*.mjs ./package-lock.json ./tsconfig.json; } | sha256sum | cut -c1-32
 }
 

@@ -12,6 +12,7 @@ import { FINAL_UPLOAD_STATUSES, Preview, Upload } from '../../lib/schemas/upload
 
 const DATA = process.env.SLACKWATER_DATA ?? '.slackwater';
 const SITE = SITES.hospital;
+const WEEK_DAYS = 7;
 const WEEK_LIMIT_SECONDS = 5;
 const WORKER_LIMIT_MB = 500;
 const LAST_DAY = '2026-06-30';
@@ -82,6 +83,8 @@ function peakMegabytes(pid: number): number {
 }
 
 async function bench(product: Product): Promise<boolean> {
+  // Made first: it takes a while, in which connections kept open would go stale.
+  const [week, year] = [csv(WEEK_DAYS, 5), csv(LONG_DAYS, 1)];
   const client = new Client(product.url);
   const account = {
     organizationName: 'Bench',
@@ -92,20 +95,25 @@ async function bench(product: Product): Promise<boolean> {
   await client.call('POST', '/accounts', JSON.stringify(account));
 
   const weekPlant = await newPlant(client, 5);
-  const importSeconds = await importFile(client, weekPlant, csv(7, 5));
+  const importSeconds = await importFile(client, weekPlant, week);
   const chartMs = performance.now();
-  await client.call('GET', `/plants/${weekPlant}/series?width=1200`);
+  const chart = new URLSearchParams({
+    from: addDays(LAST_DAY, 1 - WEEK_DAYS),
+    to: addDays(LAST_DAY, 1),
+    points: 'bypassFlowGpm,blendedSupplyF,primarySupplyTemp,secondaryReturnTemp',
+    width: '1200',
+  });
+  await client.call('GET', `/plants/${weekPlant}/series?${chart}`);
   const weekSeconds = importSeconds + seconds(chartMs);
   console.log(
     `A week of 5-minute data from drop to chart: ${weekSeconds.toFixed(2)} s (at most ${WEEK_LIMIT_SECONDS} s)`,
   );
 
   const yearPlant = await newPlant(client, 1);
-  const text = csv(LONG_DAYS, 1);
-  const yearSeconds = await importFile(client, yearPlant, text);
+  const yearSeconds = await importFile(client, yearPlant, year);
   const peak = peakMegabytes(product.workerPid);
   console.log(
-    `${LONG_DAYS} days of 1-minute data (${(text.length / 1e6).toFixed(0)} MB) imported and analysed: ${yearSeconds.toFixed(1)} s, ` +
+    `${LONG_DAYS} days of 1-minute data (${(year.length / 1e6).toFixed(0)} MB) imported and analysed: ${yearSeconds.toFixed(1)} s, ` +
       `worker's peak ${peak.toFixed(0)} MB resident (at most ${WORKER_LIMIT_MB} MB)`,
   );
   return weekSeconds <= WEEK_LIMIT_SECONDS && peak <= WORKER_LIMIT_MB;
