@@ -5,10 +5,6 @@ import { complaints, keepPicture, openPlant, openTab, signIn } from './support';
 
 // The whole job once, in order, on one database: each step stands on the one before.
 test.describe.configure({ mode: 'serial' });
-test.skip(
-  ({ isMobile }) => isMobile,
-  'The story changes the shared database once; the phone walks its pages in pages.test.ts.',
-);
 
 const PLANT = `Story plant ${Date.now()}`;
 const today = new Intl.DateTimeFormat('en-CA', { timeZone: 'America/New_York' }).format(Date.now());
