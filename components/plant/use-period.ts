@@ -18,20 +18,21 @@ export interface PagePeriod {
   name: PeriodName;
 }
 
+type PlantClock = Pick<Plant, 'timeZone' | 'dataFrom' | 'dataThrough'>;
+
 const DAY = /^\d{4}-\d{2}-\d{2}$/;
 
-/** The period a page starts with: two weeks that end with the last day of data. */
-export function defaultPeriod(
-  plant: Pick<Plant, 'timeZone' | 'dataThrough'>,
-  nowMs: number,
-): { from: string; to: string } {
+/** The period a page starts with: two weeks that end with the last day of data, or all of a shorter record. */
+export function defaultPeriod(plant: PlantClock, nowMs: number): { from: string; to: string } {
   const lastDay = localDay(plant.dataThrough === null ? nowMs : Date.parse(plant.dataThrough), plant.timeZone);
-  return { from: addLocalDays(lastDay, -13), to: addLocalDays(lastDay, 1) };
+  const fortnight = addLocalDays(lastDay, -13);
+  const firstDay = plant.dataFrom === null ? fortnight : localDay(Date.parse(plant.dataFrom), plant.timeZone);
+  return { from: firstDay > fortnight ? firstDay : fortnight, to: addLocalDays(lastDay, 1) };
 }
 
 export function pagePeriod(
   asked: { from: string | null; to: string | null },
-  plant: Pick<Plant, 'timeZone' | 'dataThrough'>,
+  plant: PlantClock,
   nowMs: number,
 ): PagePeriod {
   const fits = DAY.test(asked.from ?? '') && DAY.test(asked.to ?? '') && (asked.from ?? '') < (asked.to ?? '');
@@ -50,17 +51,17 @@ export function pagePeriod(
 }
 
 /** The period in the address, and the ways to another. */
-export function usePeriod(plant: Pick<Plant, 'timeZone' | 'dataThrough'>) {
+export function usePeriod(plant: PlantClock) {
   const router = useRouter();
   const pathname = usePathname();
   const search = useSearchParams();
   const from = search.get('from');
   const to = search.get('to');
-  const { timeZone, dataThrough } = plant;
+  const { timeZone, dataFrom, dataThrough } = plant;
   const [openedMs] = useState(() => Date.now());
   const period = useMemo(
-    () => pagePeriod({ from, to }, { timeZone, dataThrough }, openedMs),
-    [from, to, timeZone, dataThrough, openedMs],
+    () => pagePeriod({ from, to }, { timeZone, dataFrom, dataThrough }, openedMs),
+    [from, to, timeZone, dataFrom, dataThrough, openedMs],
   );
   const go = (next: { from: string; to: string }) => {
     const query = new URLSearchParams(search);

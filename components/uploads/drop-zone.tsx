@@ -1,18 +1,18 @@
 'use client';
 import { Upload as UploadIcon } from 'lucide-react';
 import { useEffect, useRef, useState } from 'react';
-import { formatBytes } from '@/lib/client/format';
+import type { UploadLimit } from './use-sending';
 
 export interface DropZoneProps {
   plantName: string;
-  limitBytes: number;
+  limit: UploadLimit;
   onFiles: (files: readonly File[]) => void;
 }
 
 const holdsFiles = (event: DragEvent): boolean => event.dataTransfer?.types.includes('Files') === true;
 
 /** Takes files dropped anywhere on the page, or chosen. While a file is over the window the whole page says where it goes. */
-export function DropZone({ plantName, limitBytes, onFiles }: DropZoneProps) {
+export function DropZone({ plantName, limit, onFiles }: DropZoneProps) {
   const input = useRef<HTMLInputElement>(null);
   const [over, setOver] = useState(false);
 
@@ -58,7 +58,7 @@ export function DropZone({ plantName, limitBytes, onFiles }: DropZoneProps) {
         <div>
           <p className="text-[15px] font-semibold">Drop files anywhere on this page</p>
           <p className="text-ink-2">
-            CSV or TSV, plain or gzip; several with one heading at once. Up to {formatBytes(limitBytes)}.{' '}
+            CSV or TSV, plain or gzip; several with one heading at once. Up to {limit.words}.{' '}
             <button type="button" className="link text-ink phone:min-h-11" onClick={() => input.current?.click()}>
               Choose files
             </button>

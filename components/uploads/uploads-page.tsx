@@ -10,19 +10,21 @@ import { CoverageSection } from './coverage-section';
 import { DropZone } from './drop-zone';
 import { UploadTable } from './upload-table';
 import { uploadsLead } from './uploads-words';
-import { useSending } from './use-sending';
+import { useFreshRecord } from './use-fresh-record';
+import { useSending, type UploadLimit } from './use-sending';
 
 export interface UploadsPageProps {
   plantId: string;
-  limitBytes: number;
+  limit: UploadLimit;
   may: { upload: boolean; map: boolean; remove: boolean };
 }
 
 /** Files of a plant: drop, progress, what was read and what was not, and the way back. */
-export function UploadsPage({ plantId, limitBytes, may }: UploadsPageProps) {
+export function UploadsPage({ plantId, limit, may }: UploadsPageProps) {
   const { data: plant } = useQuery(plantQuery(plantId));
   const { data, error, refetch } = useQuery(uploadsQuery(plantId));
-  const sending = useSending(plantId, limitBytes);
+  const sending = useSending(plantId, limit);
+  useFreshRecord(plantId, data?.items);
   const zone = plant?.timeZone ?? 'UTC';
   return (
     <Page foot={{ settingsRevision: plant?.settingsRevision, timeZone: plant?.timeZone }}>
@@ -40,7 +42,7 @@ export function UploadsPage({ plantId, limitBytes, may }: UploadsPageProps) {
         ]}
       />
       {may.upload ? (
-        <DropZone plantName={plant?.name ?? 'this plant'} limitBytes={limitBytes} onFiles={sending.send} />
+        <DropZone plantName={plant?.name ?? 'this plant'} limit={limit} onFiles={sending.send} />
       ) : (
         <p className="py-2.5 text-ink-2">An engineer or the owner of this organization can add files.</p>
       )}

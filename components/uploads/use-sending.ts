@@ -21,8 +21,14 @@ export interface Sending {
   stop: (key: number) => void;
 }
 
+/** How large an upload may be, and how that is said. */
+export interface UploadLimit {
+  bytes: number;
+  words: string;
+}
+
 /** Sends drops, one upload a drop, and keeps the ones that failed in view until they are put away. */
-export function useSending(plantId: string, limitBytes: number): Sending {
+export function useSending(plantId: string, limit: UploadLimit): Sending {
   const queries = useQueryClient();
   const [files, setFiles] = useState<readonly SendingFile[]>([]);
   const stops = useRef(new Map<number, AbortController>());
@@ -42,7 +48,7 @@ export function useSending(plantId: string, limitBytes: number): Sending {
       const key = next.current++;
       const sizeBytes = chosen.reduce((sum, file) => sum + file.size, 0);
       const name = chosen.length === 1 ? (chosen[0]?.name ?? 'file') : `${chosen.length} files`;
-      const refused = refusalOf(chosen, limitBytes);
+      const refused = refusalOf(chosen, limit);
       setFiles((now) => [{ key, name, sizeBytes, share: 0, failure: refused }, ...now]);
       if (refused !== null) return;
       const stop = new AbortController();
@@ -63,7 +69,7 @@ export function useSending(plantId: string, limitBytes: number): Sending {
         })
         .finally(() => stops.current.delete(key));
     },
-    [plantId, limitBytes, queries, change],
+    [plantId, limit, queries, change],
   );
 
   const stop = useCallback(
@@ -78,11 +84,11 @@ export function useSending(plantId: string, limitBytes: number): Sending {
 }
 
 /** What this browser can tell before anything is sent: a folder or empty file, or one over the limit. */
-function refusalOf(files: readonly File[], limitBytes: number): string | null {
+function refusalOf(files: readonly File[], limit: UploadLimit): string | null {
   const empty = files.find((file) => file.size === 0);
   if (empty) return `"${empty.name}" is empty. Export it again, with at least one row of data.`;
   const total = files.reduce((sum, file) => sum + file.size, 0);
-  if (total > limitBytes)
-    return `${formatBytes(total)} is over the limit of ${formatBytes(limitBytes)}. Export a shorter period, or compress the file with gzip.`;
+  if (total > limit.bytes)
+    return `${formatBytes(total)} is over the limit of ${limit.words}. Export a shorter period, or compress the file with gzip.`;
   return null;
 }

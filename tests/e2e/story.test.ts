@@ -44,6 +44,7 @@ test('an engineer adds a plant, drops a week, confirms the columns and sees what
   await page.getByRole('button', { name: 'Confirm and import' }).click();
   await expect(page.getByRole('heading', { name: 'Uploads', level: 1 })).toBeVisible();
   await expect(row).toHaveAttribute('data-status', 'done', { timeout: 30_000 });
+  await expect(page.getByText(/^The record runs to /)).toBeVisible();
   await keepPicture(page, info, 'uploads-done');
 
   await openTab(page, 'Plant');

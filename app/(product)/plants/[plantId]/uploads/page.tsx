@@ -3,7 +3,7 @@ import { UploadsPage } from '@/components/uploads/uploads-page';
 import { withAccess } from '@/lib/auth/current';
 import { Hydrated } from '@/lib/client/hydrate';
 import { plantQuery, uploadsQuery } from '@/lib/client/queries';
-import { uploadLimitBytes } from '@/lib/commands/upload-limit';
+import { sizeInWords, uploadLimitBytes } from '@/lib/commands/upload-limit';
 import { listUploads } from '@/lib/queries/list-uploads';
 import { pagePlant } from '@/lib/queries/page-plant';
 
@@ -23,7 +23,7 @@ export default async function Uploads({ params }: { params: Promise<{ plantId: s
     >
       <UploadsPage
         plantId={plant.id}
-        limitBytes={uploadLimitBytes()}
+        limit={{ bytes: uploadLimitBytes(), words: sizeInWords(uploadLimitBytes()) }}
         may={{ upload: may['upload.create'], map: may['mapping.confirm'], remove: may['upload.remove'] }}
       />
     </Hydrated>
