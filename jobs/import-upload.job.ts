@@ -1,5 +1,5 @@
 import { UploadEntity, PlantEntity, type Plant, type Upload } from '@/entities';
-import { applyUpload, takeOutUpload } from '@/lib/commands/apply-upload';
+import { applyUpload, resumeApplying, takeOutUpload } from '@/lib/commands/apply-upload';
 import { planImport } from '@/lib/commands/import-plan';
 import { importSamples, type ImportResult } from '@/lib/commands/import-samples';
 import { enqueue } from '@/lib/db/enqueue';
@@ -21,6 +21,7 @@ export const importUpload = defineJob({
     if (upload.removedAt !== null || (upload.status === 'failed' && !upload.applied))
       return takeOutUpload(upload, plant, context);
     if (upload.status !== 'received' && upload.status !== 'importing') return; // an earlier delivery of this job has done it
+    if (upload.applied) return resumeApplying(upload, plant, context);
     try {
       await importFile(upload, plant, context);
     } catch (error) {

@@ -1,7 +1,7 @@
 import { days, demoScenario, DEMO_STEP_MINUTES } from '@/fixtures/demo';
 import { hashPassword } from '@/lib/auth/passwords';
 import { createPlant } from '@/lib/commands/create-plant';
-import { ensureDemoAccounts } from '@/lib/commands/demo-accounts';
+import { demoOrganizationId, ensureDemoAccounts } from '@/lib/commands/demo-accounts';
 import { analyseNow, storeRecord } from '@/lib/commands/demo-record';
 import { closeOrm, configureOrm } from '@/lib/db/orm';
 import { queryOne } from '@/lib/db/sql';
@@ -18,8 +18,8 @@ async function loadDemo(): Promise<void> {
   const state = await withTenant({ organizationIds: [] }, (em) =>
     queryOne<{ organizations: number; demo: number }>(
       em,
-      `select (select count(*)::integer from organization) as organizations, (select count(*)::integer from organization where name = any ($1)) as demo`,
-      [demo.organizations.map((each) => each.name)],
+      `select (select count(*)::integer from organization) as organizations, (select count(*)::integer from organization where id = any ($1::uuid[])) as demo`,
+      [demo.organizations.map((each) => demoOrganizationId(each.key))],
     ),
   );
   if (state && state.organizations > 0 && state.demo === 0) {

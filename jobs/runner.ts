@@ -10,6 +10,8 @@ import { JobLost, PermanentFailure, type JobContext, type JobDefinition } from '
 
 const HEARTBEAT_MS = 8_000;
 const POLL_MS = 2_000;
+/** Finds and holds a job while it belongs to one attempt. */
+const HELD = `select 1 from pgboss.job where name = $1 and id = $2 and state = 'active' and retry_count = $3 for update`;
 
 /** The queue runner: one job at a time from one queue. pg-boss keeps the rows; heartbeat, fence and wake-up are here. */
 export class QueueRunner<Name extends JobName> {
@@ -77,10 +79,7 @@ export class QueueRunner<Name extends JobName> {
     const progress = { completed: false };
     const fence = async (em: EntityManager): Promise<void> => {
       const client = await transactionClient(em);
-      const held = await client.query(
-        `select 1 from pgboss.job where name = $1 and id = $2 and state = 'active' and retry_count = $3 for update`,
-        [job.name, job.id, job.retryCount],
-      );
+      const held = await client.query(HELD, [job.name, job.id, job.retryCount]);
       if (held.rowCount === 0) throw new JobLost(`${job.name} ${job.id}`);
     };
     const complete = async (em: EntityManager): Promise<void> => {
@@ -99,7 +98,7 @@ export class QueueRunner<Name extends JobName> {
     try {
       const payload = JOB_PAYLOADS[this.definition.name].parse(job.data) as JobPayload<Name>;
       await this.definition.run(context, payload);
-      if (!progress.completed) await this.boss.complete(job.name, job.id);
+      if (!progress.completed) await this.settleFenced(job, (db) => this.boss.complete(job.name, job.id, {}, { db }));
       log.info({
         event: 'job.done',
         queue: job.name,
@@ -146,14 +145,36 @@ export class QueueRunner<Name extends JobName> {
       return;
     }
     log.error({ event: 'job.failed', ...fields, err: error });
-    if (error instanceof PermanentFailure) {
-      await this.pool.query(
-        `update pgboss.job set retry_limit = retry_count where name = $1 and id = $2 and state = 'active' and retry_count = $3`,
-        [job.name, job.id, job.retryCount],
-      );
-    }
-    await this.boss.fail(job.name, job.id, { message, permanent: error instanceof PermanentFailure });
+    await this.settleFenced(job, async (db) => {
+      if (error instanceof PermanentFailure) {
+        await db.executeSql(`update pgboss.job set retry_limit = retry_count where name = $1 and id = $2`, [
+          job.name,
+          job.id,
+        ]);
+      }
+      await this.boss.fail(job.name, job.id, { message, permanent: error instanceof PermanentFailure }, { db });
+    });
     await this.giveUpFailed();
+  }
+
+  /** Ends a job only while it is this attempt's: pg-boss itself would end another's. */
+  private async settleFenced(
+    job: PgBoss.JobWithMetadata<object>,
+    settle: (db: PgBoss.Db) => Promise<unknown>,
+  ): Promise<void> {
+    const client = await this.pool.connect();
+    try {
+      await client.query('begin');
+      const held = await client.query(HELD, [job.name, job.id, job.retryCount]);
+      if (held.rowCount !== 0)
+        await settle({ executeSql: (text: string, values: unknown[]) => client.query(text, values) });
+      await client.query('commit');
+    } catch (error) {
+      await client.query('rollback').catch(() => undefined);
+      throw error;
+    } finally {
+      client.release();
+    }
   }
 
   /**

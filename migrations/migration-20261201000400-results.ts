@@ -170,7 +170,8 @@ export class Migration20261201000400Results extends Migration {
         acknowledged_at timestamptz,
         acknowledged_by uuid references app_user on delete set null,
         note text,
-        unique (plant_id, cause, started_at),
+        -- judged at the end of a statement: one that moves several episodes may pass through a clash
+        unique (plant_id, cause, started_at) deferrable initially immediate,
         foreign key (plant_id, organization_id) references plant (id, organization_id) on delete cascade
       )`);
     this.addSql(`create index episode_plant_started on episode (plant_id, started_at desc)`);

@@ -28,10 +28,6 @@ export async function requireAccess(returnTo?: string): Promise<Access> {
   redirect(page === '/' ? '/sign-in' : `/sign-in?next=${encodeURIComponent(page)}`);
 }
 
-/** Where the sign-in page leads afterwards: the path asked for, when it is one of this site; `//host` and the like are not. */
-export const returnPath = (next: string | undefined): string =>
-  next !== undefined && /^\/(?![/\\])/.test(next) ? next : '/';
-
 /** The data door of pages: one transaction under the person's tenancy, for prefetching. */
 export const withAccess = <Result>(access: Access, work: (em: EntityManager) => Promise<Result>): Promise<Result> =>
   withTenant(access, work);

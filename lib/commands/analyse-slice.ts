@@ -17,7 +17,9 @@ import {
 } from '../hydronics/types';
 import { assembleMeasurements, type PointPlace } from '../queries/assemble-measurements';
 import { localHours, type LocalHour } from '../queries/local-hours';
+import { pointsInService } from '../queries/points-in-service';
 import { PlantSettings } from '../schemas/plant';
+import { lockPlant } from './lock-plant';
 import { writeHours } from './write-hours';
 
 /** Most UTC days one slice computes: short enough to be fair between tenants and cheap to do again. */
@@ -53,17 +55,18 @@ export interface SliceResult {
 /** Reads the next run of a plant's stale days, at most a month, with a day of record on either side; null when none is left. */
 export async function readSlice(owner: Owner): Promise<SliceInput | null> {
   return withTenant({ organizationIds: [owner.organizationId] }, async (em) => {
+    // Marks first: settings that change after this line come with newer marks, and what was read before them is not stored.
+    const stale = await query<{ day: string; mark: string }>(
+      em,
+      `select day, mark::text from stale_day where organization_id = $1 and plant_id = $2 order by day limit $3`,
+      [owner.organizationId, owner.plantId, SLICE_DAYS],
+    );
     const plant = await em.findOne(PlantEntity, {
       id: owner.plantId,
       organizationId: owner.organizationId,
       deletedAt: null,
     });
     if (!plant) return null;
-    const stale = await query<{ day: string; mark: string }>(
-      em,
-      `select day, mark::text from stale_day where organization_id = $1 and plant_id = $2 order by day limit $3`,
-      [owner.organizationId, owner.plantId, SLICE_DAYS],
-    );
     const first = stale[0];
     if (!first) return null;
     // Only neighbouring days: a gap of weeks between two marks is not read for nothing.
@@ -73,11 +76,7 @@ export async function readSlice(owner: Owner): Promise<SliceInput | null> {
     const days = run.map((each) => each.day);
     const settings = await em.findOneOrFail(PlantSettingsEntity, { ...owner, revision: plant.settingsRevision });
     const { model } = plantModelFromSettings(PlantSettings.parse(settings.settings), plant.arrangement as Arrangement);
-    const points = await query<{ id: string; role: string; unit_index: number }>(
-      em,
-      `select id, role, unit_index from point where organization_id = $1 and plant_id = $2 order by role, unit_index, ordinal`,
-      [owner.organizationId, owner.plantId],
-    );
+    const points = await pointsInService(em, owner);
     const blocks = await readBlocks(em, owner, addDays(first.day, -1), addDays(days.at(-1) ?? first.day, 1));
     return {
       ...owner,
@@ -85,7 +84,7 @@ export async function readSlice(owner: Owner): Promise<SliceInput | null> {
       stepMinutes: plant.stepMinutes,
       settingsRevision: plant.settingsRevision,
       model,
-      points: points.map((point) => ({ id: point.id, role: point.role, unitIndex: point.unit_index })),
+      points,
       blocks,
       days,
       marks: new Map(run.map((each) => [each.day, each.mark])),
@@ -155,7 +154,7 @@ function withDay(hour: HourResult, local: LocalHour | undefined): { hour: HourRe
 
 function hashOf(input: SliceInput, day: string): string {
   const near = new Set([addDays(day, -1), day, addDays(day, 1)]);
-  const hash = createHash('sha256');
+  const hash = createHash('sha256').update(JSON.stringify(input.points));
   for (const block of input.blocks) {
     if (!near.has(block.day)) continue;
     hash
@@ -171,6 +170,7 @@ function hashOf(input: SliceInput, day: string): string {
  */
 export async function writeSlice(em: EntityManager, input: SliceInput, result: SliceResult): Promise<boolean> {
   const { organizationId, plantId } = input;
+  if (!(await lockPlant(em, input))) return false;
   const now = await query<{ day: string; mark: string }>(
     em,
     `select day, mark::text from stale_day where organization_id = $1 and plant_id = $2 and day = any ($3::date[]) order by day for update`,

@@ -1,9 +1,10 @@
 import type { EntityManager } from '@mikro-orm/postgresql';
-import type { Plant, Upload } from '@/entities';
+import { PlantEntity, type Plant, type Upload } from '@/entities';
 import { deriveBlocks } from '../db/blocks';
 import { query } from '../db/sql';
 import { withTenant } from '../db/tenant';
 import type { ImportResult } from './import-samples';
+import { lockPlant } from './lock-plant';
 import { markChangedDays } from './mark-days-stale';
 import { refreshCoverage } from './refresh-coverage';
 import { startAnalysis } from './start-analysis';
@@ -22,6 +23,10 @@ export async function applyUpload(upload: Upload, plant: Plant, result: ImportRe
   const tenancy = { organizationIds: [plant.organizationId] };
   const counts = await withTenant(tenancy, async (em) => {
     await hooks.fence(em);
+    await lockPlant(em, { organizationId: plant.organizationId, plantId: plant.id });
+    const now = await em.findOneOrFail(PlantEntity, { id: plant.id, organizationId: plant.organizationId });
+    // Changed while the file was read: its values are on the old step, and the next attempt reads it on the new one.
+    if (now.stepMinutes !== plant.stepMinutes) throw new Error(`the plant's step became ${now.stepMinutes} min`);
     const applied = await query(
       em,
       `update upload set applied = true, rows_read = $2, samples_stored = $3, data_from = $4, data_to = $5, problems = $6
@@ -41,9 +46,18 @@ export async function applyUpload(upload: Upload, plant: Plant, result: ImportRe
     await hooks.complete(em);
     return false;
   });
-  if (!counts) return;
-  await deriveDays(plant, result.days, hooks);
-  await withTenant(tenancy, async (em) => {
+  if (counts) await finishApplying(upload, plant, result.days, hooks);
+}
+
+/** Goes on with an upload whose layers are complete and count already: an earlier attempt was cut off behind that point. */
+export async function resumeApplying(upload: Upload, plant: Plant, hooks: Hooks): Promise<void> {
+  await finishApplying(upload, plant, await layerDays(upload, plant, hooks), hooks);
+}
+
+async function finishApplying(upload: Upload, plant: Plant, days: readonly string[], hooks: Hooks): Promise<void> {
+  await deriveDays(plant, days, hooks);
+  await withTenant({ organizationIds: [plant.organizationId] }, async (em) => {
+    await lockPlant(em, { organizationId: plant.organizationId, plantId: plant.id });
     await refreshCoverage(em, plant);
     await query(em, `update upload set status = 'analysing', progress = 0 where id = $1 and removed_at is null`, [
       upload.id,
@@ -56,18 +70,11 @@ export async function applyUpload(upload: Upload, plant: Plant, result: ImportRe
 /** Takes an upload's samples out again: its layers go, the days it touched are derived and analysed without it. */
 export async function takeOutUpload(upload: Upload, plant: Plant, hooks: Hooks): Promise<void> {
   const tenancy = { organizationIds: [plant.organizationId] };
-  const days = await withTenant(tenancy, async (em) => {
-    await hooks.fence(em);
-    const rows = await query<{ day: string }>(
-      em,
-      `select distinct day from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3 order by day`,
-      [plant.organizationId, plant.id, upload.uploadSeq],
-    );
-    return rows.map((row) => row.day);
-  });
+  const days = await layerDays(upload, plant, hooks);
   // The upload no longer counts (applied is false): derive first and drop the layers last, so that a crash leaves the list of days.
   await deriveDays(plant, days, hooks);
   await withTenant(tenancy, async (em) => {
+    await lockPlant(em, { organizationId: plant.organizationId, plantId: plant.id });
     await dropLayers(em, upload, plant);
     if (upload.removedAt !== null) {
       await query(em, `delete from upload_chunk where organization_id = $1 and upload_id = $2`, [
@@ -78,6 +85,18 @@ export async function takeOutUpload(upload: Upload, plant: Plant, hooks: Hooks):
     await refreshCoverage(em, plant);
     await startAnalysisOfStale(em, plant, null);
     await hooks.complete(em);
+  });
+}
+
+async function layerDays(upload: Upload, plant: Plant, hooks: Hooks): Promise<string[]> {
+  return withTenant({ organizationIds: [plant.organizationId] }, async (em) => {
+    await hooks.fence(em);
+    const rows = await query<{ day: string }>(
+      em,
+      `select distinct day from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3 order by day`,
+      [plant.organizationId, plant.id, upload.uploadSeq],
+    );
+    return rows.map((row) => row.day);
   });
 }
 

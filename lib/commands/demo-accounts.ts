@@ -1,6 +1,13 @@
+import { createHash } from 'node:crypto';
 import type { EntityManager } from '@mikro-orm/postgresql';
 import { query, queryOne } from '../db/sql';
 import type { Role } from '../schemas/common';
+
+/** The demo's organizations are known by ids of their own: a name can be anybody's. */
+export function demoOrganizationId(key: string): string {
+  const hex = createHash('sha256').update(`slackwater demo organization ${key}`).digest('hex');
+  return `${hex.slice(0, 8)}-${hex.slice(8, 12)}-4${hex.slice(13, 16)}-8${hex.slice(17, 20)}-${hex.slice(20, 32)}`;
+}
 
 interface Person {
   email: string;
@@ -19,10 +26,9 @@ export async function ensureDemoAccounts(
 ): Promise<Map<string, string>> {
   const ids = new Map<string, string>();
   for (const { key, name } of demo.organizations) {
-    const row =
-      (await queryOne<{ id: string }>(em, `select id from organization where name = $1`, [name])) ??
-      (await queryOne<{ id: string }>(em, `insert into organization (name) values ($1) returning id`, [name]));
-    if (row) ids.set(key, row.id);
+    const id = demoOrganizationId(key);
+    await query(em, `insert into organization (id, name) values ($1, $2) on conflict (id) do nothing`, [id, name]);
+    ids.set(key, id);
   }
   for (const person of demo.users) {
     const user = await queryOne<{ id: string }>(

@@ -15,9 +15,10 @@ const hashed = (text: string): string => createHash('sha256').update(text).diges
  */
 export async function signIn({ email, password }: { email: string; password: string }, place: string): Promise<string> {
   const [pair, address] = [hashed(`${email}|${place}`), hashed(email)];
+  // The narrowest first: tries that one place has used up must not use up the address's, or anyone could lock a person out.
+  const triesLeft = await countCall('sign-in', pair);
   await countCall('sign-in-place', place);
   await countCall('sign-in-address', address);
-  const triesLeft = await countCall('sign-in', pair);
   const user = await withoutTenant((em) => userByEmail(em, email));
   if (!(await passwordFits(user?.password_hash ?? null, password)) || !user) {
     const left = triesLeft === 1 ? '1 try left' : `${triesLeft === 0 ? 'no' : triesLeft} tries left`;

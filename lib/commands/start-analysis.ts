@@ -2,6 +2,7 @@ import type { EntityManager } from '@mikro-orm/postgresql';
 import { KERNEL_VERSION } from '../hydronics/types';
 import { enqueue } from '../db/enqueue';
 import { queryOne } from '../db/sql';
+import { lockPlant } from './lock-plant';
 import { markDaysStale } from './mark-days-stale';
 
 /**
@@ -20,6 +21,7 @@ export async function startAnalysis(
     onlyStale?: boolean;
   },
 ): Promise<string> {
+  await lockPlant(em, input);
   if (!input.onlyStale) await markDaysStale(em, input);
   const row = await queryOne<{ id: string }>(
     em,

@@ -8,9 +8,6 @@ interface StoredEpisode {
   cause: string;
   started_at: string;
   ended_at: string;
-  acknowledged_at: string | null;
-  acknowledged_by: string | null;
-  note: string | null;
 }
 
 /**
@@ -30,7 +27,7 @@ export async function writeEpisodes(
   const found = findEpisodes(rows.map((row) => hourResultOf(row, Date.parse(isoInstant(row.hour_start)))));
   const stored = await query<StoredEpisode>(
     em,
-    `select id, cause, started_at, ended_at, acknowledged_at, acknowledged_by, note from episode
+    `select id, cause, started_at, ended_at from episode
      where organization_id = $1 and plant_id = $2 order by started_at for update`,
     [owner.organizationId, owner.plantId],
   );
@@ -40,10 +37,6 @@ export async function writeEpisodes(
     endMs: Date.parse(isoInstant(each.ended_at)),
   }));
   const claimed = new Set<string>();
-  await query(em, `delete from episode where organization_id = $1 and plant_id = $2`, [
-    owner.organizationId,
-    owner.plantId,
-  ]);
   const next = found.map((episode) => {
     const same = before.find(
       (old) =>
@@ -55,16 +48,24 @@ export async function writeEpisodes(
     if (same) claimed.add(same.id);
     return { episode, same };
   });
+  // Kept in place, never deleted and made again: an acknowledgement that waits for the row still finds it.
+  await query(em, `delete from episode where organization_id = $1 and plant_id = $2 and not (id = any ($3::uuid[]))`, [
+    owner.organizationId,
+    owner.plantId,
+    [...claimed],
+  ]);
   const finite = (value: number): number | null => (Number.isFinite(value) ? value : null);
   const instant = (ms: number): string => new Date(ms).toISOString();
   await query(
     em,
     `insert into episode (id, organization_id, plant_id, cause, started_at, ended_at, hours, worst_hour, largest_reverse_flow_gpm, warmest_supply_f,
-       excess_energy_kwh, excess_cost, acknowledged_at, acknowledged_by, note)
-     select coalesce(id, gen_random_uuid()), $1, $2, cause, started_at, ended_at, hours, worst_hour, flow, supply, energy, cost, ack_at, ack_by, note
+       excess_energy_kwh, excess_cost)
+     select coalesce(id, gen_random_uuid()), $1, $2, cause, started_at, ended_at, hours, worst_hour, flow, supply, energy, cost
      from unnest($3::uuid[], $4::text[], $5::timestamptz[], $6::timestamptz[], $7::integer[], $8::timestamptz[], $9::float8[], $10::float8[],
-       $11::float8[], $12::float8[], $13::timestamptz[], $14::uuid[], $15::text[])
-       as e(id, cause, started_at, ended_at, hours, worst_hour, flow, supply, energy, cost, ack_at, ack_by, note)`,
+       $11::float8[], $12::float8[]) as e(id, cause, started_at, ended_at, hours, worst_hour, flow, supply, energy, cost)
+     on conflict (id) do update set started_at = excluded.started_at, ended_at = excluded.ended_at, hours = excluded.hours,
+       worst_hour = excluded.worst_hour, largest_reverse_flow_gpm = excluded.largest_reverse_flow_gpm,
+       warmest_supply_f = excluded.warmest_supply_f, excess_energy_kwh = excluded.excess_energy_kwh, excess_cost = excluded.excess_cost`,
     [
       owner.organizationId,
       owner.plantId,
@@ -78,9 +79,6 @@ export async function writeEpisodes(
       next.map(({ episode }) => finite(episode.warmestSupplyF)),
       next.map(({ episode }) => finite(episode.excessEnergyKwh)),
       next.map(({ episode }) => finite(episode.excessCost)),
-      next.map(({ same }) => same?.acknowledged_at ?? null),
-      next.map(({ same }) => same?.acknowledged_by ?? null),
-      next.map(({ same }) => same?.note ?? null),
     ],
   );
 }

@@ -15,8 +15,9 @@ export const QUEUES = {
     retentionMinutes: 60 * 24 * 14,
   },
   'daily-alert': {
-    retryLimit: 5,
-    retryDelay: 10,
+    // Some hours in all: an outage of the mail service shorter than a morning must not cost the operator's mail.
+    retryLimit: 10,
+    retryDelay: 30,
     retryBackoff: true,
     expireInSeconds: 30,
     retentionMinutes: 60 * 24 * 14,

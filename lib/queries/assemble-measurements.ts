@@ -1,5 +1,5 @@
 import type { PointDay } from '../db/blocks';
-import { daysBetween } from '../db/days';
+import { addDays, daysBetween, dayStartMs } from '../db/days';
 import type { Measurements } from '../hydronics/types';
 import type { PointRoleName } from '../point-roles';
 
@@ -8,7 +8,16 @@ export interface PointPlace {
   id: string;
   role: string;
   unitIndex: number;
+  /** First and last UTC day of the whole record that hold a value of it. */
+  firstDay: string;
+  lastDay: string;
 }
+
+/**
+ * Days after its last value for which a feeder still counts as in service: a meter that has fallen silent makes its sum missing,
+ * one that was taken away some day stops doing so.
+ */
+const SILENT_DAYS = 31;
 
 /**
  * Lays the day blocks of a stretch of record side by side as the kernel wants them. Several feeders of one role: flows and
@@ -37,12 +46,20 @@ export function assembleMeasurements(
     column.set(block.values, start);
   }
 
-  const feeders = (role: PointRoleName, unitIndex = 0): Float64Array[] =>
+  const missing = new Float64Array(n).fill(NaN);
+  // Which feeders there are is a matter of the whole record, not of the stretch: the answer for a day must not depend on how
+  // much was read around it.
+  const feeders = (role: PointRoleName, unitIndex: number): Feeder[] =>
     points
       .filter((point) => point.role === role && point.unitIndex === unitIndex)
-      .flatMap((point) => columns.get(point.id) ?? []);
-  const mean = (role: PointRoleName, unitIndex = 0) => combine(feeders(role, unitIndex), 'mean');
-  const sum = (role: PointRoleName, unitIndex = 0) => combine(feeders(role, unitIndex), 'sum');
+      .map((point) => ({
+        values: columns.get(point.id) ?? missing,
+        fromSlot: slotOf(point.firstDay, stretch.fromDay, slotsPerDay),
+        toSlot: slotOf(addDays(point.lastDay, 1 + SILENT_DAYS), stretch.fromDay, slotsPerDay),
+      }))
+      .filter((feeder) => feeder.fromSlot < n && feeder.toSlot > 0);
+  const mean = (role: PointRoleName, unitIndex = 0) => combine(feeders(role, unitIndex), n, 'mean');
+  const sum = (role: PointRoleName, unitIndex = 0) => combine(feeders(role, unitIndex), n, 'sum');
   const units = <Value>(of: (unitIndex: number) => Value): Value[] =>
     Array.from({ length: stretch.unitCount }, (_, index) => of(index + 1));
 
@@ -71,21 +88,34 @@ export function assembleMeasurements(
   };
 }
 
-function combine(columns: readonly Float64Array[], how: 'mean' | 'sum'): Float64Array | undefined {
-  const [first] = columns;
-  if (!first || columns.length === 1) return first;
-  return first.map((_, slot) => {
+/** One column of a role, and the slots of the stretch in which it is in service. */
+interface Feeder {
+  values: Float64Array;
+  fromSlot: number;
+  toSlot: number;
+}
+
+const slotOf = (day: string, fromDay: string, slotsPerDay: number): number =>
+  ((dayStartMs(day) - dayStartMs(fromDay)) / 86_400_000) * slotsPerDay;
+
+function combine(feeders: readonly Feeder[], n: number, how: 'mean' | 'sum'): Float64Array | undefined {
+  const [first] = feeders;
+  if (!first || feeders.length === 1) return first?.values;
+  const combined = new Float64Array(n);
+  for (let slot = 0; slot < n; slot++) {
     let total = 0;
     let count = 0;
-    for (const column of columns) {
-      const value = column[slot] ?? NaN;
-      if (Number.isNaN(value)) {
-        if (how === 'sum') return NaN;
-        continue;
+    let gap = false;
+    for (const { values, fromSlot, toSlot } of feeders) {
+      if (slot < fromSlot || slot >= toSlot) continue;
+      const value = values[slot] ?? NaN;
+      if (Number.isNaN(value)) gap = true;
+      else {
+        total += value;
+        count++;
       }
-      total += value;
-      count++;
     }
-    return how === 'sum' ? total : count === 0 ? NaN : total / count;
-  });
+    combined[slot] = count === 0 || (how === 'sum' && gap) ? NaN : how === 'sum' ? total : total / count;
+  }
+  return combined;
 }

@@ -2,13 +2,14 @@ import type { EntityManager } from '@mikro-orm/postgresql';
 import { PlantSettingsEntity } from '@/entities';
 import { readBlocks, readResults, type ResultDay } from '../db/blocks';
 import { dayStartMs } from '../db/days';
-import { query, queryOne } from '../db/sql';
+import { queryOne } from '../db/sql';
 import { notFound } from '../http/problem';
 import { inUnits } from '../http/si-units';
 import { plantModelFromSettings } from '../hydronics/plant-model';
 import type { Arrangement, Measurements, ResultChannel } from '../hydronics/types';
 import { PlantSettings } from '../schemas/plant';
 import { assembleMeasurements } from './assemble-measurements';
+import { pointsInService } from './points-in-service';
 import { figure } from './figures';
 import { hourEvidence } from './hour-evidence';
 import { meanOver, slotsToldOf, workOutHour, type HourFacts, type MeasuredHour } from './hour-facts';
@@ -130,11 +131,7 @@ async function plantFacts(em: EntityManager, plant: PlantOfHour, revision: numbe
   const stored = await em.findOneOrFail(PlantSettingsEntity, { ...owner, revision });
   const settings = PlantSettings.parse(stored.settings);
   const { model } = plantModelFromSettings(settings, plant.arrangement as Arrangement);
-  const points = await query<{ id: string; role: string; unit_index: number }>(
-    em,
-    `select id, role, unit_index from point where organization_id = $1 and plant_id = $2 order by role, unit_index, ordinal`,
-    [plant.organizationId, plant.id],
-  );
+  const places = await pointsInService(em, owner);
   const { temperatureSigmaF, flowSigmaPercent } = model.sensors;
   const facts: HourFacts['plant'] = {
     arrangement: model.arrangement,
@@ -152,7 +149,6 @@ async function plantFacts(em: EntityManager, plant: PlantOfHour, revision: numbe
       secondaryFlowPercent: flowSigmaPercent.secondaryFlow,
     },
   };
-  const places = points.map((point) => ({ id: point.id, role: point.role, unitIndex: point.unit_index }));
   return {
     facts,
     measurementsOf: async (fromDay: string, toDay: string, stepMinutes: number) =>

@@ -4,16 +4,12 @@ import { SignInForm } from '@/components/account/sign-in-form';
 import { PLANTS_PATH } from '@/components/shell/tabs';
 import { currentAccess } from '@/lib/auth/current';
 import { signUpIsOpen } from '@/lib/commands/create-account';
+import { returnPath } from '@/lib/http/return-path';
 
 export const metadata: Metadata = { title: 'Sign in' };
 
-/** Where someone goes after signing in: a path of this site and nothing else, or an open redirect would lead anywhere. */
-function safeNext(next: string | string[] | undefined): string {
-  return typeof next === 'string' && /^\/(?![/\\])/.test(next) ? next : PLANTS_PATH;
-}
-
 export default async function SignInPage({ searchParams }: { searchParams: Promise<{ next?: string | string[] }> }) {
-  const next = safeNext((await searchParams).next);
+  const next = returnPath((await searchParams).next, PLANTS_PATH);
   if (await currentAccess()) redirect(next);
   return <SignInForm next={next} signUp={signUpIsOpen()} />;
 }
