@@ -31,7 +31,7 @@ export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
     <>
       <tr className={ROW_ON_PHONE} data-upload={upload.id} data-status={upload.status}>
         <RowHead className="font-semibold! break-all">{upload.filename}</RowHead>
-        <Cell numeric>{formatBytes(upload.sizeBytes)}</Cell>
+        <Cell numeric>{upload.sizeBytes === 0 ? MISSING : formatBytes(upload.sizeBytes)}</Cell>
         <td>
           <State upload={upload} />
         </td>
