@@ -197,7 +197,7 @@ status() {
   for name in web worker; do
     printf '%-13s %s\n' "${name^}:" "$(if pid=$(alive $name); then echo "running (process $pid)"; else echo 'not running'; fi)"
   done
-  if alive script >/dev/null && service_settings && is_ready "$LOCAL_URL"; then
+  if alive script >/dev/null && service_settings && is_ready "$(cat "$DATA/run/listens" 2>/dev/null || echo "$LOCAL_URL")"; then
     serving=0
     say "Ready:        $(cat "$DATA/run/address" 2>/dev/null || echo "$LOCAL_URL")"
   else

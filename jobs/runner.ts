@@ -53,7 +53,7 @@ export class QueueRunner<Name extends JobName> {
         else await this.idle();
       } catch (error) {
         // The database is away, or a bookkeeping query failed: the job's expiry will bring it back.
-        log.error({ event: 'job.loop-failed', queue: this.definition.name, err: error });
+        log.error({ queue: this.definition.name, err: error }, 'job.loop-failed');
         await pause(POLL_MS);
       }
     }
@@ -99,14 +99,10 @@ export class QueueRunner<Name extends JobName> {
       const payload = JOB_PAYLOADS[this.definition.name].parse(job.data) as JobPayload<Name>;
       await this.definition.run(context, payload);
       if (!progress.completed) await this.settleFenced(job, (db) => this.boss.complete(job.name, job.id, {}, { db }));
-      log.info({
-        event: 'job.done',
-        queue: job.name,
-        jobId: job.id,
-        attempt: job.retryCount,
-        durationMs: Date.now() - startedAt,
-        ...payload,
-      });
+      log.info(
+        { queue: job.name, jobId: job.id, attempt: job.retryCount, durationMs: Date.now() - startedAt, ...payload },
+        'job.done',
+      );
     } catch (error) {
       await this.settle(job, error, startedAt);
     } finally {
@@ -123,14 +119,14 @@ export class QueueRunner<Name extends JobName> {
       );
       if (held.rowCount === 0) lost.abort(new JobLost(`${job.name} ${job.id}`));
     } catch (error) {
-      log.warn({ event: 'job.heartbeat-failed', queue: job.name, jobId: job.id, err: error });
+      log.warn({ queue: job.name, jobId: job.id, err: error }, 'job.heartbeat-failed');
     }
   }
 
   private async settle(job: PgBoss.JobWithMetadata<object>, error: unknown, startedAt: number): Promise<void> {
     const fields = { queue: job.name, jobId: job.id, attempt: job.retryCount, durationMs: Date.now() - startedAt };
     if (error instanceof JobLost) {
-      log.warn({ event: 'job.lost', ...fields });
+      log.warn({ ...fields }, 'job.lost');
       return;
     }
     const message = error instanceof Error ? error.message : String(error);
@@ -141,10 +137,10 @@ export class QueueRunner<Name extends JobName> {
          where name = $1 and id = $2 and state = 'active' and retry_count = $3`,
         [job.name, job.id, job.retryCount],
       );
-      log.info({ event: 'job.handed-back', ...fields });
+      log.info({ ...fields }, 'job.handed-back');
       return;
     }
-    log.error({ event: 'job.failed', ...fields, err: error });
+    log.error({ ...fields, err: error }, 'job.failed');
     await this.settleFenced(job, async (db) => {
       if (error instanceof PermanentFailure) {
         await db.executeSql(`update pgboss.job set retry_limit = retry_count where name = $1 and id = $2`, [

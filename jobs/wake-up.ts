@@ -21,7 +21,7 @@ export class WakeUp {
   async start(): Promise<void> {
     const client = new pg.Client({ connectionString: this.connectionString, keepAlive: true });
     client.on('error', (error) => {
-      log.warn({ event: 'wake-up.lost', err: error });
+      log.warn({ err: error }, 'wake-up.lost');
       this.again();
     });
     client.on('end', () => this.again());
@@ -31,7 +31,7 @@ export class WakeUp {
       await client.query(`listen ${WAKE_CHANNEL}`);
       this.client = client;
     } catch (error) {
-      log.warn({ event: 'wake-up.failed', err: error });
+      log.warn({ err: error }, 'wake-up.failed');
       await client.end().catch(() => undefined);
       this.again();
     }

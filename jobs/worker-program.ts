@@ -31,7 +31,7 @@ export class WorkerProgram {
   constructor(connectionString: string, jobs: readonly AnyJob[], options: { heartbeatMs?: number } = {}) {
     this.pool = new pg.Pool({ connectionString, max: 4 });
     // An idle connection that breaks is replaced at the next query; unheard, its error would end the process.
-    this.pool.on('error', (error) => log.warn({ event: 'pool.error', err: error }));
+    this.pool.on('error', (error) => log.warn({ err: error }, 'pool.error'));
     this.boss = new PgBoss({
       db: { executeSql: (text: string, values: unknown[]) => this.pool.query(text, values) },
       migrate: false,
@@ -39,7 +39,7 @@ export class WorkerProgram {
       supervise: true,
       maintenanceIntervalSeconds: MAINTENANCE_SECONDS,
     });
-    this.boss.on('error', (error) => log.warn({ event: 'queue.error', err: error }));
+    this.boss.on('error', (error) => log.warn({ err: error }, 'queue.error'));
     this.runners = jobs.map((job) => ({
       name: job.name,
       runner: new QueueRunner(this.boss, this.pool, job as JobDefinition<JobName>, options.heartbeatMs),
@@ -56,7 +56,7 @@ export class WorkerProgram {
     await this.alive();
     this.timers = [setInterval(() => void this.alive(), ALIVE_MS), setInterval(() => void this.tick(), TICK_MS)];
     void this.tick();
-    log.info({ event: 'worker.started', workerId: this.id });
+    log.info({ workerId: this.id }, 'worker.started');
   }
 
   async stop(): Promise<void> {
@@ -66,7 +66,7 @@ export class WorkerProgram {
     await this.boss.stop({ graceful: false, close: false });
     await this.pool.query(`delete from worker_heartbeat where worker_id = $1`, [this.id]).catch(() => undefined);
     await this.pool.end();
-    log.info({ event: 'worker.stopped', workerId: this.id });
+    log.info({ workerId: this.id }, 'worker.stopped');
   }
 
   private async alive(): Promise<void> {
@@ -76,7 +76,7 @@ export class WorkerProgram {
         [this.id],
       );
     } catch (error) {
-      log.warn({ event: 'worker.heartbeat-failed', err: error });
+      log.warn({ err: error }, 'worker.heartbeat-failed');
     }
   }
 
@@ -86,7 +86,7 @@ export class WorkerProgram {
       await this.pool.query(`delete from worker_heartbeat where seen_at < now() - interval '1 day'`);
       await withoutTenant(async (em) => {
         const ended = await query<{ upload_id: string }>(em, `select upload_id from end_abandoned_uploads()`);
-        if (ended.length > 0) log.info({ event: 'upload.abandoned', uploads: ended.length });
+        if (ended.length > 0) log.info({ uploads: ended.length }, 'upload.abandoned');
       });
       await withoutTenant(async (em) => {
         const due = await query<{ run_id: string; organization_id: string }>(
@@ -98,7 +98,7 @@ export class WorkerProgram {
       });
       for (const { runner } of this.runners) await runner.giveUpFailed();
     } catch (error) {
-      log.warn({ event: 'worker.tick-failed', err: error });
+      log.warn({ err: error }, 'worker.tick-failed');
     }
   }
 }

@@ -17,7 +17,7 @@ let stopping = false;
 const stop = async (signal: string) => {
   if (stopping) return;
   stopping = true;
-  log.info({ event: 'worker.stopping', signal });
+  log.info({ signal }, 'worker.stopping');
   await worker.stop();
   await closeOrm();
   process.exit(0);

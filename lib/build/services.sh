@@ -126,7 +126,7 @@ leave() {
   [ -z "${BUILD_PID:-}" ] || kill -TERM "$BUILD_PID" 2>/dev/null || true
   end worker web
   [ -n "$GIVEN_URL" ] || release_cluster "$DATA"
-  rm -f "$DATA/run/script" "$DATA/run/address"
+  rm -f "$DATA/run/script" "$DATA/run/address" "$DATA/run/listens"
   [ "$code" != 0 ] || say "Stopped."
   exit "$code"
 }
@@ -165,6 +165,8 @@ serve() {
     sleep 0.3
   done
   printf '%s\n' "${PUBLIC_URL:-$LOCAL_URL}" >"$DATA/run/address"
+  # `status` is asked in another shell, where PORT need not be set: it looks where this copy listens.
+  printf '%s\n' "$LOCAL_URL" >"$DATA/run/listens"
   greet
   [ "$mode" != dev ] || tail -q -n 0 --pid=$$ -F "$DATA/log/web.log" "$DATA/log/worker.log" 2>/dev/null 6>&- 8>&- &
   while :; do
