@@ -99,10 +99,8 @@ export class QueueRunner<Name extends JobName> {
       const payload = JOB_PAYLOADS[this.definition.name].parse(job.data) as JobPayload<Name>;
       await this.definition.run(context, payload);
       if (!progress.completed) await this.settleFenced(job, (db) => this.boss.complete(job.name, job.id, {}, { db }));
-      log.info(
-        { queue: job.name, jobId: job.id, attempt: job.retryCount, durationMs: Date.now() - startedAt, ...payload },
-        'job.done',
-      );
+      const fields: Record<string, unknown> = { ...payload, queue: job.name, jobId: job.id, attempt: job.retryCount };
+      log.info({ ...fields, durationMs: Date.now() - startedAt }, 'job.done');
     } catch (error) {
       await this.settle(job, error, startedAt);
     } finally {
