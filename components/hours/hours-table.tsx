@@ -1,13 +1,12 @@
 'use client';
 import Link from 'next/link';
 import { useRouter } from 'next/navigation';
-import { useRef } from 'react';
 import { RankBar } from '@/components/charts/cause-bars';
 import { DirectionMark } from '@/components/marks/direction-mark';
 import { plantPath } from '@/components/shell/tabs';
 import { useFormat } from '@/components/shell/units-context';
 import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
-import { useKeys } from '@/components/ui/use-keys';
+import { useRowKeys } from '@/components/ui/use-row-keys';
 import { formatHoursMinutes, formatMoney, formatNumber, formatProbability, MISSING } from '@/lib/client/format';
 import { formatDayTime } from '@/lib/client/format-time';
 import { causeWords, type Direction } from '@/lib/client/words';
@@ -51,13 +50,7 @@ export function HoursTable({
 }: HoursTableProps) {
   const print = useFormat();
   const router = useRouter();
-  const body = useRef<HTMLTableSectionElement>(null);
-  const move = (by: number) => {
-    const links = [...(body.current?.querySelectorAll<HTMLAnchorElement>('th a') ?? [])];
-    const at = links.findIndex((link) => link === document.activeElement);
-    links[Math.min(links.length - 1, Math.max(0, at + by))]?.focus();
-  };
-  useKeys({ j: () => move(1), k: () => move(-1) });
+  const body = useRowKeys();
   const most = Math.max(1e-9, ...hours.map(RANKED_BY[rank]));
   const bar = (hour: HourRow, of: Rank) =>
     of === rank ? <RankBar share={RANKED_BY[rank](hour) / most} cause={hour.cause} /> : null;

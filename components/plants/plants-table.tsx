@@ -1,13 +1,13 @@
 'use client';
 import Link from 'next/link';
 import { useRouter } from 'next/navigation';
-import { useRef, type ReactNode } from 'react';
+import type { ReactNode } from 'react';
 import { TideStripSmall } from '@/components/charts/tide-strip-small';
 import { plantPath } from '@/components/shell/tabs';
 import { useFormat } from '@/components/shell/units-context';
 import { HeadCell, Cell, RowHead } from '@/components/ui/table';
 import { Tag } from '@/components/ui/tag';
-import { useKeys } from '@/components/ui/use-keys';
+import { useRowKeys } from '@/components/ui/use-row-keys';
 import { formatHoursMinutes, formatMoney, formatNumber, MISSING } from '@/lib/client/format';
 import { addLocalDays, formatDayTime, localDayStarts, momentMs } from '@/lib/client/format-time';
 import type { OverviewPlant } from '@/lib/schemas/overview';
@@ -23,14 +23,8 @@ const tideOf = (plant: OverviewPlant): Tide => ({
 
 /** A real table on a desk; a block a plant on a phone, from the same rows. */
 export function PlantsTable({ plants }: { plants: readonly OverviewPlant[] }) {
-  const body = useRef<HTMLTableSectionElement>(null);
+  const body = useRowKeys({ next: 'ArrowDown', previous: 'ArrowUp' });
   const router = useRouter();
-  const move = (by: number) => {
-    const links = [...(body.current?.querySelectorAll<HTMLAnchorElement>('th a') ?? [])];
-    const at = links.findIndex((link) => link === document.activeElement);
-    links[Math.min(links.length - 1, Math.max(0, at + by))]?.focus();
-  };
-  useKeys({ j: () => move(1), k: () => move(-1), ArrowDown: () => move(1), ArrowUp: () => move(-1) });
   const first = plants[0];
   return (
     <table className="table phone:block" data-ruled data-hover>

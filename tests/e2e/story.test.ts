@@ -1,7 +1,7 @@
 import { readFile } from 'node:fs/promises';
 import { expect, test } from '@playwright/test';
 import { weekCsv } from '../../fixtures/demo';
-import { complaints, keepPicture, openPlant, openTab, signIn } from './support';
+import { complaints, dropFile, keepPicture, openPlant, openTab, signIn } from './support';
 
 // The whole job once, in order, on one database: each step stands on the one before.
 test.describe.configure({ mode: 'serial' });
@@ -31,7 +31,7 @@ test('an engineer adds a plant, drops a week, confirms the columns and sees what
   await expect(page.getByRole('heading', { name: 'Uploads', level: 1 })).toBeVisible();
   await expect(page.getByText('No file yet.')).toBeVisible();
 
-  await page.getByLabel('Trend files').setInputFiles(week);
+  await dropFile(page, 'week.csv', week.buffer.toString());
   const row = page.locator('tr[data-upload]').first();
   await expect(row).toHaveAttribute('data-status', 'needs-mapping');
   await keepPicture(page, info, 'uploads-needs-mapping');

@@ -55,3 +55,19 @@ export async function expectNoSidewaysScroll(page: Page): Promise<void> {
   const over = await page.evaluate(() => document.documentElement.scrollWidth - innerWidth);
   expect(over).toBeLessThanOrEqual(0);
 }
+
+/** Drops a file on the page as a person does: over the window, let go. */
+export async function dropFile(page: Page, name: string, text: string): Promise<void> {
+  const transfer = await page.evaluateHandle(
+    ([fileName, content]) => {
+      const data = new DataTransfer();
+      data.items.add(new File([content], fileName, { type: 'text/csv' }));
+      return data;
+    },
+    [name, text] as const,
+  );
+  await page.dispatchEvent('body', 'dragenter', { dataTransfer: transfer });
+  await expect(page.getByText(/^let go to upload to /)).toBeVisible();
+  await page.dispatchEvent('body', 'drop', { dataTransfer: transfer });
+  await expect(page.getByText(/^let go to upload to /)).toHaveCount(0);
+}
