@@ -1,6 +1,6 @@
 import { defineEntity, p, type InferEntity } from '@mikro-orm/core';
 
-/** Sensor offsets and meter gains in force over a stretch of the record. */
+/** What the record of a calendar month (UTC days) says about its sensors; in force for all of that month's results. */
 export const CalibrationEntity = defineEntity({
   name: 'Calibration',
   tableName: 'calibration',
@@ -8,13 +8,15 @@ export const CalibrationEntity = defineEntity({
     organizationId: p.uuid(),
     plantId: p.uuid().primary(),
     id: p.integer().primary(),
-    validFrom: p.datetime(),
-    validTo: p.datetime(),
+    /** First day of the month. */
+    validFrom: p.type('string').columnType('date'),
+    /** Last day of the month. */
+    validTo: p.type('string').columnType('date'),
     inputHash: p.text(),
-    offsets: p.json<Record<string, number>>(),
-    gains: p.json<Record<string, number>>(),
-    covariance: p.json<number[][]>(),
+    settingsRevision: p.integer(),
     kernelVersion: p.text(),
+    /** The kernel's Calibration; NaN is null here. */
+    detail: p.json<Record<string, unknown>>(),
     createdAt: p.datetime().defaultRaw('now()'),
   },
 });

@@ -19,6 +19,7 @@ import { ResultBlockEntity } from './result-block';
 import { SampleBlockEntity } from './sample-block';
 import { SampleLayerEntity } from './sample-layer';
 import { SessionEntity } from './session';
+import { SpotCheckEntity } from './spot-check';
 import { StaleDayEntity } from './stale-day';
 import { UploadEntity } from './upload';
 import { UploadChunkEntity } from './upload-chunk';
@@ -46,6 +47,7 @@ export const ENTITIES = [
   SampleBlockEntity,
   SampleLayerEntity,
   SessionEntity,
+  SpotCheckEntity,
   StaleDayEntity,
   UploadEntity,
   UploadChunkEntity,
@@ -73,6 +75,7 @@ export {
   SampleBlockEntity,
   SampleLayerEntity,
   SessionEntity,
+  SpotCheckEntity,
   StaleDayEntity,
   UploadEntity,
   UploadChunkEntity,
@@ -99,6 +102,7 @@ export type { ResultBlock } from './result-block';
 export type { SampleBlock } from './sample-block';
 export type { SampleLayer } from './sample-layer';
 export type { Session } from './session';
+export type { SpotCheck } from './spot-check';
 export type { StaleDay } from './stale-day';
 export type { Upload } from './upload';
 export type { UploadChunk } from './upload-chunk';

@@ -33,6 +33,9 @@ export const ResultBlockEntity = defineEntity({
     quality: p.type('string').columnType('real[]').lazy(true, false).name('quality'),
     state: p.type('string').columnType('real[]').lazy(true, false).name('state'),
     reason: p.type('string').columnType('real[]').lazy(true, false).name('reason'),
+    chiSquare: p.type('string').columnType('real[]').lazy(true, false).name('chi_square').defaultRaw("'{}'"),
+    redundancy: p.type('string').columnType('real[]').lazy(true, false).name('redundancy').defaultRaw("'{}'"),
+    atOdds: p.type('string').columnType('real[]').lazy(true, false).name('at_odds').defaultRaw("'{}'"),
   },
 });
 export type ResultBlock = InferEntity<typeof ResultBlockEntity>;

@@ -4,6 +4,7 @@ import { Migration20261201000300Samples } from './migration-20261201000300-sampl
 import { Migration20261201000400Results } from './migration-20261201000400-results';
 import { Migration20261201000500Alerts } from './migration-20261201000500-alerts';
 import { Migration20261201000600MailSuppression } from './migration-20261201000600-mail-suppression';
+import { Migration20261201000700Calibration } from './migration-20261201000700-calibration';
 
 /** In order of application; listed by import so that a bundled program carries them. */
 export const MIGRATIONS = [
@@ -13,4 +14,5 @@ export const MIGRATIONS = [
   { name: '20261201000400-results', class: Migration20261201000400Results },
   { name: '20261201000500-alerts', class: Migration20261201000500Alerts },
   { name: '20261201000600-mail-suppression', class: Migration20261201000600MailSuppression },
+  { name: '20261201000700-calibration', class: Migration20261201000700Calibration },
 ];
