@@ -79,6 +79,8 @@ export interface Calibration {
   sets: number[];
   /** Noise of one interval (k = 1): deg F for the five temperatures, share of reading for the three flows. */
   noise: number[];
+  /** Mean share of the main flow that crosses over, either way: the scale of the record's own prior. */
+  shareScale: number;
   /** Where the header sensor of unknown place sits, and the probability that it is the production side. */
   header: { side: 'primary' | 'secondary' | 'unknown' | 'absent'; primaryProbability: number };
   findings: SensorFinding[];

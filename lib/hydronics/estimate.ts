@@ -1,18 +1,28 @@
 import { TON_BTU_PER_HOUR } from '../units';
-import { densityFromCurves, enthalpyFromCurves, fluidCurves, specificHeatFromCurves, tempFFromCurves } from './fluids';
+import type { Calibration } from './calibration-types';
+import { densityFromCurves, enthalpyFromCurves, fluidCurves } from './fluids';
 import type { FluidCurves } from './fluids';
+import { readLoop } from './loop-record';
+import type { LoopRecord } from './loop-record';
+import { fromMixing, mixingScale, toMixing } from './mixing-scale';
+import type { MixingScale } from './mixing-scale';
+import { NINETY_PERCENT_Z } from './normal';
 import { markQuality } from './quality';
-import { emptySlotInputs, readSlot } from './slot-inputs';
-import type { SlotInputs } from './slot-inputs';
+import { emptySlotValues, fillReading, flowErrorsAt } from './read-slot';
+import { errorsOfCalibration, errorsOfClass } from './sensor-errors';
+import { emptySlotReading } from './slot-reading';
 import { plantStates } from './state';
 import { markSteady } from './steadiness';
 import { DIRECTIONS, REASONS, RESULT_CHANNELS, STATES } from './types';
 import type { Estimates, Measurements, PlantModel } from './types';
-import { emptyStreams, emptyWayEvidence, readStreams, weighWay } from './way-evidence';
-import { DECIDED_PROBABILITY, emptyVerdict, ninetyPercent, weighDirections } from './weigh-directions';
-import type { Verdict } from './weigh-directions';
+import { emptyVerdict, settleNothing } from './verdict';
+import type { Verdict } from './verdict';
+import { slotAverager } from './slot-average';
+import { at } from './units-on';
+import { emptyWeighing, weighSlot } from './weigh-slot';
 
 const OFF = STATES.indexOf('off');
+const UNKNOWN = DIRECTIONS.indexOf('unknown');
 const REASON_OFF = REASONS.indexOf('off');
 const known = (value: number): boolean => value === value;
 
@@ -23,10 +33,10 @@ export function emptyEstimates(n: number): Estimates {
 }
 
 /** Every channel of a record has its length, or the call is wrong. */
-function checkLengths(measurements: Measurements): void {
+export function checkLengths(measurements: Measurements, caller: string): void {
   const check = (name: string, channel: Float64Array | undefined) => {
     if (channel && channel.length !== measurements.n) {
-      throw new RangeError(`estimateIntervals: ${name} has length ${channel.length}, the record ${measurements.n}`);
+      throw new RangeError(`${caller}: ${name} has length ${channel.length}, the record ${measurements.n}`);
     }
   };
   for (const [name, value] of Object.entries(measurements) as [string, unknown][]) {
@@ -37,124 +47,111 @@ function checkLengths(measurements: Measurements): void {
   }
 }
 
-/** Cooling of a flow between two enthalpies, its meter at `meterF`. */
-const tons = (flowGpm: number, meterF: number, rise: number, curves: FluidCurves): number =>
-  (60 * densityFromCurves(meterF, curves) * flowGpm * rise) / TON_BTU_PER_HOUR;
-
-/** Return temperatures that no sensor gives but the balance does: equal in reverse flow, mixed at the tee in forward. */
-function fillReturns(inputs: SlotInputs, verdict: Verdict, curves: FluidCurves): void {
-  const { bypassGpm, primaryFlowGpm, secondaryFlowGpm, reverseProbability } = verdict;
-  const reverse = reverseProbability >= DECIDED_PROBABILITY;
-  const forward = reverseProbability <= 1 - DECIDED_PROBABILITY;
-  if (!known(inputs.primaryReturnF)) {
-    if (reverse) inputs.primaryReturnF = inputs.secondaryReturnF;
-    else if (forward && primaryFlowGpm > 0) {
-      const warm = enthalpyFromCurves(inputs.secondaryReturnF, curves);
-      const share = Math.max(0, bypassGpm) / primaryFlowGpm;
-      inputs.primaryReturnF = tempFFromCurves(warm - share * (warm - verdict.blend), curves);
-    }
-  }
-  if (!known(inputs.secondaryReturnF)) {
-    if (reverse) inputs.secondaryReturnF = inputs.primaryReturnF;
-    else if (forward && secondaryFlowGpm > 0) {
-      const mix = enthalpyFromCurves(inputs.primaryReturnF, curves);
-      const share = Math.max(0, bypassGpm) / secondaryFlowGpm;
-      inputs.secondaryReturnF = tempFFromCurves(mix + share * (mix - verdict.blend), curves);
-    }
-  }
-}
+/** Cooling of a flow between two temperatures, its meter at the first. */
+const tons = (flowGpm: number, supplyF: number, returnF: number, curves: FluidCurves): number =>
+  (60 *
+    densityFromCurves(supplyF, curves) *
+    flowGpm *
+    (enthalpyFromCurves(returnF, curves) - enthalpyFromCurves(supplyF, curves))) /
+  TON_BTU_PER_HOUR;
 
 /** Writes one slot's verdict and the temperatures and loads that follow from it. */
-function writeSlot(out: Estimates, slot: number, inputs: SlotInputs, verdict: Verdict, curves: FluidCurves): void {
-  const blendF = tempFFromCurves(verdict.blend, curves);
-  const blendReachF = ninetyPercent(verdict.blendSigma) / specificHeatFromCurves(blendF, curves);
-  if (!known(inputs.primarySupplyF) && verdict.reverseProbability <= 1 - DECIDED_PROBABILITY) {
-    inputs.primarySupplyF = blendF;
-  }
-  fillReturns(inputs, verdict, curves);
-  const bypassReach = ninetyPercent(verdict.bypassSigma);
+function writeSlot(out: Estimates, slot: number, verdict: Verdict, scale: MixingScale, curves: FluidCurves): void {
+  const t = verdict.temperatures;
+  const primarySupplyF = fromMixing(t[0] as number, scale);
+  const primaryReturnF = fromMixing(t[1] as number, scale);
+  const blendF = fromMixing(t[2] as number, scale);
+  const secondaryReturnF = fromMixing(t[3] as number, scale);
+  const blendReachF = NINETY_PERCENT_Z * verdict.blendSigma;
   out.direction[slot] = DIRECTIONS.indexOf(verdict.direction);
   out.reason[slot] = REASONS.indexOf(verdict.reason);
   out.reverse_probability[slot] = verdict.reverseProbability;
   out.bypass_flow_gpm[slot] = verdict.bypassGpm;
-  out.bypass_flow_lo_gpm[slot] = verdict.bypassGpm - bypassReach;
-  out.bypass_flow_hi_gpm[slot] = verdict.bypassGpm + bypassReach;
+  out.bypass_flow_lo_gpm[slot] = verdict.bypassLoGpm;
+  out.bypass_flow_hi_gpm[slot] = verdict.bypassHiGpm;
   out.blended_supply_f[slot] = blendF;
   out.blended_supply_lo_f[slot] = blendF - blendReachF;
   out.blended_supply_hi_f[slot] = blendF + blendReachF;
   out.primary_flow_gpm[slot] = verdict.primaryFlowGpm;
   out.secondary_flow_gpm[slot] = verdict.secondaryFlowGpm;
-  out.primary_supply_f[slot] = inputs.primarySupplyF;
-  out.primary_return_f[slot] = inputs.primaryReturnF;
-  out.secondary_return_f[slot] = inputs.secondaryReturnF;
-  out.load_delta_t_f[slot] = inputs.secondaryReturnF - blendF;
-  out.production_delta_t_f[slot] = inputs.primaryReturnF - inputs.primarySupplyF;
-
-  const loadRise = enthalpyFromCurves(inputs.secondaryReturnF, curves) - verdict.blend;
-  const bySecondary = tons(verdict.secondaryFlowGpm, blendF, loadRise, curves);
-  if (known(bySecondary)) {
-    out.load_tons[slot] = bySecondary;
-  } else {
-    // Load equals production over the whole decoupler, whichever way the common pipe runs.
-    const productionRise =
-      enthalpyFromCurves(inputs.primaryReturnF, curves) - enthalpyFromCurves(inputs.primarySupplyF, curves);
-    out.load_tons[slot] = tons(verdict.primaryFlowGpm, inputs.primarySupplyF, productionRise, curves);
-  }
+  out.primary_supply_f[slot] = primarySupplyF;
+  out.primary_return_f[slot] = primaryReturnF;
+  out.secondary_return_f[slot] = secondaryReturnF;
+  out.load_delta_t_f[slot] = secondaryReturnF - blendF;
+  out.production_delta_t_f[slot] = primaryReturnF - primarySupplyF;
+  const bySecondary = tons(verdict.secondaryFlowGpm, blendF, secondaryReturnF, curves);
+  // Load equals production over the whole decoupler, whichever way the common pipe runs.
+  out.load_tons[slot] = known(bySecondary)
+    ? bySecondary
+    : tons(verdict.primaryFlowGpm, primarySupplyF, primaryReturnF, curves);
 }
 
 /** An idle plant: what is measured is passed on, nothing is concluded from standing water. */
-function writeOff(out: Estimates, slot: number, inputs: SlotInputs): void {
-  out.direction[slot] = DIRECTIONS.indexOf('unknown');
+function writeOff(out: Estimates, slot: number, loop: LoopRecord, scale: MixingScale): void {
+  const temperature = (i: number) => {
+    const channel = loop.temperatures[i];
+    return channel ? fromMixing(channel[slot] as number, scale) : Number.NaN;
+  };
+  out.direction[slot] = UNKNOWN;
   out.reason[slot] = REASON_OFF;
-  out.primary_flow_gpm[slot] = inputs.primaryFlowGpm;
-  out.secondary_flow_gpm[slot] = inputs.secondaryFlowGpm;
-  out.primary_supply_f[slot] = inputs.primarySupplyF;
-  out.primary_return_f[slot] = inputs.primaryReturnF;
-  out.secondary_return_f[slot] = inputs.secondaryReturnF;
+  out.primary_flow_gpm[slot] = loop.flows[0]?.[slot] ?? Number.NaN;
+  out.secondary_flow_gpm[slot] = loop.flows[1]?.[slot] ?? Number.NaN;
+  out.primary_supply_f[slot] = temperature(0);
+  out.primary_return_f[slot] = temperature(1);
+  out.secondary_return_f[slot] = temperature(3);
 }
 
 /**
  * What each interval of a record says about the common pipe: direction with its probability, bypass flow and blended
  * supply with their central 90 % intervals, the loads and the plant's state. From whichever points exist; none in
- * particular is required. First-order uncertainty; sensors' lasting offsets are not yet estimated.
+ * particular is required.
  *
- * Both directions are weighed (way-evidence.ts) and mixed by their probability (weigh-directions.ts). Flows are taken at
- * one density: their volume differs by less than 0.07 % between the tees, far below any meter's doubt; the mixing of
- * temperatures is exact in enthalpy. Intervals are widened by what the measurements disagree; where they fit neither
- * direction, it is unknown with the reason 'sensors contradict', and flows and supply are passed on as measured.
+ * Each interval's readings are corrected by the calibration (calibrate.ts) and weighed with the full covariance of their
+ * errors, so that what lasts does not average away. Without a calibration the sensors' classes stand for it. Both ways are
+ * fitted (way-fit.ts), their likelihoods integrated over the share that crosses over, and mixed (verdict.ts).
  *
  * Shapes  every channel has length n; so has every result channel. Codes index DIRECTIONS, STATES and REASONS.
- * Units   as named: deg F, gpm, tons. Bypass is positive from supply to return.
+ * Units   as named: deg F, gpm, tons. Bypass is positive from supply to return. Mixing is in enthalpy; flows are taken at
+ *         one density (their volume differs by less than 0.07 % between the tees).
  * Gaps    NaN in; what cannot be known is NaN out. Without any flow the direction is still found from temperatures and
  *         flows are NaN. While the plant is off nothing is concluded (reason 'off').
  * Throws  RangeError when a channel's length is not n, or a glycol's mass percent is outside 0 to 60.
- * Source  steady balances of mass and energy at both tees; JCGM 100:2008, 5.1.2; Bayes' rule with equal prior odds.
+ * Source  steady balances of mass and energy at both tees; generalized least squares; Bayes' rule.
  */
-export function estimateIntervals(measurements: Measurements, plant: PlantModel): Estimates {
-  checkLengths(measurements);
+export function estimateIntervals(
+  measurements: Measurements,
+  plant: PlantModel,
+  calibration?: Calibration,
+): Estimates {
+  checkLengths(measurements, 'estimateIntervals');
   const out = emptyEstimates(measurements.n);
   plantStates(measurements, plant, out.state);
   markSteady(measurements, plant, out.steady);
   markQuality(measurements, out.quality);
+  const scale = mixingScale(plant.productionSupplyF + plant.loadDeltaTF / 2, plant.fluid);
   const curves = fluidCurves(plant.fluid);
-  // Sensors' sigmas are small: one specific heat turns them into enthalpy to within 0.5 %.
-  const btuPerLbF = specificHeatFromCurves(plant.productionSupplyF + plant.loadDeltaTF / 2, curves);
-  const inputs = emptySlotInputs();
-  const streams = emptyStreams();
-  const forward = emptyWayEvidence();
-  const reverse = emptyWayEvidence();
+  const loop = readLoop(measurements, plant, scale, calibration?.sets);
+  const errors = calibration ? errorsOfCalibration(calibration) : errorsOfClass(plant, loop.sets);
+  const average = slotAverager(loop, errors, out.state, out.steady);
+  const values = emptySlotValues();
+  const reading = emptySlotReading();
+  const weighing = emptyWeighing(calibration?.shareScale ?? Number.POSITIVE_INFINITY, measurements.stepMinutes);
   const verdict = emptyVerdict();
   for (let slot = 0; slot < measurements.n; slot += 1) {
-    readSlot(measurements, plant, slot, inputs);
     if (out.state[slot] === OFF) {
-      writeOff(out, slot, inputs);
+      writeOff(out, slot, loop, scale);
       continue;
     }
-    readStreams(inputs, curves, streams);
-    weighWay('forward', inputs, streams, btuPerLbF, forward);
-    weighWay('reverse', inputs, streams, btuPerLbF, reverse);
-    weighDirections(plant.arrangement, forward, reverse, inputs, verdict);
-    writeSlot(out, slot, inputs, verdict, curves);
+    average(slot, values);
+    const setpointF = at(measurements.supplySetpointF, slot);
+    const supply = toMixing(setpointF > 20 && setpointF < 80 ? setpointF : plant.productionSupplyF, scale);
+    const flowErrors = flowErrorsAt(loop, errors, slot);
+    fillReading(loop, values, errors, flowErrors, calibration !== undefined, supply, plant.loadDeltaTF, reading);
+    if (weighSlot(plant.arrangement, reading, weighing, verdict)) writeSlot(out, slot, verdict, scale, curves);
+    else {
+      settleNothing(reading, verdict);
+      writeSlot(out, slot, verdict, scale, curves);
+    }
   }
   return out;
 }

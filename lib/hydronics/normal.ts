@@ -60,3 +60,25 @@ export function truncationShift(z: number): number {
   if (z > CERTAIN) return 0;
   return normalDensity(z) / normalCdf(z);
 }
+
+/**
+ * The point below which a standard normal lies with a given probability; the inverse of normalCdf.
+ *
+ * Gaps    NaN in, NaN out; 0 and 1: -Infinity and Infinity. Relative error of the probability below 1e-12.
+ * Source  start: Abramowitz & Stegun, Handbook of Mathematical Functions (1964), 26.2.23; then Halley's method on normalCdf.
+ */
+export function normalQuantile(probability: number): number {
+  if (!(probability > 0 && probability < 1)) {
+    return probability === 0 ? -Infinity : probability === 1 ? Infinity : Number.NaN;
+  }
+  const tail = probability < 0.5 ? probability : 1 - probability;
+  const t = Math.sqrt(-2 * Math.log(tail));
+  const start =
+    t - (2.515517 + t * (0.802853 + t * 0.010328)) / (1 + t * (1.432788 + t * (0.189269 + t * 0.001308)));
+  let z = -start;
+  for (let step = 0; step < 2; step += 1) {
+    const miss = (normalCdf(z) - tail) / normalDensity(z);
+    z -= miss / (1 + 0.5 * z * miss);
+  }
+  return probability < 0.5 ? z : -z;
+}

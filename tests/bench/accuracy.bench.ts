@@ -1,8 +1,13 @@
 /**
  * Estimates the fleet of simulated plants and prints every measure of accuracy beside its floor.
  *
- *   node --import tsx tests/bench/accuracy.bench.ts [--plants] [--only <text in the plant's name>]
+ *   node --import tsx tests/bench/accuracy.bench.ts [--plants] [--only <text in the plant's name>] [--fleet <number>] [--perfect]
+ *
+ * --plants   a line for each plant
+ * --fleet    other seeds: what was tuned on fleet 0 is tried on fleet 1, 2, ...
+ * --perfect  the same plants with sensors that have noise but no lasting error: what is left then is not calibration's
  */
+import { calibrateRecord } from '../../lib/hydronics/calibrate';
 import { estimateIntervals } from '../../lib/hydronics/estimate';
 import { fleetOptions } from '../support/simulation/fleet';
 import { FLOORS_ALL, FLOORS_BY_SENSING, FLOORS_NEAR_BALANCE, keeps } from '../support/simulation/floors';
@@ -17,7 +22,8 @@ const NUMBER_WIDTH = 8;
 
 /** The kernel under test: the one place that says how it is called. */
 function scoreKernel(sim: SimulatedPlant): PlantScore {
-  return scorePlant(sim, estimateIntervals(sim.measurements, sim.plant));
+  const calibration = calibrateRecord(sim.measurements, sim.plant);
+  return scorePlant(sim, estimateIntervals(sim.measurements, sim.plant, calibration), calibration);
 }
 
 const write = (line: string) => process.stdout.write(`${line}\n`);
@@ -65,11 +71,20 @@ function printPlants(scores: readonly PlantScore[]): void {
   }
 }
 
-const only = process.argv.includes('--only') ? (process.argv[process.argv.indexOf('--only') + 1] ?? '') : '';
+/** The word after an option on the command line. */
+function optionValue(name: string): string {
+  const index = process.argv.indexOf(name);
+  return index < 0 ? '' : (process.argv[index + 1] ?? '');
+}
+
+const only = optionValue('--only');
+const perfect = process.argv.includes('--perfect')
+  ? { offsetF: 0, gainPercent: 0, flowZeroPercent: 0, ratedFlowPercent: 0, spikes: false }
+  : {};
 const scores: PlantScore[] = [];
 let estimateMs = 0;
-for (const options of fleetOptions()) {
-  const sim = simulatePlant(options);
+for (const options of fleetOptions(Number(optionValue('--fleet')))) {
+  const sim = simulatePlant({ ...options, ...perfect });
   if (!sim.name.includes(only)) continue;
   const started = performance.now();
   scores.push(scoreKernel(sim));

@@ -1,0 +1,358 @@
+import { calibrationBins, readBin } from './calibration-bins';
+import type { CalibrationBins } from './calibration-bins';
+import type { Calibration, SpotCheck } from './calibration-types';
+import { describeCalibration } from './calibration-findings';
+import { checkLengths } from './estimate';
+import { choleskyInPlace, choleskyInverse } from './linear-algebra';
+import { minimise } from './least-squares';
+import { FLOW_METERED, readLoop, TEMPERATURES } from './loop-record';
+import type { LoopRecord } from './loop-record';
+import { mixingScale } from './mixing-scale';
+import { emptySlotValues, fillReading, flowErrorsAt } from './read-slot';
+import { recordNoise } from './record-noise';
+import type { RecordNoise } from './record-noise';
+import { errorsOf, PRIMARY_GAIN, PRIMARY_ZERO, priorCovariance, SET_GAINS } from './sensor-errors';
+import { emptySlotReading } from './slot-reading';
+import { plantStates } from './state';
+import { markSteady } from './steadiness';
+import type { Measurements, PlantModel } from './types';
+import { emptyWayFit, fitWay } from './way-fit';
+import { profileScore } from './way-score';
+
+/** Share of the prior variance that classification allows for, pass by pass: wide first, so that no wrong way is locked in. */
+const ANNEAL = [0.5, 0.2, 0.08, 0.03, 0.01, 0, 0, 0, 0] as const;
+/** What the model of two ideal tees leaves out, whatever the number of readings (k = 1): F, and share of flow. */
+const MISFIT_F = 0.04;
+const MISFIT_FLOW = 0.006;
+/** Degrees of freedom of the robust loss: beyond a few sigma a bin says less the further it is off. */
+const LOSS_FREEDOM = 5;
+/** Worth of the sensors' classes in judging how large this plant's offsets are, in sensors. */
+const SCALE_WORTH = 4;
+const MIN_SCALE = 0.7;
+const MAX_SCALE = 3;
+/** Hours of one kind of day: errors of the model within one are taken as one error. */
+const CLUSTER_HOURS = 4;
+/** Fewer bins of running record than this and the classes stand. */
+const MIN_BINS = 12;
+
+/** All that one calibration works on. */
+export interface CalibrationWork {
+  loop: LoopRecord;
+  plant: PlantModel;
+  bins: CalibrationBins;
+  seen: RecordNoise;
+  prior: Float64Array;
+  parameters: Float64Array;
+  covariance: Float64Array;
+  /** By bin: weight of forward and of reverse, robust and normalised. */
+  forward: Float64Array;
+  reverse: Float64Array;
+  /** By bin: chi-square of the likelier way and comparisons beyond the unknowns. */
+  chiSquare: Float64Array;
+  redundancy: Float64Array;
+  shareScale: number;
+  /** How far this plant's offsets exceed their class. */
+  classScale: number;
+}
+
+const reading = emptySlotReading();
+const values = emptySlotValues();
+const forwardFit = emptyWayFit('forward');
+const reverseFit = emptyWayFit('reverse');
+
+/** Errors as one pass takes them: the parameters known, what is left of the prior as doubt, noise as seen. */
+function errorsAt(work: CalibrationWork, parameters: Float64Array, left: number) {
+  const p = parameters.length;
+  const covariance = new Float64Array(p * p);
+  for (let i = 0; i < p * p; i += 1) covariance[i] = left * (work.prior[i] as number);
+  for (let i = 0; i < p; i += 1) {
+    const k = i * p + i;
+    const misfit = i < TEMPERATURES ? MISFIT_F : i % 2 === 1 || i >= SET_GAINS ? MISFIT_FLOW : 0;
+    covariance[k] = (covariance[k] as number) + misfit * misfit;
+  }
+  const noise = Array.from(work.seen.noise, (sigma) => (Number.isFinite(sigma) ? sigma : 0));
+  return errorsOf(parameters, covariance, work.loop.sets, noise);
+}
+
+type Errors = ReturnType<typeof errorsAt>;
+
+/** Reads a bin into the shared reading. */
+function readInto(work: CalibrationWork, errors: Errors, bin: number): void {
+  const { loop, bins, plant } = work;
+  readBin(bins, bin, values);
+  const flowErrors = flowErrorsAt(loop, errors, bins.slots[bin] as number);
+  fillReading(loop, values, errors, flowErrors, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
+}
+
+/** How likely each way is in each bin, and how far the bin is to be trusted: the E step. */
+function weighBins(work: CalibrationWork, left: number): void {
+  const errors = errorsAt(work, work.parameters, left);
+  let shares = 0.02;
+  let weights = 1;
+  const oneWay = work.plant.arrangement === 'variable-primary';
+  for (let bin = 0; bin < work.bins.count; bin += 1) {
+    readInto(work, errors, bin);
+    fitWay(reading, forwardFit, work.shareScale);
+    fitWay(reading, reverseFit, work.shareScale);
+    const pReverse = oneWay ? 0 : 1 / (1 + Math.exp(forwardFit.logEvidence - reverseFit.logEvidence));
+    const trust = (fit: typeof forwardFit) =>
+      (LOSS_FREEDOM + fit.redundancy) / (LOSS_FREEDOM + fit.chiSquare);
+    work.forward[bin] = (1 - pReverse) * trust(forwardFit);
+    work.reverse[bin] = pReverse * trust(reverseFit);
+    const closest = pReverse > 0.5 ? reverseFit : forwardFit;
+    work.chiSquare[bin] = closest.chiSquare;
+    work.redundancy[bin] = closest.redundancy;
+    const share = closest.share;
+    if (share === share && closest.shareVariance < 0.04) {
+      shares += Math.min(1, Math.max(0, share));
+      weights += 1;
+    }
+  }
+  work.shareScale = Math.min(1, Math.max(0.03, shares / weights));
+}
+
+/** Where a bin's primary flow keeps its gain and zero. */
+function placesOf(loop: LoopRecord, slot: number): { gain: number; zero: number } {
+  const from = loop.primaryFrom[slot] as number;
+  if (from === FLOW_METERED) return METERED_PLACES;
+  places.gain = from >= 0 ? SET_GAINS + from : -1;
+  return places;
+}
+const METERED_PLACES = { gain: PRIMARY_GAIN, zero: PRIMARY_ZERO };
+const places = { gain: -1, zero: -1 };
+
+/** Adds one bin's score under both ways at the given errors. */
+function scoreBin(
+  work: CalibrationWork,
+  errors: Errors,
+  bin: number,
+  normal: Float64Array,
+  gradient: Float64Array,
+): number {
+  const { loop } = work;
+  readInto(work, errors, bin);
+  const where = placesOf(loop, work.bins.slots[bin] as number);
+  let cost = 0;
+  const forward = work.forward[bin] as number;
+  if (forward > 1e-6) {
+    fitWay(reading, forwardFit, work.shareScale);
+    cost += profileScore(reading, forwardFit, where, loop.designPrimaryGpm, loop.designSecondaryGpm, forward, normal, gradient);
+  }
+  const reverse = work.reverse[bin] as number;
+  if (reverse > 1e-6) {
+    fitWay(reading, reverseFit, work.shareScale);
+    cost += profileScore(reading, reverseFit, where, loop.designPrimaryGpm, loop.designSecondaryGpm, reverse, normal, gradient);
+  }
+  return cost;
+}
+
+/** Prior and spot checks as quadratic terms: information matrix and the values it pulls towards. */
+interface PriorTerms {
+  information: Float64Array;
+  pull: Float64Array;
+}
+
+function addPrior(terms: PriorTerms, parameters: Float64Array, normal: Float64Array, gradient: Float64Array): number {
+  const p = parameters.length;
+  let cost = 0;
+  for (let i = 0; i < p; i += 1) {
+    let slope = -(terms.pull[i] as number);
+    for (let j = 0; j < p; j += 1) {
+      const k = i * p + j;
+      slope += (terms.information[k] as number) * (parameters[j] as number);
+      normal[k] = (normal[k] as number) + (terms.information[k] as number);
+    }
+    gradient[i] = (gradient[i] as number) + slope;
+    cost += 0.5 * (parameters[i] as number) * (slope - (terms.pull[i] as number));
+  }
+  return cost;
+}
+
+function invert(matrix: Float64Array, p: number): Float64Array {
+  const factor = matrix.slice();
+  const inverse = new Float64Array(p * p);
+  if (!choleskyInPlace(factor, p)) throw new RangeError('calibrateRecord: a covariance of sensor errors is singular');
+  choleskyInverse(factor, p, inverse);
+  return inverse;
+}
+
+/** Prior of the classes, the offsets scaled as this plant's turn out, with the spot checks. */
+function priorTerms(work: CalibrationWork, checks: readonly SpotTerm[]): PriorTerms {
+  const p = work.parameters.length;
+  const scaled = work.prior.slice();
+  for (let i = 0; i < TEMPERATURES; i += 1) scaled[i * p + i] = (scaled[i * p + i] as number) * work.classScale ** 2;
+  const information = invert(scaled, p);
+  const pull = new Float64Array(p);
+  for (const check of checks) {
+    const weight = 1 / check.variance;
+    const k = check.place * p + check.place;
+    information[k] = (information[k] as number) + weight;
+    pull[check.place] = (pull[check.place] as number) + weight * check.value;
+  }
+  return { information, pull };
+}
+
+/** A spot check as a direct reading of one lasting error. */
+export interface SpotTerm {
+  place: number;
+  value: number;
+  variance: number;
+}
+
+/** One pass: the errors that fit the bins best as they are weighed now (the M step, Gauss-Newton). */
+function refit(work: CalibrationWork, left: number, checks: readonly SpotTerm[], iterations: number): void {
+  const terms = priorTerms(work, checks);
+  const found = minimise(
+    work.parameters,
+    (parameters, normal, gradient) => {
+      const errors = errorsAt(work, parameters, left);
+      let cost = addPrior(terms, parameters, normal, gradient);
+      for (let bin = 0; bin < work.bins.count; bin += 1) cost += scoreBin(work, errors, bin, normal, gradient);
+      return cost;
+    },
+    { maxIterations: iterations, damping: 1e-6 },
+  );
+  work.parameters.set(found.parameters);
+  work.covariance.set(found.covariance);
+}
+
+/** How large this plant's offsets are against their class, from those that the record tells. */
+function rescaleClass(work: CalibrationWork): void {
+  const p = work.parameters.length;
+  let squares = SCALE_WORTH;
+  let sensors = SCALE_WORTH;
+  for (let i = 0; i < TEMPERATURES; i += 1) {
+    const prior = (work.prior[i * p + i] as number) * work.classScale ** 2;
+    const left = work.covariance[i * p + i] as number;
+    const told = Math.max(0, 1 - left / prior);
+    if (!(told > 0.05)) continue;
+    squares += told * ((work.parameters[i] as number) ** 2 / (told * (work.prior[i * p + i] as number)));
+    sensors += told;
+  }
+  work.classScale = Math.min(MAX_SCALE, Math.max(MIN_SCALE, Math.sqrt(squares / sensors)));
+}
+
+/**
+ * Covariance of the errors with what the model leaves out: neighbouring bins err together, so the information of a record is
+ * judged by how its stretches of a few hours disagree (clustered scores), never by the number of readings alone.
+ */
+function spreadOfStretches(work: CalibrationWork, checks: readonly SpotTerm[]): void {
+  const p = work.parameters.length;
+  const errors = errorsAt(work, work.parameters, 0);
+  const normal = new Float64Array(p * p);
+  const score = new Float64Array(p);
+  let clusters = 0;
+  let excess = 0;
+  let told = 0;
+  const perCluster = Math.max(1, Math.round(CLUSTER_HOURS / work.bins.hoursEach));
+  const scores: Float64Array[] = [];
+  for (let bin = 0; bin < work.bins.count; bin += 1) {
+    scoreBin(work, errors, bin, normal, score);
+    if ((bin + 1) % perCluster === 0 || bin + 1 === work.bins.count) {
+      scores.push(score.slice());
+      score.fill(0);
+    }
+  }
+  for (let i = 0; i < p; i += 1) for (let j = 0; j < i; j += 1) normal[j * p + i] = normal[i * p + j] as number;
+  const terms = priorTerms(work, checks);
+  const full = new Float64Array(p * p);
+  for (let k = 0; k < p * p; k += 1) full[k] = (normal[k] as number) + (terms.information[k] as number);
+  const inverse = invert(full, p);
+  for (const each of scores) {
+    let square = 0;
+    for (let i = 0; i < p; i += 1) {
+      for (let j = 0; j < p; j += 1) square += (each[i] as number) * (inverse[i * p + j] as number) * (each[j] as number);
+    }
+    excess += square;
+    clusters += 1;
+  }
+  // Expected of independent bins: the trace of inverse times the data's information.
+  for (let i = 0; i < p; i += 1) for (let j = 0; j < p; j += 1) told += (inverse[i * p + j] as number) * (normal[j * p + i] as number);
+  const inflation = clusters > 2 && told > 0 ? Math.max(1, excess / told) : 1;
+  for (let k = 0; k < p * p; k += 1) full[k] = (normal[k] as number) / inflation + (terms.information[k] as number);
+  work.covariance.set(invert(full, p));
+  for (let i = 0; i < p; i += 1) {
+    const k = i * p + i;
+    const misfit = i < TEMPERATURES ? MISFIT_F : i % 2 === 1 || i >= SET_GAINS ? MISFIT_FLOW : 0;
+    work.covariance[k] = (work.covariance[k] as number) + misfit * misfit;
+  }
+}
+
+/**
+ * Lasting errors of a record's sensors: an offset of each temperature, gain and zero of each meter, a gain of each running
+ * set whose rated flow stands in, estimated jointly from all steady running stretches, with their covariance.
+ *
+ * In clear forward flow both supplies are one stream, in clear reverse flow both returns are, and load equals production
+ * over both tees throughout. Each stretch is weighed under both ways; under each the share that crosses over is profiled,
+ * not integrated out, which would pull offsets towards small temperature differences. Heavy tails count for little, the
+ * sensors' classes are the prior, and what the record cannot tell stays where the prior has it, with the prior's doubt.
+ *
+ * Shapes  as Measurements; `spotChecks` are readings of a reference instrument beside a sensor.
+ * Units   deg F, percent; see Calibration.
+ * Gaps    with too little running record (under an hour) the classes stand and `limits` says so.
+ * Throws  RangeError when a channel's length is not n, or a glycol's mass percent is outside 0 to 60.
+ * Source  weighted least squares with errors in all variables; expectation and maximisation over the two ways (A. Dempster,
+ *         N. Laird, D. Rubin, J. R. Stat. Soc. B 39 (1977) 1); profile likelihood; clustered covariance (K.-Y. Liang,
+ *         S. Zeger, Biometrika 73 (1986) 13).
+ */
+export function calibrateRecord(
+  measurements: Measurements,
+  plant: PlantModel,
+  spotChecks: readonly SpotCheck[] = [],
+): Calibration {
+  checkLengths(measurements, 'calibrateRecord');
+  const state = new Float64Array(measurements.n);
+  const steady = new Float64Array(measurements.n);
+  plantStates(measurements, plant, state);
+  markSteady(measurements, plant, steady);
+  const scale = mixingScale(plant.productionSupplyF + plant.loadDeltaTF / 2, plant.fluid);
+  const loop = readLoop(measurements, plant, scale);
+  const bins = calibrationBins(loop, state, steady);
+  const prior = priorCovariance(plant, loop.sets.length);
+  const p = SET_GAINS + loop.sets.length;
+  const work: CalibrationWork = {
+    loop,
+    plant,
+    bins,
+    seen: recordNoise(loop, steady),
+    prior,
+    parameters: new Float64Array(p),
+    covariance: prior.slice(),
+    forward: new Float64Array(bins.count),
+    reverse: new Float64Array(bins.count),
+    chiSquare: new Float64Array(bins.count),
+    redundancy: new Float64Array(bins.count),
+    shareScale: 0.3,
+    classScale: 1,
+  };
+  const checks: SpotTerm[] = spotTerms(spotChecks, loop);
+  if (bins.count >= MIN_BINS) {
+    for (const left of ANNEAL) {
+      weighBins(work, left);
+      refit(work, left, checks, 3);
+      rescaleClass(work);
+    }
+    weighBins(work, 0);
+    spreadOfStretches(work, checks);
+  }
+  return describeCalibration(work, checks);
+}
+
+/** Spot checks as what they say of one error each. A flow reading says gain; its zero is left to the record. */
+function spotTerms(spotChecks: readonly SpotCheck[], loop: LoopRecord): SpotTerm[] {
+  const terms: SpotTerm[] = [];
+  for (const check of spotChecks) {
+    const temperature = SPOT_TEMPERATURES.indexOf(check.role as (typeof SPOT_TEMPERATURES)[number]);
+    const flow = SPOT_FLOWS.indexOf(check.role as (typeof SPOT_FLOWS)[number]);
+    const channel = temperature >= 0 ? loop.temperatures[temperature] : flow >= 0 ? loop.flows[flow] : null;
+    const shown = Number.isFinite(check.shown) ? check.shown : (channel?.[check.slot] ?? Number.NaN);
+    if (!Number.isFinite(shown) || !(check.sigma > 0)) continue;
+    if (temperature >= 0) terms.push({ place: temperature, value: shown - check.reading, variance: check.sigma ** 2 });
+    else if (flow >= 0 && check.reading > 0) {
+      terms.push({ place: PRIMARY_GAIN + 2 * flow, value: shown / check.reading - 1, variance: (check.sigma / 100) ** 2 });
+    }
+  }
+  return terms;
+}
+const SPOT_TEMPERATURES = ['primarySupplyTemp', 'primaryReturnTemp', 'secondarySupplyTemp', 'secondaryReturnTemp', 'bypassTemp'] as const;
+const SPOT_FLOWS = ['primaryFlow', 'secondaryFlow', 'bypassFlow'] as const;

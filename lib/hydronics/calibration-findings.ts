@@ -1,0 +1,126 @@
+import type { CalibrationWork, SpotTerm } from './calibrate';
+import type { Calibration, CalibrationLimit, SensorFinding, SensorRole, SensorTie } from './calibration-types';
+import { FB, FLOW_METERED, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
+import { NINETY_PERCENT_Z } from './normal';
+import { medianOf } from './record-noise';
+import { BYPASS_GAIN, PRIMARY_GAIN, SECONDARY_GAIN, SET_GAINS } from './sensor-errors';
+import { KERNEL_VERSION } from './types';
+
+/** 0.95 points of chi-square for 1 to 5 degrees of freedom. Source: any table; computed. */
+const CHI_SQUARE_95 = [3.8415, 3.8415, 5.9915, 7.8147, 9.4877, 11.0705] as const;
+/** Below this share of prior variance taken away, a record has not told a sensor's error. */
+const TOLD_LEAST = 0.1;
+const TEMPERATURE_ROLES = ['primarySupplyTemp', 'primaryReturnTemp', 'secondarySupplyTemp', 'secondaryReturnTemp', 'bypassTemp'] as const;
+
+/** Hours of the record that lie clearly on one side. */
+interface Hours {
+  forward: number;
+  reverse: number;
+}
+
+function clearHours(work: CalibrationWork): Hours {
+  let forward = 0;
+  let reverse = 0;
+  for (let bin = 0; bin < work.bins.count; bin += 1) {
+    const f = work.forward[bin] as number;
+    const r = work.reverse[bin] as number;
+    if (f > 9 * r) forward += work.bins.hoursEach;
+    else if (r > 9 * f) reverse += work.bins.hoursEach;
+  }
+  return { forward, reverse };
+}
+
+function tieOf(place: number, work: CalibrationWork, hours: Hours, told: number): { tie: SensorTie; hours: number } {
+  const { temperatures, flows } = work.loop;
+  if (told < TOLD_LEAST) return { tie: 'none', hours: 0 };
+  const both = hours.forward + hours.reverse;
+  if (place === PS || place === SS) {
+    if (temperatures[PS] && temperatures[SS] && hours.forward > 0) return { tie: 'supplies-agree', hours: hours.forward };
+  } else if (place === PR || place === SR) {
+    if (temperatures[PR] && temperatures[SR] && hours.reverse > 0) return { tie: 'returns-agree', hours: hours.reverse };
+  } else if (place !== TB && flows[FB] && flows[FP] && flows[FS]) return { tie: 'flow-balance', hours: both };
+  return { tie: 'energy-balance', hours: both };
+}
+
+/** What a calibration says, sensor by sensor, with what no record of its kind can tell. */
+export function describeCalibration(work: CalibrationWork, checks: readonly SpotTerm[]): Calibration {
+  const { loop, parameters, covariance, prior, seen, bins } = work;
+  const p = parameters.length;
+  const hours = clearHours(work);
+  const findings: SensorFinding[] = [];
+  const describe = (role: SensorRole, kind: 'offset' | 'gain', place: number, channel: number) => {
+    const unit = kind === 'offset' ? 1 : 100;
+    const k = place * p + place;
+    const classVariance = (prior[k] as number) * (kind === 'offset' ? work.classScale ** 2 : 1);
+    const sigma = Math.sqrt(covariance[k] as number);
+    const told = Math.min(1, Math.max(0, 1 - (covariance[k] as number) / classVariance));
+    const checked = checks.some((check) => check.place === place);
+    const { tie, hours: evidenceHours } = checked ? { tie: 'spot-check' as const, hours: 0 } : tieOf(place, work, hours, told);
+    const value = unit * (parameters[place] as number);
+    findings.push({
+      role,
+      kind,
+      value,
+      lo: value - NINETY_PERCENT_Z * unit * sigma,
+      hi: value + NINETY_PERCENT_Z * unit * sigma,
+      prior: unit * Math.sqrt(prior[k] as number),
+      told,
+      tie,
+      evidenceHours,
+      noise: (kind === 'offset' ? 1 : 100) * (seen.noise[channel] as number),
+      increment: seen.increment[channel] as number,
+    });
+  };
+  TEMPERATURE_ROLES.forEach((role, place) => {
+    if (loop.temperatures[place]) describe(role, 'offset', place, place);
+  });
+  const metered = loop.primaryFrom.includes(FLOW_METERED);
+  if (loop.flows[FP] && metered) describe('primaryFlow', 'gain', PRIMARY_GAIN, TEMPERATURES + FP);
+  if (loop.flows[FS]) describe('secondaryFlow', 'gain', SECONDARY_GAIN, TEMPERATURES + FS);
+  if (loop.flows[FB]) describe('bypassFlow', 'gain', BYPASS_GAIN, TEMPERATURES + FB);
+  if (loop.sets.length > 0) describe('ratedFlow', 'gain', SET_GAINS, TEMPERATURES + FP);
+
+  return {
+    kernelVersion: KERNEL_VERSION,
+    intervals: bins.count,
+    values: [...parameters],
+    covariance: [...covariance],
+    sets: [...loop.sets],
+    noise: [...seen.noise],
+    shareScale: work.shareScale,
+    header: { side: 'absent', primaryProbability: Number.NaN },
+    findings,
+    limits: limitsOf(work, hours, checks),
+    chiSquare: fitOf(work),
+  };
+}
+
+function limitsOf(work: CalibrationWork, hours: Hours, checks: readonly SpotTerm[]): CalibrationLimit[] {
+  const { loop, bins } = work;
+  const limits: CalibrationLimit[] = [];
+  if (bins.count * bins.hoursEach < 1) limits.push('too-short');
+  const flows = [FP, FS, FB].filter((flow) => loop.flows[flow]);
+  if (flows.length === 0) limits.push('no-flow');
+  if (loop.temperatures.some((channel) => channel) && !checks.some((check) => check.place < TEMPERATURES)) limits.push('common-offset');
+  if (flows.length > 0 && !checks.some((check) => check.place >= PRIMARY_GAIN)) limits.push('common-gain');
+  const total = hours.forward + hours.reverse;
+  if (total > 0 && Math.min(hours.forward, hours.reverse) < 0.02 * total) limits.push('one-way-only');
+  return limits;
+}
+
+/** How well the record's intervals fit: median chi-square, its limit at the usual redundancy, share within. */
+function fitOf(work: CalibrationWork): Calibration['chiSquare'] {
+  const { chiSquare, redundancy, bins } = work;
+  if (bins.count === 0) return { median: Number.NaN, limit: Number.NaN, shareWithin: Number.NaN };
+  let within = 0;
+  for (let bin = 0; bin < bins.count; bin += 1) {
+    const limit = CHI_SQUARE_95[Math.min(5, redundancy[bin] as number)] as number;
+    if ((chiSquare[bin] as number) <= limit) within += 1;
+  }
+  const usual = medianOf(redundancy.slice(), bins.count);
+  return {
+    median: medianOf(chiSquare.slice(), bins.count),
+    limit: CHI_SQUARE_95[Math.min(5, Math.round(usual))] as number,
+    shareWithin: within / bins.count,
+  };
+}

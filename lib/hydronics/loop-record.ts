@@ -1,0 +1,212 @@
+import { toMixing } from './mixing-scale';
+import type { MixingScale } from './mixing-scale';
+import { at, FLOWING_SHARE, pumpOn } from './units-on';
+import type { Measurements, PlantModel, UnitModel } from './types';
+
+/** Order of the loop's temperatures in every array of the estimator. */
+export const PS = 0;
+export const PR = 1;
+export const SS = 2;
+export const SR = 3;
+export const TB = 4;
+export const TEMPERATURES = 5;
+/** Order of its flows. */
+export const FP = 0;
+export const FS = 1;
+export const FB = 2;
+export const FLOWS = 3;
+
+/** Where a slot's primary flow comes from: no value, a meter (or the units' meters), or rated flow of running pumps. */
+export const FLOW_NONE = -2;
+export const FLOW_METERED = -1;
+/** Most running sets of units that get a gain of their own. */
+const MAX_SETS = 7;
+/** Stands last among the sets, for any that was not met. */
+export const ANY_SET = -1;
+
+/**
+ * A record as the estimator reads it: five temperatures on the mixing scale and three flows, whatever point they come from.
+ * Arrays have length n; null where nothing at the plant measures the quantity.
+ */
+export interface LoopRecord {
+  n: number;
+  stepMinutes: number;
+  temperatures: (Float64Array | null)[];
+  flows: (Float64Array | null)[];
+  /** True when the bypass meter gives a magnitude only. */
+  bypassUnsigned: boolean;
+  /** FLOW_NONE, FLOW_METERED, or the index into `sets` whose rated flow stands in. */
+  primaryFrom: Int8Array;
+  /** Running sets (bit i = unit i) met in the record, most frequent first, then ANY_SET; empty when flow is metered. */
+  sets: number[];
+  designPrimaryGpm: number;
+  designSecondaryGpm: number;
+}
+
+/** Design flow of the production side: the units' flows together. */
+export function designPrimaryFlowGpm(plant: PlantModel): number {
+  let total = 0;
+  for (const unit of plant.units) total += unit.flowGpm;
+  return total;
+}
+
+/** Flow through one unit: its meter, else its rated flow while its pump runs. */
+function unitFlow(measurements: Measurements, unit: UnitModel, index: number, slot: number): number {
+  if (measurements.unitFlowGpm[index]) return at(measurements.unitFlowGpm[index], slot);
+  return pumpOn(measurements, unit, index, slot) * unit.flowGpm;
+}
+
+/** Flow-weighted temperature over the units that carry water; a missing one of them makes it missing. */
+function unitMixF(
+  measurements: Measurements,
+  plant: PlantModel,
+  temperatures: readonly (Float64Array | undefined)[],
+  slot: number,
+): number {
+  let flowSum = 0;
+  let heatSum = 0;
+  for (let index = 0; index < plant.units.length; index += 1) {
+    const unit = plant.units[index] as UnitModel;
+    const flowGpm = unitFlow(measurements, unit, index, slot);
+    if (flowGpm <= FLOWING_SHARE * unit.flowGpm) continue;
+    flowSum += flowGpm;
+    heatSum += flowGpm * at(temperatures[index], slot);
+  }
+  return flowSum > 0 ? heatSum / flowSum : Number.NaN;
+}
+
+/** A loop temperature on the mixing scale: its own sensor, else what the units' sensors make of it. */
+function temperatureChannel(
+  own: Float64Array | undefined,
+  ofUnits: readonly (Float64Array | undefined)[],
+  measurements: Measurements,
+  plant: PlantModel,
+  scale: MixingScale,
+): Float64Array | null {
+  const byUnits = ofUnits.some((channel) => channel !== undefined);
+  if (!own && !byUnits) return null;
+  const channel = new Float64Array(measurements.n);
+  for (let slot = 0; slot < measurements.n; slot += 1) {
+    let tempF = own ? (own[slot] as number) : Number.NaN;
+    if (byUnits && tempF !== tempF) tempF = unitMixF(measurements, plant, ofUnits, slot);
+    channel[slot] = Math.abs(tempF) < 1e3 ? toMixing(tempF, scale) : Number.NaN;
+  }
+  return channel;
+}
+
+/** A flow with what cannot be one taken out: infinite is missing, a main cannot run backwards past its pump. */
+function flowChannel(source: Float64Array | undefined, negative: boolean): Float64Array | null {
+  if (!source) return null;
+  const channel = new Float64Array(source.length);
+  for (let slot = 0; slot < source.length; slot += 1) {
+    const flowGpm = source[slot] as number;
+    channel[slot] = !(Math.abs(flowGpm) < 1e7) ? Number.NaN : flowGpm < 0 && !negative ? 0 : flowGpm;
+  }
+  return channel;
+}
+
+interface PrimaryFlow {
+  flow: Float64Array | null;
+  from: Int8Array;
+  sets: number[];
+}
+
+/** Primary flow by meter, else by the units' meters and the rated flow of running pumps; with where it comes from. */
+function primaryFlow(measurements: Measurements, plant: PlantModel, given: readonly number[] | undefined): PrimaryFlow {
+  const n = measurements.n;
+  const metered = flowChannel(measurements.primaryFlowGpm, false);
+  const from = new Int8Array(n).fill(FLOW_NONE);
+  const flow = metered ?? new Float64Array(n).fill(Number.NaN);
+  const byUnits = [measurements.unitFlowGpm, measurements.primaryPumpStatus, measurements.unitStatus, measurements.unitPowerKw]
+    .some((channels) => channels.some((channel) => channel !== undefined));
+  if (!metered && !byUnits) return { flow: null, from, sets: [...(given ?? [])] };
+  const masks = byUnits ? new Int32Array(n).fill(-1) : null;
+  const counts = new Map<number, number>();
+  let any = metered !== null;
+  for (let slot = 0; slot < n; slot += 1) {
+    const reading = flow[slot] as number;
+    if (reading === reading) {
+      from[slot] = FLOW_METERED;
+      continue;
+    }
+    if (!masks) continue;
+    let sumGpm = 0;
+    let ratedGpm = 0;
+    let mask = 0;
+    for (let index = 0; index < plant.units.length; index += 1) {
+      const unit = plant.units[index] as UnitModel;
+      const unitGpm = unitFlow(measurements, unit, index, slot);
+      sumGpm += unitGpm > 0 || unitGpm !== unitGpm ? unitGpm : 0;
+      if (!measurements.unitFlowGpm[index] && unitGpm > 0) {
+        ratedGpm += unitGpm;
+        if (unitGpm > unit.flowGpm / 2) mask |= 1 << index;
+      }
+    }
+    if (!(sumGpm < 1e7)) continue;
+    any = true;
+    flow[slot] = sumGpm;
+    if (ratedGpm > 0) {
+      masks[slot] = mask;
+      counts.set(mask, (counts.get(mask) ?? 0) + 1);
+    } else {
+      from[slot] = FLOW_METERED;
+    }
+  }
+  // Ties in frequency go by the mask itself, so that the order never depends on where a record starts.
+  const met = [...counts].sort((a, b) => b[1] - a[1] || a[0] - b[0]).slice(0, MAX_SETS).map(([mask]) => mask);
+  const sets = given ? [...given] : met.length > 0 ? [...met, ANY_SET] : [];
+  if (masks) {
+    for (let slot = 0; slot < n; slot += 1) {
+      const mask = masks[slot] as number;
+      if (mask >= 0) from[slot] = placeOfSet(sets, mask);
+    }
+  }
+  return { flow: any ? flow : null, from, sets };
+}
+
+/** Index of a running set; one that is not listed counts as the last, ANY_SET. */
+function placeOfSet(sets: readonly number[], mask: number): number {
+  for (let index = 0; index < sets.length; index += 1) if (sets[index] === mask) return index;
+  return sets.length - 1;
+}
+
+/**
+ * Reads a record into the estimator's form: the loop's own sensors where they say something, else what the units' sensors
+ * make of it (flow-weighted leaving and entering temperatures, summed or rated flows). `sets` fixes the list of running sets
+ * (a calibration's); without it those of the record are listed.
+ *
+ * Shapes  as Measurements. Units: deg F on the mixing scale, gpm.
+ * Gaps    NaN where nothing says anything; what is not finite counts as missing.
+ */
+export function readLoop(
+  measurements: Measurements,
+  plant: PlantModel,
+  scale: MixingScale,
+  sets?: readonly number[],
+): LoopRecord {
+  const channel = (own: Float64Array | undefined, ofUnits: readonly (Float64Array | undefined)[] = []) =>
+    temperatureChannel(own, ofUnits, measurements, plant, scale);
+  const primary = primaryFlow(measurements, plant, sets);
+  const signed = measurements.bypassFlowGpm;
+  return {
+    n: measurements.n,
+    stepMinutes: measurements.stepMinutes,
+    temperatures: [
+      channel(measurements.primarySupplyF, measurements.unitLeavingF),
+      channel(measurements.primaryReturnF, measurements.unitEnteringF),
+      channel(measurements.secondarySupplyF),
+      channel(measurements.secondaryReturnF),
+      channel(measurements.bypassF),
+    ],
+    flows: [
+      primary.flow,
+      flowChannel(measurements.secondaryFlowGpm, false),
+      signed ? flowChannel(signed, true) : flowChannel(measurements.bypassFlowUnsignedGpm, true),
+    ],
+    bypassUnsigned: !signed,
+    primaryFrom: primary.from,
+    sets: primary.sets,
+    designPrimaryGpm: designPrimaryFlowGpm(plant),
+    designSecondaryGpm: plant.distributionPumps.flowGpm,
+  };
+}
