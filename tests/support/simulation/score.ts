@@ -11,10 +11,13 @@ import type { Group, SimulatedPlant } from './types';
 /** Within this share of secondary flow of zero the common pipe is still. */
 export const STILL_SHARE = 0.02;
 
+/** The part of a calibration that is scored. */
+export type CalibrationFindings = Pick<Calibration, 'findings'>;
+
 export interface PlantScore {
   name: string;
   group: Group;
-  /** What the bypass was scored in: gpm, or, without any flow in the record, as share of the larger main flow. */
+  /** What the bypass was scored in: gpm, or, where none is given, the share of the larger main flow. */
   unit: 'gpm' | 'share';
   tally: Tally;
   measures: Measures;
@@ -94,15 +97,15 @@ function scoreInterval(tally: Tally, low: number, high: number, truth: number, w
 
 /**
  * A kernel's estimates against what was really so. Only intervals that truly ran count. Flow errors are shares of the
- * design distribution flow, so that plants pool. Where the record holds no flow at all (`unit` share), the bypass is the
- * share of the larger main flow times that flow as it truly was, for the estimate and the textbook alike.
+ * design distribution flow, so that plants pool. Where the kernel gives no gpm (`unit` share), the bypass is the share
+ * of the larger main flow times that flow as it truly was, for the estimate and the textbook alike.
  */
-export function scorePlant(sim: SimulatedPlant, estimates: Estimates, calibration?: Calibration): PlantScore {
+export function scorePlant(sim: SimulatedPlant, estimates: Estimates, calibration?: CalibrationFindings): PlantScore {
   const { truth } = sim;
   const tally = emptyTally();
   const textbook = textbookOf(sim);
   const design = sim.plant.distributionPumps.flowGpm;
-  const unit = textbook.unit === 'share' || !estimates.bypass_flow_gpm.some(Number.isFinite) ? 'share' : 'gpm';
+  const inGpm = estimates.bypass_flow_gpm.some(Number.isFinite);
   for (let slot = 0; slot < sim.measurements.n; slot += 1) {
     if (truth.running[slot] !== 1) continue;
     tally.running += 1;
@@ -110,8 +113,8 @@ export function scorePlant(sim: SimulatedPlant, estimates: Estimates, calibratio
     const secondaryGpm = truth.secondaryFlowGpm[slot]!;
     const largerGpm = Math.max(truth.primaryFlowGpm[slot]!, secondaryGpm);
     const probability = estimates.reverse_probability[slot]!;
-    const estimate = unit === 'gpm' ? estimates.bypass_flow_gpm[slot]! : estimatedShare(estimates, slot) * largerGpm;
-    const reference = textbook.bypass[slot]! * (textbook.unit === 'share' ? largerGpm : 1);
+    const estimate = inGpm ? estimates.bypass_flow_gpm[slot]! : estimatedShare(estimates, slot) * largerGpm;
+    const reference = inGpm ? textbook.bypassGpm[slot]! : textbook.share[slot]! * largerGpm;
     if (Number.isFinite(sim.group.sensing === 'temperatures' ? probability : estimate)) tally.answered += 1;
     scoreDirection(tally, DIRECTIONS[estimates.direction[slot]!] ?? 'unknown', bypassGpm, secondaryGpm);
     scoreProbability(tally, probability, bypassGpm < 0);
@@ -144,7 +147,7 @@ export function scorePlant(sim: SimulatedPlant, estimates: Estimates, calibratio
     );
   }
   if (calibration) scoreCalibration(tally, sim, calibration);
-  return { name: sim.name, group: sim.group, unit, tally, measures: measuresOf(tally) };
+  return { name: sim.name, group: sim.group, unit: inGpm ? 'gpm' : 'share', tally, measures: measuresOf(tally) };
 }
 
 /** The loop's four sensors: the common-pipe sensor has no part in the floors. */
@@ -159,7 +162,7 @@ const LOOP_ROLES: readonly SensorRole[] = [
  * Lasting errors found against those put in. Offsets of the loop's temperatures with their common mean taken off (nobody
  * can tell it); gains as the ratio of the two meters, in percent. A sensor without a finding counts as found errorless.
  */
-function scoreCalibration(tally: Tally, sim: SimulatedPlant, calibration: Calibration): void {
+function scoreCalibration(tally: Tally, sim: SimulatedPlant, calibration: CalibrationFindings): void {
   const found = (role: SensorRole) => calibration.findings.find((finding) => finding.role === role);
   const offsets = sim.errors.filter((error) => LOOP_ROLES.includes(error.role));
   const misses = offsets.map((error) => (found(error.role)?.value ?? 0) - error.value);

@@ -3,7 +3,7 @@ import type { Measurements } from '@/lib/hydronics/types';
 import type { SimulatedDesign } from './design';
 import type { FineRun } from './physics';
 import { randomSource } from './random';
-import { addSpikes, dropStretches, intervalMeans, readings } from './sensors';
+import { addSpikes, dropStretches, readings, sampled } from './sensors';
 import type { LoopTemperature, SimulationOptions, TrueError } from './types';
 
 const ROLE_OF: Readonly<Record<LoopTemperature | 'bypassF', SensorRole>> = {
@@ -65,6 +65,7 @@ export function sensePlant(run: FineRun, design: SimulatedDesign, options: Simul
   const missing = options.missing ?? random.chance(0.35);
   const spikes = options.spikes ?? random.chance(0.15);
   const lagged = options.sensorLag ?? true;
+  const sampling = options.sampling ?? 'mean';
 
   function temperature(name: string, fine: Float64Array, role?: SensorRole): Float64Array {
     const own = randomSource(options.seed, `sensor ${name}`);
@@ -76,6 +77,7 @@ export function sensePlant(run: FineRun, design: SimulatedDesign, options: Simul
       noiseShare: 0,
       resolution,
       lagMinutes: lagged ? own.between(0.5, 1.5) : 0,
+      sampling,
       cutOff: NEVER_CUT,
     };
     const read = readings(fine, perSlot, run.stepMinutes, faults, own);
@@ -96,6 +98,7 @@ export function sensePlant(run: FineRun, design: SimulatedDesign, options: Simul
       noiseShare: (options.flowNoisePercent ?? own.between(0.5, 1)) / 100,
       resolution: own.chance(0.3) ? 1 : 0,
       lagMinutes: 0,
+      sampling,
       cutOff: role === 'bypassFlow' ? NEVER_CUT : 0.01 * designGpm,
     };
     const read = readings(fine, perSlot, run.stepMinutes, faults, own);
@@ -139,23 +142,21 @@ export function sensePlant(run: FineRun, design: SimulatedDesign, options: Simul
     measurements.secondaryFlowGpm = meter('secondary', run.secondaryGpm, design.secondaryDesignGpm, 'secondaryFlow');
   }
 
+  const bypassMeter = options.bypassMeter && meter('bypass', run.bypassGpm, design.secondaryDesignGpm, 'bypassFlow');
+  if (options.bypassMeter === 'signed') measurements.bypassFlowGpm = bypassMeter;
+  if (options.bypassMeter === 'unsigned') measurements.bypassFlowUnsignedGpm = bypassMeter?.map(Math.abs);
+
   const averaged = options.averagedStatus ?? random.chance(0.4);
-  const status = () =>
-    run.unitOn.map((fine) =>
-      averaged
-        ? intervalMeans(fine, perSlot)
-        : Float64Array.from({ length: measurements.n }, (_, slot) => fine[(slot + 1) * perSlot - 1]!),
-    );
-  if (sensing === 'pump-status') {
-    measurements.primaryPumpStatus = status();
-    if (random.chance(0.6)) measurements.unitStatus = status();
+  const status = () => run.unitOn.map((fine) => sampled(fine, perSlot, averaged ? 'mean' : 'end'));
+  const pumpStatus = sensing === 'pump-status';
+  if (pumpStatus) measurements.primaryPumpStatus = status();
+  const shown = { 'both-meters': 0.7, 'pump-status': 0.6, 'one-meter': 0, temperatures: 1 }[sensing];
+  if (options.unitStatus ?? random.chance(shown)) measurements.unitStatus = status();
+  // A variable pump's rated flow says little about what it moves.
+  const unmetered =
+    !measurements.primaryFlowGpm && measurements.unitStatus.length + measurements.primaryPumpStatus.length > 0;
+  if (unmetered && design.primarySpeed === 'constant') {
     errors.push({ role: 'ratedFlow', kind: 'gain', value: ratedFlowError(run, design) });
-  } else if (sensing === 'temperatures' || (sensing === 'both-meters' && random.chance(0.7))) {
-    measurements.unitStatus = status();
-    // A variable pump's rated flow says little about what it moves.
-    if (sensing === 'temperatures' && design.primarySpeed === 'constant') {
-      errors.push({ role: 'ratedFlow', kind: 'gain', value: ratedFlowError(run, design) });
-    }
   }
   return { measurements, errors };
 }

@@ -12,14 +12,15 @@ export interface SensorFaults {
   resolution: number;
   /** First-order lag of the sensor. */
   lagMinutes: number;
+  sampling: 'mean' | 'end';
   /** Readings below this are shown as 0; -Infinity for temperatures. */
   cutOff: number;
 }
 
-/** Means over each interval of a fine channel, after the sensor's lag. */
-export function intervalMeans(fine: Float64Array, perSlot: number, keep = 0): Float64Array {
+/** Mean over each interval of a fine channel, or its value at the end, after the sensor's lag. */
+export function sampled(fine: Float64Array, perSlot: number, sampling: 'mean' | 'end', keep = 0): Float64Array {
   const n = Math.floor(fine.length / perSlot);
-  const means = new Float64Array(n);
+  const samples = new Float64Array(n);
   let followed = fine[0] ?? Number.NaN;
   for (let slot = 0; slot < n; slot += 1) {
     let sum = 0;
@@ -27,10 +28,13 @@ export function intervalMeans(fine: Float64Array, perSlot: number, keep = 0): Fl
       followed = keep * followed + (1 - keep) * fine[step]!;
       sum += followed;
     }
-    means[slot] = sum / perSlot;
+    samples[slot] = sampling === 'mean' ? sum / perSlot : followed;
   }
-  return means;
+  return samples;
 }
+
+/** Mean over each interval of a fine channel. */
+export const intervalMeans = (fine: Float64Array, perSlot: number): Float64Array => sampled(fine, perSlot, 'mean');
 
 /** What a sensor writes down, one reading an interval. */
 export function readings(
@@ -41,7 +45,7 @@ export function readings(
   random: RandomSource,
 ): Float64Array {
   const keep = faults.lagMinutes > 0 ? Math.exp(-stepMinutes / faults.lagMinutes) : 0;
-  const read = intervalMeans(fine, perSlot, keep);
+  const read = sampled(fine, perSlot, faults.sampling, keep);
   for (let slot = 0; slot < read.length; slot += 1) {
     const truth = read[slot]!;
     const scatter = faults.noise * random.normal() + faults.noiseShare * truth * random.normal();

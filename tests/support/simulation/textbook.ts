@@ -4,11 +4,12 @@ import type { SimulatedPlant } from './types';
 /** Spans between supply and return below this say nothing. */
 const LEAST_SPAN_F = 0.5;
 
-/** What the textbook makes of a record: gpm where a flow is known, else the share of the larger main flow. */
+/** What the textbook makes of a record. Positive forward; NaN where a reading it needs is missing. */
 export interface TextbookEstimate {
-  unit: 'gpm' | 'share';
-  /** Positive forward; NaN where a reading it needs is missing. */
-  bypass: Float64Array;
+  /** NaN throughout where the record gives no flow. */
+  bypassGpm: Float64Array;
+  /** Of the larger main flow, from temperatures alone. */
+  share: Float64Array;
 }
 
 const clamp = (value: number, low: number, high: number): number => Math.min(high, Math.max(low, value));
@@ -54,49 +55,38 @@ export function textbookShare(supplyF: number, returnF: number, blendF: number, 
   return Number.isNaN(beta) || alpha >= beta ? alpha : -beta;
 }
 
-/** Whether anything in the record gives a flow at all. */
-const hasFlow = (record: Measurements, plant: PlantModel): boolean =>
-  record.primaryFlowGpm !== undefined ||
-  record.secondaryFlowGpm !== undefined ||
-  (plant.primarySpeed !== 'variable' && record.primaryPumpStatus.length + record.unitStatus.length > 0);
-
 /**
  * The textbook formula on a record as it stands, the reference that the estimator is compared with: Fp - Fs where both
  * flows are known (rated flow times status standing in for a primary meter), else the temperatures' share times the
  * known flow, else the share alone. Held to what pipes and pumps can do, so that it is not made to look absurd: a
  * flow inferred beside a known one is at most all units' largest flow, or 1.2 times the distribution pumps' design.
  *
- * Shapes  length n. Units: gpm, or a fraction of the larger main flow. Gaps: NaN where a reading is missing.
+ * Shapes  length n. Units: gpm; a fraction of the larger main flow. Gaps: NaN where a reading is missing.
  */
 export function textbookBypass(record: Measurements, plant: PlantModel): TextbookEstimate {
-  const bypass = new Float64Array(record.n);
+  const bypassGpm = new Float64Array(record.n);
+  const shares = new Float64Array(record.n);
   const mostPrimaryGpm = plant.units.reduce((sum, unit) => sum + unit.maxFlowGpm, 0);
   const mostSecondaryGpm = 1.2 * plant.distributionPumps.flowGpm;
-  const unit = hasFlow(record, plant) ? 'gpm' : 'share';
   for (let slot = 0; slot < record.n; slot += 1) {
     const primary = primaryGpm(record, plant, slot);
     const secondary = Math.max(0, at(record.secondaryFlowGpm, slot));
-    const primaryKnown = !Number.isNaN(primary);
-    const secondaryKnown = !Number.isNaN(secondary);
-    if (primaryKnown && secondaryKnown) {
-      bypass[slot] = primary - secondary;
-      continue;
-    }
     const share = textbookShare(
       primarySupplyF(record, plant, slot),
       at(record.secondaryReturnF, slot),
       at(record.secondarySupplyF, slot),
       at(record.primaryReturnF, slot),
     );
-    if (secondaryKnown) {
+    shares[slot] = share;
+    if (Number.isNaN(primary)) {
       const most = Math.max(0, mostPrimaryGpm - secondary);
-      bypass[slot] = share >= 0 ? Math.min(most, (secondary * share) / (1 - share)) : share * secondary;
-    } else if (primaryKnown) {
+      bypassGpm[slot] = share >= 0 ? Math.min(most, (secondary * share) / (1 - share)) : share * secondary;
+    } else if (Number.isNaN(secondary)) {
       const most = Math.max(0, mostSecondaryGpm - primary);
-      bypass[slot] = share >= 0 ? share * primary : Math.max(-most, (primary * share) / (1 + share));
-    } else bypass[slot] = unit === 'share' ? share : Number.NaN;
+      bypassGpm[slot] = share >= 0 ? share * primary : Math.max(-most, (primary * share) / (1 + share));
+    } else bypassGpm[slot] = primary - secondary;
   }
-  return { unit, bypass };
+  return { bypassGpm, share: shares };
 }
 
 /** The textbook formula on a simulated plant's raw record. */

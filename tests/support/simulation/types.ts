@@ -89,6 +89,12 @@ export interface SimulationOptions {
   resolutionF?: number;
   missing?: boolean;
   spikes?: boolean;
-  /** Sensors that follow at once; default true lags of half a minute to a minute and a half. */
+  /** A meter in the common pipe; default none. */
+  bypassMeter?: 'signed' | 'unsigned';
+  /** Unit status in a one-meter plant; default false there. */
+  unitStatus?: boolean;
+  /** False: sensors that follow at once. Default: lags of half a minute to a minute and a half. */
   sensorLag?: boolean;
+  /** What a reading is: the interval's mean (default), or the value at its end. */
+  sampling?: 'mean' | 'end';
 }
