@@ -94,6 +94,7 @@ if (process.argv.includes('--plants')) printPlants(scores);
 printGroup('all', poolScores(scores), FLOORS_ALL);
 const near = scores.filter(nearBalance);
 if (near.length > 0) printGroup('near balance', poolScores(near), FLOORS_NEAR_BALANCE);
+printGroup('away from balance', poolScores(scores.filter((score) => !nearBalance(score))), FLOORS_ALL);
 for (const sensing of SENSINGS) {
   const group = scores.filter((score) => score.group.sensing === sensing);
   if (group.length > 0) printGroup(sensing, poolScores(group), FLOORS_BY_SENSING[sensing]);

@@ -103,6 +103,17 @@ describe('the score', () => {
     expect(measures.missedReverseStrict).toBeCloseTo(3 / reverse.length, 12);
   });
 
+  test('judges signs and still apart', () => {
+    const estimates = trueEstimates(sim);
+    const wide = slotsWhere((share) => share > 0.06);
+    call(estimates, wide[0]!, 'still');
+    call(estimates, wide[1]!, 'reverse');
+    const { measures, tally } = scorePlant(sim, estimates);
+    expect(tally.still + tally.signed).toBe(tally.directed);
+    expect(measures.stillNear).toBeCloseTo(1 - 1 / tally.still, 12);
+    expect(measures.signRight).toBeCloseTo(1 - 1 / tally.signed, 12);
+  });
+
   test('counts a false reverse among what was not reverse', () => {
     const forward = slotsWhere((share) => share >= 0);
     const estimates = trueEstimates(sim);

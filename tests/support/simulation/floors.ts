@@ -38,6 +38,8 @@ export const FLOORS_ALL: readonly Limit[] = [
   { measure: 'findingCoverage', label: 'coverage of sensor findings' },
   { measure: 'gainRatioPercent', label: 'ratio of meter gains, %', atMost: 1.5 },
   { measure: 'ratedRatioPercent', label: 'ratio of rated flow to meter, %' },
+  { measure: 'signRight', label: 'sign right where forward or reverse' },
+  { measure: 'stillNear', label: 'within 5 % where still' },
   { measure: 'directionRightStrict', label: 'right of all running (unknown wrong)' },
   { measure: 'directionRight5Strict', label: 'right of running, |b| > 5 %' },
   { measure: 'directionRight10Strict', label: 'right of running, |b| > 10 %' },

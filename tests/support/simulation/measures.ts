@@ -8,7 +8,11 @@ export interface Measures {
   directionRight: number;
   directionRight5: number;
   directionRight10: number;
-  /** As the three above with `unknown` counted wrong; the first over all running intervals. */
+  /** Of the intervals called forward or reverse: the sign is the true one. */
+  signRight: number;
+  /** Of the intervals called still: the truth is within 5 % of secondary flow of zero. */
+  stillNear: number;
+  /** As the three directions above with `unknown` counted wrong; the first over all running intervals. */
   directionRightStrict: number;
   directionRight5Strict: number;
   directionRight10Strict: number;
@@ -51,6 +55,8 @@ export function measuresOf(tally: Tally): Measures {
     directionRight: tally.right / tally.judged,
     directionRight5: tally.right5 / tally.judged5,
     directionRight10: tally.right10 / tally.judged10,
+    signRight: tally.signedRight / tally.signed,
+    stillNear: tally.stillNear / tally.still,
     directionRightStrict: tally.right / tally.running,
     directionRight5Strict: tally.right5 / tally.running5,
     directionRight10Strict: tally.right10 / tally.running10,

@@ -75,7 +75,9 @@ export function productionOf(design: SimulatedDesign, random: RandomSource, step
       }
       const asColdF = returnF - (OVERLOAD * built.tons * TON_GPM_F) / Math.max(1, unitGpm[unit]!);
       const targetF = Math.max(setpointF + built.leavingOffsetF + common + own, asColdF);
-      leavingF[unit]! += settle * (targetF - leavingF[unit]!);
+      // Standing water is gone in a moment: a unit that starts passes on what it gets until it cools.
+      const fromF = production.flowGpm > 0 ? Math.min(leavingF[unit]!, returnF) : leavingF[unit]!;
+      leavingF[unit] = fromF + settle * (targetF - fromF);
     }
   }
   return production;

@@ -42,6 +42,13 @@ function scoreDirection(tally: Tally, call: string, bypassGpm: number, secondary
     tally.directed += 1;
     tally.judged += 1;
     tally.right += right;
+    if (call === 'still') {
+      tally.still += 1;
+      if (size <= 0.05) tally.stillNear += 1;
+    } else {
+      tally.signed += 1;
+      tally.signedRight += right;
+    }
     if (size > 0.05) {
       tally.judged5 += 1;
       tally.right5 += right;

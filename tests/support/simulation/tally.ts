@@ -13,6 +13,11 @@ export interface Tally {
   right5: number;
   judged10: number;
   right10: number;
+  /** Called forward or reverse, and with the true sign; called still, and within 5 % of secondary flow of it. */
+  signed: number;
+  signedRight: number;
+  still: number;
+  stillNear: number;
   /** Running intervals by size, whether or not a direction was given: the stricter denominators. */
   running5: number;
   running10: number;
@@ -70,6 +75,10 @@ export function emptyTally(): Tally {
     right5: 0,
     judged10: 0,
     right10: 0,
+    signed: 0,
+    signedRight: 0,
+    still: 0,
+    stillNear: 0,
     running5: 0,
     running10: 0,
     notReverse: 0,
