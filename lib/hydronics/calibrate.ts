@@ -1,17 +1,17 @@
-import { calibrationBins, readBin } from './calibration-bins';
+import { calibrationBins, readBin, thinBins } from './calibration-bins';
 import type { CalibrationBins } from './calibration-bins';
 import type { Calibration, SpotCheck } from './calibration-types';
 import { describeCalibration } from './calibration-findings';
 import { checkLengths } from './estimate';
 import { choleskyInPlace, choleskyInverse } from './linear-algebra';
 import { minimise } from './least-squares';
-import { FLOW_METERED, readLoop, TEMPERATURES } from './loop-record';
+import { FLOW_METERED, FP, FS, PR, PS, readLoop, SR, SS, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
 import { mixingScale } from './mixing-scale';
 import { emptySlotValues, fillReading, flowErrorsAt } from './read-slot';
 import { recordNoise } from './record-noise';
 import type { RecordNoise } from './record-noise';
-import { errorsOf, PRIMARY_GAIN, PRIMARY_ZERO, priorCovariance, SET_GAINS } from './sensor-errors';
+import { errorsOf, PRIMARY_GAIN, PRIMARY_ZERO, priorCovariance, SECONDARY_GAIN, SET_GAINS } from './sensor-errors';
 import { emptySlotReading } from './slot-reading';
 import { plantStates } from './state';
 import { markSteady } from './steadiness';
@@ -20,16 +20,33 @@ import { emptyWayFit, fitWay } from './way-fit';
 import { profileScore } from './way-score';
 
 /** Share of the prior variance that classification allows for, pass by pass: wide first, so that no wrong way is locked in. */
-const ANNEAL = [0.5, 0.2, 0.08, 0.03, 0.01, 0, 0, 0, 0] as const;
+const ANNEAL = [2, 0.6, 0.2, 0.06, 0.02, 0] as const;
+/** The same from a start that already says something: near it is what is asked. */
+const NEAR = [0.05, 0.01, 0] as const;
+/** Passes over all bins, from the best start. */
+const REFINE = [0.02, 0, 0, 0] as const;
+/** Bins that the search for a start looks at. */
+const SEARCH_BINS = 200;
+/** No bin speaks against a start with more than this (log likelihood): one bad stretch does not choose it. */
+const WORST_BIN = 12;
 /** What the model of two ideal tees leaves out, whatever the number of readings (k = 1): F, and share of flow. */
 const MISFIT_F = 0.04;
 const MISFIT_FLOW = 0.006;
+/** Neighbouring readings err together: a record is worth one independent comparison in this many hours. */
+const HOURS_PER_COMPARISON = 1;
 /** Degrees of freedom of the robust loss: beyond a few sigma a bin says less the further it is off. */
 const LOSS_FREEDOM = 5;
+/** Beyond this a bin is no reading of two ideal tees at all. */
+const OUTLIER_CHI_SQUARE = 40;
+/**
+ * While sensors are judged, any share is as likely as another: the record's own spread as prior would make every plant's
+ * meters agree that nothing crosses over.
+ */
+const OPEN_SHARE = Number.POSITIVE_INFINITY;
 /** Worth of the sensors' classes in judging how large this plant's offsets are, in sensors. */
 const SCALE_WORTH = 4;
 const MIN_SCALE = 0.7;
-const MAX_SCALE = 3;
+const MAX_SCALE = 2;
 /** Hours of one kind of day: errors of the model within one are taken as one error. */
 const CLUSTER_HOURS = 4;
 /** Fewer bins of running record than this and the classes stand. */
@@ -92,11 +109,12 @@ function weighBins(work: CalibrationWork, left: number): void {
   const oneWay = work.plant.arrangement === 'variable-primary';
   for (let bin = 0; bin < work.bins.count; bin += 1) {
     readInto(work, errors, bin);
-    fitWay(reading, forwardFit, work.shareScale);
-    fitWay(reading, reverseFit, work.shareScale);
+    fitWay(reading, forwardFit, OPEN_SHARE);
+    fitWay(reading, reverseFit, OPEN_SHARE);
     const pReverse = oneWay ? 0 : 1 / (1 + Math.exp(forwardFit.logEvidence - reverseFit.logEvidence));
+    const worth = Math.min(1, work.bins.hoursEach / HOURS_PER_COMPARISON);
     const trust = (fit: typeof forwardFit) =>
-      (LOSS_FREEDOM + fit.redundancy) / (LOSS_FREEDOM + fit.chiSquare);
+      fit.chiSquare > OUTLIER_CHI_SQUARE ? 0 : (worth * (LOSS_FREEDOM + fit.redundancy)) / (LOSS_FREEDOM + fit.chiSquare);
     work.forward[bin] = (1 - pReverse) * trust(forwardFit);
     work.reverse[bin] = pReverse * trust(reverseFit);
     const closest = pReverse > 0.5 ? reverseFit : forwardFit;
@@ -135,12 +153,12 @@ function scoreBin(
   let cost = 0;
   const forward = work.forward[bin] as number;
   if (forward > 1e-6) {
-    fitWay(reading, forwardFit, work.shareScale);
+    fitWay(reading, forwardFit, OPEN_SHARE);
     cost += profileScore(reading, forwardFit, where, loop.designPrimaryGpm, loop.designSecondaryGpm, forward, normal, gradient);
   }
   const reverse = work.reverse[bin] as number;
   if (reverse > 1e-6) {
-    fitWay(reading, reverseFit, work.shareScale);
+    fitWay(reading, reverseFit, OPEN_SHARE);
     cost += profileScore(reading, reverseFit, where, loop.designPrimaryGpm, loop.designSecondaryGpm, reverse, normal, gradient);
   }
   return cost;
@@ -210,7 +228,7 @@ function refit(work: CalibrationWork, left: number, checks: readonly SpotTerm[],
       for (let bin = 0; bin < work.bins.count; bin += 1) cost += scoreBin(work, errors, bin, normal, gradient);
       return cost;
     },
-    { maxIterations: iterations, damping: 1e-6 },
+    { maxIterations: iterations, damping: 1e-9, scoring: true },
   );
   work.parameters.set(found.parameters);
   work.covariance.set(found.covariance);
@@ -327,7 +345,8 @@ export function calibrateRecord(
   };
   const checks: SpotTerm[] = spotTerms(spotChecks, loop);
   if (bins.count >= MIN_BINS) {
-    for (const left of ANNEAL) {
+    search(work, checks);
+    for (const left of REFINE) {
       weighBins(work, left);
       refit(work, left, checks, 3);
       rescaleClass(work);
@@ -336,6 +355,92 @@ export function calibrateRecord(
     spreadOfStretches(work, checks);
   }
   return describeCalibration(work, checks);
+}
+
+/** Starting points: the sensors as they are, meters that disagree either way, supplies and returns that meet at the corner. */
+function startsOf(work: CalibrationWork): Float64Array[] {
+  const { loop, bins, parameters } = work;
+  const starts = [new Float64Array(parameters.length)];
+  const corner = new Float64Array(parameters.length);
+  const pair = (cold: number, warm: number) => {
+    const apart = new Float64Array(bins.count);
+    let count = 0;
+    for (let bin = 0; bin < bins.count; bin += 1) {
+      readBin(bins, bin, values);
+      const difference = (values.values[warm] as number) - (values.values[cold] as number);
+      if (difference === difference) {
+        apart[count] = difference;
+        count += 1;
+      }
+    }
+    if (count === 0) return;
+    const low = apart.subarray(0, count).sort()[Math.floor(CORNER_QUANTILE * count)] as number;
+    corner[warm] = Math.max(-1, Math.min(1, low / 2));
+    corner[cold] = -(corner[warm] as number);
+  };
+  pair(PS, SS);
+  pair(PR, SR);
+  starts.push(corner);
+  if (!loop.flows[FP] || !loop.flows[FS]) return starts;
+  for (const ratio of START_RATIOS) {
+    for (const offsets of [starts[0] as Float64Array, corner]) {
+      const start = offsets.slice();
+      start[SECONDARY_GAIN] = -ratio / 2;
+      start[PRIMARY_GAIN] = ratio / 2;
+      for (let i = SET_GAINS; i < start.length; i += 1) start[i] = ratio / 2;
+      starts.push(start);
+    }
+  }
+  return starts;
+}
+const START_RATIOS = [-0.07, -0.035, 0.035, 0.07] as const;
+const CORNER_QUANTILE = 0.15;
+
+/** Log likelihood of the bins as they are weighed now, each held at WORST_BIN below the best it could be, less the prior. */
+function objective(work: CalibrationWork, checks: readonly SpotTerm[]): number {
+  const p = work.parameters.length;
+  const errors = errorsAt(work, work.parameters, 0);
+  let total = 0;
+  for (let bin = 0; bin < work.bins.count; bin += 1) {
+    readInto(work, errors, bin);
+    fitWay(reading, forwardFit, OPEN_SHARE);
+    fitWay(reading, reverseFit, OPEN_SHARE);
+    const high = Math.max(forwardFit.logEvidence, reverseFit.logEvidence);
+    const low = Math.min(forwardFit.logEvidence, reverseFit.logEvidence);
+    const closest = forwardFit.logEvidence > reverseFit.logEvidence ? forwardFit : reverseFit;
+    const best = high + 0.5 * closest.chiSquare;
+    total += best + Math.max(-WORST_BIN, high + Math.log1p(Math.exp(low - high)) - best);
+  }
+  const worth = Math.min(1, work.bins.hoursEach / HOURS_PER_COMPARISON);
+  const prior = addPrior(priorTerms(work, checks), work.parameters, new Float64Array(p * p), new Float64Array(p));
+  return worth * total - prior;
+}
+
+/** Finds the best of several starts on a thinned record: likelihoods of two ways have more than one peak. */
+function search(work: CalibrationWork, checks: readonly SpotTerm[]): void {
+  const thinned: CalibrationWork = {
+    ...work,
+    bins: thinBins(work.bins, SEARCH_BINS),
+    parameters: work.parameters.slice(),
+    covariance: work.covariance.slice(),
+  };
+  let best = Number.NEGATIVE_INFINITY;
+  for (const [index, start] of startsOf(work).entries()) {
+    thinned.parameters.set(start);
+    thinned.covariance.set(work.prior);
+    thinned.classScale = 1;
+    thinned.shareScale = 0.3;
+    for (const left of index === 0 ? ANNEAL : NEAR) {
+      weighBins(thinned, left);
+      refit(thinned, left, checks, 2);
+    }
+    const reached = objective(thinned, checks);
+    if (reached > best) {
+      best = reached;
+      work.parameters.set(thinned.parameters);
+      work.shareScale = thinned.shareScale;
+    }
+  }
 }
 
 /** Spot checks as what they say of one error each. A flow reading says gain; its zero is left to the record. */

@@ -1,4 +1,4 @@
-import { FLOWS, TEMPERATURES } from './loop-record';
+import { FLOWS, FS, PS, SS, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
 import { movingVariance } from './read-slot';
 import type { SlotValues } from './read-slot';
@@ -6,8 +6,8 @@ import { STATES } from './types';
 
 const RUNNING = STATES.indexOf('running');
 /** Readings are averaged to about this before they enter: finer ones repeat each other. */
-const BIN_MINUTES = 5;
-const MAX_BINS = 2400;
+const BIN_MINUTES = 15;
+const MAX_BINS = 1500;
 const CHANNELS = TEMPERATURES + FLOWS;
 
 /** Steady running stretches of a record, each the mean over one bin. Row-major, CHANNELS a row. */
@@ -24,23 +24,51 @@ export interface CalibrationBins {
   hoursEach: number;
 }
 
-/** Where a bin may lie: its slots run steadily from the same source of flow. */
-function usable(loop: LoopRecord, state: Float64Array, steady: Float64Array, from: number, to: number): boolean {
+/** Below this share of design, secondary flow is none, and temperatures at the tees are those of standing water. */
+const NO_FLOW_SHARE = 0.05;
+/** Supply this far above its usual is not made just now, whatever the state says, F. */
+const WARM_SUPPLY_F = 5;
+
+/** Supply that a running record usually has, for telling hours in which nothing cools; NaN without a supply. */
+function usualSupply(loop: LoopRecord, state: Float64Array): number {
+  const channel = loop.temperatures[PS] ?? loop.temperatures[SS];
+  if (!channel) return Number.NaN;
+  const stride = Math.max(1, Math.floor(loop.n / 2000));
+  const seen = new Float64Array(Math.ceil(loop.n / stride));
+  let count = 0;
+  for (let slot = 0; slot < loop.n; slot += stride) {
+    const value = channel[slot] as number;
+    if (state[slot] === RUNNING && value === value) {
+      seen[count] = value;
+      count += 1;
+    }
+  }
+  // The lower quartile: a plant may be warm for more than half of a short record.
+  return count > 0 ? (seen.subarray(0, count).sort()[count >> 2] as number) : Number.NaN;
+}
+
+/** Where a bin may lie: its slots run steadily from the same source of flow, with water moving that is cooled just now. */
+function usable(loop: LoopRecord, state: Float64Array, steady: Float64Array, usual: number, from: number, to: number): boolean {
+  const supply = loop.temperatures[PS] ?? loop.temperatures[SS];
+  const secondary = loop.flows[FS];
   for (let slot = from; slot < to; slot += 1) {
     if (state[slot] !== RUNNING || steady[slot] !== 1 || loop.primaryFrom[slot] !== loop.primaryFrom[from]) return false;
+    if (secondary && (secondary[slot] as number) < NO_FLOW_SHARE * loop.designSecondaryGpm) return false;
+    if (supply && (supply[slot] as number) > usual + WARM_SUPPLY_F) return false;
   }
   return true;
 }
 
 /**
- * Cuts a record into bins of about five minutes and keeps those that run steadily, evenly thinned to a few thousand.
+ * Cuts a record into bins of about a quarter of an hour and keeps those that run steadily, evenly thinned where there are many.
  *
  * Shapes  `state` and `steady` have the record's length. Gaps: a channel's mean is over what was measured, NaN if nothing.
  */
 export function calibrationBins(loop: LoopRecord, state: Float64Array, steady: Float64Array): CalibrationBins {
   const width = Math.max(1, Math.round(BIN_MINUTES / loop.stepMinutes));
+  const usual = usualSupply(loop, state);
   const starts: number[] = [];
-  for (let from = 0; from + width <= loop.n; from += width) if (usable(loop, state, steady, from, from + width)) starts.push(from);
+  for (let from = 0; from + width <= loop.n; from += width) if (usable(loop, state, steady, usual, from, from + width)) starts.push(from);
   const thin = Math.max(1, Math.ceil(starts.length / MAX_BINS));
   const kept = starts.filter((_, index) => index % thin === 0);
   const count = kept.length;
@@ -84,4 +112,24 @@ export function readBin(bins: CalibrationBins, bin: number, out: SlotValues): vo
     out.counts[i] = bins.readings[bin * CHANNELS + i] as number;
   }
   for (let i = 0; i < TEMPERATURES; i += 1) out.moving[i] = bins.moving[bin * TEMPERATURES + i] as number;
+}
+
+/** Every so many-th bin, so that at most about `most` are left; each stands for as much more. */
+export function thinBins(bins: CalibrationBins, most: number): CalibrationBins {
+  const thin = Math.max(1, Math.ceil(bins.count / most));
+  if (thin === 1) return bins;
+  const kept = Array.from({ length: Math.ceil(bins.count / thin) }, (_, index) => index * thin);
+  const pick = (source: Float64Array, width: number) => {
+    const out = new Float64Array(kept.length * width);
+    kept.forEach((bin, index) => out.set(source.subarray(bin * width, (bin + 1) * width), index * width));
+    return out;
+  };
+  return {
+    count: kept.length,
+    values: pick(bins.values, CHANNELS),
+    readings: pick(bins.readings, CHANNELS),
+    moving: pick(bins.moving, TEMPERATURES),
+    slots: Int32Array.from(kept, (bin) => bins.slots[bin] as number),
+    hoursEach: bins.hoursEach * thin,
+  };
 }

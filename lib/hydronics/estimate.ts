@@ -132,7 +132,7 @@ export function estimateIntervals(
   const curves = fluidCurves(plant.fluid);
   const loop = readLoop(measurements, plant, scale, calibration?.sets);
   const errors = calibration ? errorsOfCalibration(calibration) : errorsOfClass(plant, loop.sets);
-  const average = slotAverager(loop, errors, out.state, out.steady);
+  const average = slotAverager(loop, errors, out.state);
   const values = emptySlotValues();
   const reading = emptySlotReading();
   const weighing = emptyWeighing(calibration?.shareScale ?? Number.POSITIVE_INFINITY, measurements.stepMinutes);

@@ -22,6 +22,11 @@ export interface MinimiseOptions {
   gradientTolerance?: number;
   /** Share of the diagonal added at first: small trusts the start, large creeps. */
   damping?: number;
+  /**
+   * Takes every undamped step without asking the cost: for scoring, where the gradient is that of a likelihood whose
+   * covariances are held and the cost is not its exact primitive.
+   */
+  scoring?: boolean;
 }
 
 export interface Minimum {
@@ -152,10 +157,10 @@ export function minimise(
       gain = (at.cost - trial.cost) / predicted;
     }
     // NaN, from a trial where the model does not exist, counts as no gain.
-    if (gain > 0) {
+    if (gain > 0 || (options.scoring && Number.isFinite(trial.cost) && predicted > 0)) {
       [at, trial] = [trial, at];
       widenScale(scale, at.normal);
-      damping *= Math.max(1 / 3, 1 - (2 * gain - 1) ** 3);
+      damping *= options.scoring ? 1 : Math.max(1 / 3, 1 - (2 * gain - 1) ** 3);
       growth = 2;
     } else {
       // The predicted fall is lost in the rounding of the cost: this is the minimum as far as numbers can tell.

@@ -50,9 +50,16 @@ export function designPrimaryFlowGpm(plant: PlantModel): number {
   return total;
 }
 
-/** Flow through one unit: its meter, else its rated flow while its pump runs. */
-function unitFlow(measurements: Measurements, unit: UnitModel, index: number, slot: number): number {
+/** Flow through one unit: its meter, else its rated flow while its pump runs; unknown where pumps vary their speed. */
+function unitFlow(
+  measurements: Measurements,
+  plant: PlantModel,
+  unit: UnitModel,
+  index: number,
+  slot: number,
+): number {
   if (measurements.unitFlowGpm[index]) return at(measurements.unitFlowGpm[index], slot);
+  if (plant.primarySpeed === 'variable' && pumpOn(measurements, unit, index, slot) !== 0) return Number.NaN;
   return pumpOn(measurements, unit, index, slot) * unit.flowGpm;
 }
 
@@ -67,7 +74,7 @@ function unitMixF(
   let heatSum = 0;
   for (let index = 0; index < plant.units.length; index += 1) {
     const unit = plant.units[index] as UnitModel;
-    const flowGpm = unitFlow(measurements, unit, index, slot);
+    const flowGpm = unitFlow(measurements, plant, unit, index, slot);
     if (flowGpm <= FLOWING_SHARE * unit.flowGpm) continue;
     flowSum += flowGpm;
     heatSum += flowGpm * at(temperatures[index], slot);
@@ -135,7 +142,7 @@ function primaryFlow(measurements: Measurements, plant: PlantModel, given: reado
     let mask = 0;
     for (let index = 0; index < plant.units.length; index += 1) {
       const unit = plant.units[index] as UnitModel;
-      const unitGpm = unitFlow(measurements, unit, index, slot);
+      const unitGpm = unitFlow(measurements, plant, unit, index, slot);
       sumGpm += unitGpm > 0 || unitGpm !== unitGpm ? unitGpm : 0;
       if (!measurements.unitFlowGpm[index] && unitGpm > 0) {
         ratedGpm += unitGpm;

@@ -10,6 +10,11 @@ const MOVED_FLOW_SHARE = 0.03;
 /** Rise over production beyond this: heat is carried, so water flows. */
 const LOADED_RISE_F = 3;
 
+const RUNNING = STATES.indexOf('running');
+const STARTING = STATES.indexOf('starting');
+const COASTING = STATES.indexOf('coasting');
+const OFF = STATES.indexOf('off');
+
 /** Running total of a count: `total[b] - total[a]` slots in a..b (half-open). */
 export type Tally = Int32Array;
 export const within = (tally: Tally, from: number, to: number): number =>
@@ -38,26 +43,32 @@ export class PlantActivity {
     this.hourSlots = Math.max(1, Math.round(60 / measurements.stepMinutes));
   }
 
-  state(slot: number): string {
+  private stateCodes(): Float64Array {
     if (!this.states) {
       this.states = new Float64Array(this.measurements.n);
       plantStates(this.measurements, this.plant, this.states);
     }
-    return STATES[this.states[slot] as number] as string;
+    return this.states;
   }
 
   /** Slots in which the sensor's pipe carries water for certain: the plant runs, or its own unit does. */
   running(unitIndex: number): Tally {
+    if (unitIndex === 0) {
+      const codes = this.stateCodes();
+      return this.tally('running', (slot) => codes[slot] === RUNNING || codes[slot] === STARTING);
+    }
     return this.tally(`running ${unitIndex}`, (slot) => {
-      if (unitIndex === 0) return this.state(slot) === 'running' || this.state(slot) === 'starting';
       return unitOn(this.measurements, this.plant.units[unitIndex - 1] as UnitModel, unitIndex - 1, slot) === 1;
     });
   }
 
   /** Slots in which it carries none, or warm water, for certain. */
   resting(unitIndex: number): Tally {
+    if (unitIndex === 0) {
+      const codes = this.stateCodes();
+      return this.tally('resting', (slot) => codes[slot] === OFF || codes[slot] === COASTING);
+    }
     return this.tally(`resting ${unitIndex}`, (slot) => {
-      if (unitIndex === 0) return this.state(slot) === 'off' || this.state(slot) === 'coasting';
       return unitOn(this.measurements, this.plant.units[unitIndex - 1] as UnitModel, unitIndex - 1, slot) === 0;
     });
   }

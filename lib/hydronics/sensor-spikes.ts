@@ -1,5 +1,5 @@
 import type { SensorChannel } from './sensor-channels';
-import type { Run } from './sensor-stuck';
+import type { Run } from './sensor-scan';
 import { unitsOnCount } from './units-on';
 import type { Measurements, PlantModel } from './types';
 
@@ -85,46 +85,54 @@ function amongStreams(channel: SensorChannel, others: readonly SensorChannel[], 
   return value >= coldest - BEYOND_STREAMS_F && value <= warmest + BEYOND_STREAMS_F;
 }
 
-function leastDeparture(channel: SensorChannel): number {
+/** A value must lie this far beyond both sides to be a spike. Units: deg F or gpm. */
+export function leastDeparture(channel: SensorChannel): number {
   if (channel.quantity === 'temperature') return LEAST_F;
   return (channel.place === 'bypass' ? LEAST_BYPASS_FLOW_SHARE : LEAST_FLOW_SHARE) * channel.designGpm;
+}
+
+/** Where the spike that begins at the slot ends (half-open); -1 when none does. */
+function spikeEnd(channel: SensorChannel, slot: number): number {
+  const { values, lo, hi } = channel;
+  if (slot < 1 || slot + 1 >= values.length) return -1;
+  const least = leastDeparture(channel);
+  const single = departure(values, slot, slot + 1);
+  const end = single > least ? slot + 1 : slot + 2;
+  if (end >= values.length) return -1;
+  const size = single > least ? single : departure(values, slot, end);
+  if (!(size > least)) return -1;
+  // Readings that cannot be at all are told apart as such.
+  if (!((values[end - 1] as number) >= lo && (values[end - 1] as number) <= hi)) return -1;
+  const sides = Math.abs((values[slot - 1] as number) - (values[end] as number));
+  return size > SIDES_TIMES * sides && size > NOISE_TIMES * noiseNearby(channel, slot, end) ? end : -1;
 }
 
 /**
  * Single or double slots in which the channel departs from both sides far beyond its noise and comes back, while no unit
  * comes or goes and no other sensor moves.
  *
+ * Shapes  `jumps`: slots that lie beyond the one before by more than `leastDeparture`.
  * Gaps    a value beside a missing one is never called a spike: nothing shows that it came back.
  * Source  common practice, no source (limits above).
  */
 export function spikeStretches(
   channel: SensorChannel,
+  jumps: readonly number[],
   channels: readonly SensorChannel[],
   measurements: Measurements,
   plant: PlantModel,
 ): Run[] {
-  const { values, lo, hi } = channel;
-  const least = leastDeparture(channel);
   const spikes: Run[] = [];
-  for (let slot = 1; slot < values.length - 1; slot += 1) {
-    const value = values[slot] as number;
-    // Nearly every slot ends here.
-    if (!(Math.abs(value - (values[slot - 1] as number)) > least)) continue;
-    const single = departure(values, slot, slot + 1);
-    const double = slot + 2 < values.length ? departure(values, slot, slot + 2) : Number.NaN;
-    const end = single > least ? slot + 1 : slot + 2;
-    const size = single > least ? single : double;
-    if (!(size > least)) continue;
-    // Readings that cannot be at all are told apart as such.
-    if (!(value >= lo && value <= hi && (values[end - 1] as number) >= lo && (values[end - 1] as number) <= hi))
-      continue;
-    const sides = Math.abs((values[slot - 1] as number) - (values[end] as number));
-    if (size <= SIDES_TIMES * sides || size <= NOISE_TIMES * noiseNearby(channel, slot, end)) continue;
-    if (channel.quantity === 'temperature' && channel.place === 'bypass' && amongStreams(channel, channels, slot))
-      continue;
+  const mixes = channel.quantity === 'temperature' && channel.place === 'bypass';
+  let done = 0;
+  for (const slot of jumps) {
+    if (slot < done) continue;
+    const end = spikeEnd(channel, slot);
+    if (end < 0 || (mixes && amongStreams(channel, channels, slot))) continue;
     if (anotherMoved(channel, channels, slot, end) || unitsChanged(measurements, plant, slot, end)) continue;
     spikes.push({ fromSlot: slot, toSlot: end });
-    slot = end;
+    // The step back is no second spike.
+    done = end + 1;
   }
   return spikes;
 }

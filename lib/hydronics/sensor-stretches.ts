@@ -1,45 +1,15 @@
 import type { SensorStretch, SensorSuspicion } from './calibration-types';
 import { PlantActivity } from './sensor-activity';
 import { sensorChannels } from './sensor-channels';
-import type { SensorChannel } from './sensor-channels';
-import { spikeStretches } from './sensor-spikes';
-import { stuckStretches } from './sensor-stuck';
-import type { Run } from './sensor-stuck';
+import { scanChannel } from './sensor-scan';
+import type { Run } from './sensor-scan';
+import { leastDeparture, spikeStretches } from './sensor-spikes';
+import { leastHeldSlots, stuckStretches } from './sensor-stuck';
 import { suspicionsOf } from './sensor-suspicions';
 import type { Measurements, PlantModel } from './types';
 
-/** Values missing for this long are shown as a stretch; shorter holes are daily bread. */
-const MISSING_MINUTES = 60;
-
-/** Stretches in which a value is missing for an hour or more, and those in which it cannot be. One pass. */
-function rangeStretches(channel: SensorChannel, stepMinutes: number): { missing: Run[]; outside: Run[] } {
-  const { values, lo, hi } = channel;
-  const least = MISSING_MINUTES / stepMinutes;
-  const missing: Run[] = [];
-  const outside: Run[] = [];
-  let missingFrom = -1;
-  let outsideFrom = -1;
-  const end = (slot: number) => {
-    if (missingFrom >= 0 && slot - missingFrom >= least) missing.push({ fromSlot: missingFrom, toSlot: slot });
-    if (outsideFrom >= 0) outside.push({ fromSlot: outsideFrom, toSlot: slot });
-    missingFrom = -1;
-    outsideFrom = -1;
-  };
-  for (let slot = 0; slot < values.length; slot += 1) {
-    const value = values[slot] as number;
-    if (value >= lo && value <= hi) {
-      if (missingFrom >= 0 || outsideFrom >= 0) end(slot);
-    } else if (value !== value) {
-      if (outsideFrom >= 0) end(slot);
-      if (missingFrom < 0) missingFrom = slot;
-    } else {
-      if (missingFrom >= 0) end(slot);
-      if (outsideFrom < 0) outsideFrom = slot;
-    }
-  }
-  end(values.length);
-  return { missing, outside };
-}
+/** Meters that show one flow for hours when the production pumps have one speed. */
+const STEADY_FLOWS: readonly (keyof Measurements)[] = ['primaryFlowGpm', 'unitFlowGpm'];
 
 /**
  * Stretches of the loop's and the units' sensors that must not be used (stuck, out of range, spikes) or are to be shown
@@ -56,6 +26,7 @@ export function inspectSensors(
   measurements: Measurements,
   plant: PlantModel,
 ): { stretches: SensorStretch[]; suspicions: SensorSuspicion[] } {
+  const { stepMinutes } = measurements;
   const channels = sensorChannels(measurements, plant);
   const activity = new PlantActivity(measurements, plant, channels);
   const stretches: SensorStretch[] = [];
@@ -63,11 +34,12 @@ export function inspectSensors(
     const add = (kind: SensorStretch['kind'], runs: readonly Run[]) => {
       for (const run of runs) stretches.push({ channel: channel.name, unitIndex: channel.unitIndex, kind, ...run });
     };
-    const { missing, outside } = rangeStretches(channel, measurements.stepMinutes);
-    add('missing', missing);
-    add('out-of-range', outside);
-    add('stuck', stuckStretches(channel, activity, measurements.stepMinutes));
-    add('spike', spikeStretches(channel, channels, measurements, plant));
+    const scan = scanChannel(channel, stepMinutes, leastHeldSlots(stepMinutes), leastDeparture(channel));
+    const steadyFlow = plant.primarySpeed === 'constant' && STEADY_FLOWS.includes(channel.name);
+    add('missing', scan.missing);
+    add('out-of-range', scan.outside);
+    add('stuck', stuckStretches(channel, scan.held, activity, stepMinutes, steadyFlow));
+    add('spike', spikeStretches(channel, scan.jumps, channels, measurements, plant));
   }
   return { stretches, suspicions: suspicionsOf(measurements, plant, channels, activity) };
 }

@@ -8,7 +8,9 @@ export type Way = 'forward' | 'reverse';
 /** Most comparisons between measurements that one way holds: mate, mix, bypass temperature, other flow, bypass flow. */
 export const CONTRASTS = 5;
 /** Below this share of the main flow the common pipe's own sensor may sit in standing water. */
-const STANDING_SHARE = 0.05;
+const STANDING_SHARE = 0.08;
+/** What the pipe's sensor misses of its stream all the same (heat from the room, imperfect mixing), as share of the span. */
+const PIPE_MISFIT = 0.04;
 const HALF_LOG_TWO_PI = 0.5 * Math.log(2 * Math.PI);
 
 /**
@@ -149,7 +151,7 @@ export function bypassThisWay(reading: SlotReading, sign: number): number {
 /** Doubt of the common pipe's own temperature: near zero flow it drifts from the stream towards the room. */
 function standingVariance(share: number, spanF: number): number {
   const standing = share >= STANDING_SHARE ? 0 : 1 - Math.max(0, share) / STANDING_SHARE;
-  const doubt = 0.5 * standing * spanF;
+  const doubt = (0.6 * standing + PIPE_MISFIT) * spanF;
   return doubt * doubt;
 }
 

@@ -6,6 +6,8 @@ import type { WayFit } from './way-fit';
 
 /** Lasting errors that bear on one slot: at most five offsets and a gain and a zero of each of three flows. */
 const TOUCHED = 11;
+/** Below this share the pipe's own sensor stands between the streams and says nothing of anybody's offset. */
+const PIPE_TELLS_SHARE = 0.1;
 const derivative = new Float64Array(CONTRASTS * TOUCHED);
 const columns = new Int32Array(TOUCHED);
 const whiteSlope = new Float64Array(CONTRASTS);
@@ -48,7 +50,7 @@ export function errorDerivatives(
     if (reading.measured[far]) add(rows.mix, far, rest);
     if (reading.measured[pure]) add(rows.mix, pure, share);
   }
-  if (rows.pipe >= 0) {
+  if (rows.pipe >= 0 && share > PIPE_TELLS_SHARE) {
     add(rows.pipe, TB, -1);
     if (reading.measured[pure]) add(rows.pipe, pure, 1);
   }

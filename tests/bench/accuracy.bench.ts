@@ -9,6 +9,7 @@
  */
 import { calibrateRecord } from '../../lib/hydronics/calibrate';
 import { estimateIntervals } from '../../lib/hydronics/estimate';
+import { inspectSensors, withoutStretches } from '../../lib/hydronics/sensor-stretches';
 import { fleetOptions } from '../support/simulation/fleet';
 import { FLOORS_ALL, FLOORS_BY_SENSING, FLOORS_NEAR_BALANCE, keeps } from '../support/simulation/floors';
 import type { Limit } from '../support/simulation/floors';
@@ -22,8 +23,9 @@ const NUMBER_WIDTH = 8;
 
 /** The kernel under test: the one place that says how it is called. */
 function scoreKernel(sim: SimulatedPlant): PlantScore {
-  const calibration = calibrateRecord(sim.measurements, sim.plant);
-  return scorePlant(sim, estimateIntervals(sim.measurements, sim.plant, calibration), calibration);
+  const measurements = withoutStretches(sim.measurements, inspectSensors(sim.measurements, sim.plant).stretches);
+  const calibration = calibrateRecord(measurements, sim.plant);
+  return scorePlant(sim, estimateIntervals(measurements, sim.plant, calibration), calibration);
 }
 
 const write = (line: string) => process.stdout.write(`${line}\n`);
