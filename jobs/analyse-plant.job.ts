@@ -1,4 +1,6 @@
-import { computeSlice, readSlice, writeSlice } from '@/lib/commands/analyse-slice';
+import { computeSlice } from '@/lib/commands/compute-slice';
+import { readSlice } from '@/lib/commands/read-slice';
+import { writeSlice } from '@/lib/commands/write-slice';
 import { settleAnalyses } from '@/lib/commands/finish-analysis';
 import { enqueue } from '@/lib/db/enqueue';
 import { query } from '@/lib/db/sql';

@@ -2,12 +2,14 @@ import { deriveBlocks, writeLayers, type PointDay } from '../db/blocks';
 import { query, queryOne } from '../db/sql';
 import { withTenant } from '../db/tenant';
 import type { ColumnMapping } from '../trends/types';
-import { computeSlice, readSlice, writeSlice } from './analyse-slice';
+import { computeSlice } from './compute-slice';
 import { ensurePoints } from './ensure-points';
 import { settleAnalyses } from './finish-analysis';
 import { markChangedDays } from './mark-days-stale';
+import { readSlice } from './read-slice';
 import { refreshCoverage } from './refresh-coverage';
 import { startAnalysis } from './start-analysis';
+import { writeSlice } from './write-slice';
 
 interface Owner {
   organizationId: string;

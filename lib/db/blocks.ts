@@ -139,6 +139,31 @@ export async function readBlocks(
   return rows.map((row) => ({ pointId: row.point_id, day: row.day, values: readRealArray(row.v) }));
 }
 
+/** The blocks of single UTC days, in order of day. */
+export async function readBlocksOfDays(em: EntityManager, owner: Owner, days: readonly string[]): Promise<PointDay[]> {
+  const rows = await query<{ point_id: string; day: string; v: Buffer }>(
+    em,
+    `select point_id, day, array_send(v) as v from sample_block
+     where organization_id = $1 and plant_id = $2 and day = any ($3::date[]) order by day`,
+    [owner.organizationId, owner.plantId, days],
+  );
+  return rows.map((row) => ({ pointId: row.point_id, day: row.day, values: readRealArray(row.v) }));
+}
+
+/** A digest of all the values of each of the days, made where they lie: whether anything changed is known without reading it. */
+export async function digestDays(
+  em: EntityManager,
+  owner: Owner,
+  days: readonly string[],
+): Promise<{ day: string; digest: string }[]> {
+  return query(
+    em,
+    `select day, md5(string_agg(point_id || '/' || step || '/' || md5(array_send(v)), ',' order by point_id)) as digest
+     from sample_block where organization_id = $1 and plant_id = $2 and day = any ($3::date[]) group by day order by day`,
+    [owner.organizationId, owner.plantId, days],
+  );
+}
+
 export interface PointDayBands {
   pointId: string;
   day: string;
@@ -174,6 +199,7 @@ export interface ResultDay {
   day: string;
   stepMinutes: number;
   settingsRevision: number;
+  calibrationId: number;
   kernelVersion: string;
   channels: Partial<Record<ResultChannel, Float32Array>>;
 }
@@ -190,10 +216,16 @@ export async function readResults(
     (channel) => `array_send(${RESULT_CHANNELS[RESULT_CHANNELS.indexOf(channel)] ?? ''}) as ${channel}`,
   );
   const rows = await query<
-    Record<string, unknown> & { day: string; step: number; settings_revision: number; kernel_version: string }
+    Record<string, unknown> & {
+      day: string;
+      step: number;
+      settings_revision: number;
+      calibration_id: number;
+      kernel_version: string;
+    }
   >(
     em,
-    `select day, step, settings_revision, kernel_version, ${columns.join(', ')} from result_block
+    `select day, step, settings_revision, calibration_id, kernel_version, ${columns.join(', ')} from result_block
      where organization_id = $1 and plant_id = $2 and day between $3 and $4 order by day`,
     [owner.organizationId, owner.plantId, fromDay, toDay],
   );
@@ -201,6 +233,7 @@ export async function readResults(
     day: row.day,
     stepMinutes: row.step,
     settingsRevision: row.settings_revision,
+    calibrationId: row.calibration_id,
     kernelVersion: row.kernel_version,
     channels: Object.fromEntries(channels.map((channel) => [channel, readRealArray(row[channel] as Buffer)])),
   }));
@@ -215,7 +248,7 @@ export interface ResultDayToWrite {
 /** Writes days of estimates; unchanged rows are not rewritten. */
 export async function writeResults(
   em: EntityManager,
-  owner: Owner & { stepMinutes: number; settingsRevision: number; kernelVersion: string },
+  owner: Owner & { stepMinutes: number; settingsRevision: number; calibrationId?: number; kernelVersion: string },
   days: readonly ResultDayToWrite[],
 ): Promise<void> {
   if (days.length === 0) return;
@@ -229,13 +262,20 @@ export async function writeResults(
   const list = RESULT_CHANNELS.join(', ');
   await query(
     em,
-    `insert into result_block as t (organization_id, plant_id, day, step, settings_revision, kernel_version, input_hash, ${list})
-     select $1, $2, day, $3, $4, $5, input_hash, ${list} from incoming_result
+    `insert into result_block as t (organization_id, plant_id, day, step, settings_revision, calibration_id, kernel_version, input_hash, ${list})
+     select $1, $2, day, $3, $4, $5, $6, input_hash, ${list} from incoming_result
      on conflict (plant_id, day) do update set step = excluded.step, settings_revision = excluded.settings_revision,
-       kernel_version = excluded.kernel_version, input_hash = excluded.input_hash,
+       calibration_id = excluded.calibration_id, kernel_version = excluded.kernel_version, input_hash = excluded.input_hash,
        ${RESULT_CHANNELS.map((channel) => `${channel} = excluded.${channel}`).join(', ')}
-     where (t.input_hash, t.settings_revision, t.kernel_version, t.step)
-       is distinct from (excluded.input_hash, excluded.settings_revision, excluded.kernel_version, excluded.step)`,
-    [owner.organizationId, owner.plantId, owner.stepMinutes, owner.settingsRevision, owner.kernelVersion],
+     where (t.input_hash, t.settings_revision, t.calibration_id, t.kernel_version, t.step)
+       is distinct from (excluded.input_hash, excluded.settings_revision, excluded.calibration_id, excluded.kernel_version, excluded.step)`,
+    [
+      owner.organizationId,
+      owner.plantId,
+      owner.stepMinutes,
+      owner.settingsRevision,
+      owner.calibrationId ?? 0,
+      owner.kernelVersion,
+    ],
   );
 }

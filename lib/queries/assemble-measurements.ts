@@ -88,6 +88,50 @@ export function assembleMeasurements(
   };
 }
 
+/** Where a point counts as in service within a stretch of record: all of its place that what is assembled there depends on. */
+export interface ServingPoint {
+  id: string;
+  role: string;
+  unitIndex: number;
+  fromDay: string;
+  toDay: string;
+}
+
+/** The points that may feed a stretch of UTC days (both included), each clipped to it: a later day of record changes nothing here. */
+export function servingWithin(points: readonly PointPlace[], fromDay: string, toDay: string): ServingPoint[] {
+  return points.flatMap(({ id, role, unitIndex, firstDay, lastDay }) => {
+    const until = addDays(lastDay, SILENT_DAYS);
+    if (firstDay > toDay || until < fromDay) return [];
+    return [
+      {
+        id,
+        role,
+        unitIndex,
+        fromDay: firstDay > fromDay ? firstDay : fromDay,
+        toDay: until < toDay ? until : toDay,
+      },
+    ];
+  });
+}
+
+/**
+ * The slots [from, to) of a record, clipped to it: views of the same arrays, nothing is copied.
+ */
+export function measurementsBetween(measurements: Measurements, from: number, to: number): Measurements {
+  const first = Math.max(0, from);
+  const end = Math.min(measurements.n, to);
+  const cut = (channel: Float64Array | undefined) => channel?.subarray(first, end);
+  const entries = Object.entries(measurements).map(([name, value]: [string, unknown]) => [
+    name,
+    value instanceof Float64Array
+      ? cut(value)
+      : Array.isArray(value)
+        ? (value as (Float64Array | undefined)[]).map(cut)
+        : value,
+  ]);
+  return { ...(Object.fromEntries(entries) as Measurements), n: Math.max(0, end - first) };
+}
+
 /** One column of a role, and the slots of the stretch in which it is in service. */
 interface Feeder {
   values: Float64Array;

@@ -1,5 +1,7 @@
 import { afterAll, beforeAll, expect, test } from 'vitest';
-import { computeSlice, readSlice, writeSlice } from '@/lib/commands/analyse-slice';
+import { computeSlice } from '@/lib/commands/compute-slice';
+import { readSlice } from '@/lib/commands/read-slice';
+import { writeSlice } from '@/lib/commands/write-slice';
 import { settleAnalyses } from '@/lib/commands/finish-analysis';
 import { startAnalysis } from '@/lib/commands/start-analysis';
 import { takeOutUpload } from '@/lib/commands/apply-upload';

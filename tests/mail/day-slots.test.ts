@@ -13,7 +13,7 @@ function resultDay(day: string, stepMinutes = STEP): ResultDay {
     state: filled(STATES.indexOf('running')),
     bypass_flow_gpm: filled(-100),
   };
-  return { day, stepMinutes, settingsRevision: 1, kernelVersion: 'test', channels };
+  return { day, stepMinutes, settingsRevision: 1, calibrationId: 0, kernelVersion: 'test', channels };
 }
 const at = (text: string) => Date.parse(text);
 const DAY = [at('2026-07-24T04:00:00Z'), at('2026-07-25T04:00:00Z')] as const;
