@@ -19,12 +19,18 @@ const UNMEASURED_SIGMA_F = 30;
 export interface SlotValues {
   values: Float64Array;
   counts: Float64Array;
+  /** Reading that one leans on (its proportion to it is a mean over more neighbours); -1 for none. */
+  leanOn: Int8Array;
+  /** Variance of what it stands away from that one, F^2 or gpm^2. */
+  leanVariance: Float64Array;
   /** Doubt of a moving temperature, F^2. */
   moving: Float64Array;
 }
 export const emptySlotValues = (): SlotValues => ({
   values: new Float64Array(TEMPERATURES + FLOWS).fill(Number.NaN),
   counts: new Float64Array(TEMPERATURES + FLOWS).fill(1),
+  leanOn: new Int8Array(TEMPERATURES + FLOWS).fill(-1),
+  leanVariance: new Float64Array(TEMPERATURES + FLOWS),
   moving: new Float64Array(TEMPERATURES),
 });
 
@@ -40,6 +46,7 @@ export function movingVariance(channel: Float64Array, slot: number, stepMinutes:
 
 /** Reads the bare values of one slot. */
 export function readValues(loop: LoopRecord, slot: number, out: SlotValues): void {
+  out.leanOn.fill(-1);
   for (let i = 0; i < TEMPERATURES; i += 1) {
     const channel = loop.temperatures[i];
     out.values[i] = channel ? (channel[slot] as number) : Number.NaN;
@@ -67,12 +74,20 @@ function readTemperatures(slot: SlotValues, errors: SensorErrors, setpoint: numb
     const there = corrected === corrected;
     temperatures[i] = corrected;
     measured[i] = there ? 1 : 0;
-    if (there) {
-      const noise = errors.noise[i] as number;
-      const k = i * TEMPERATURES + i;
-      temperatureCovariance[k] =
-        (temperatureCovariance[k] as number) + (noise * noise) / (slot.counts[i] as number) + (slot.moving[i] as number);
+    if (!there) continue;
+    const noise = errors.noise[i] as number;
+    const k = i * TEMPERATURES + i;
+    const base = slot.leanOn[i] as number;
+    let variance = (noise * noise) / (slot.counts[i] as number);
+    if (base >= 0) {
+      const baseNoise = errors.noise[base] as number;
+      const shared = (baseNoise * baseNoise) / (slot.counts[base] as number);
+      variance = shared + (slot.leanVariance[i] as number);
+      const [ij, ji] = [i * TEMPERATURES + base, base * TEMPERATURES + i];
+      temperatureCovariance[ij] = (temperatureCovariance[ij] as number) + shared;
+      temperatureCovariance[ji] = temperatureCovariance[ij];
     }
+    temperatureCovariance[k] = (temperatureCovariance[k] as number) + variance + (slot.moving[i] as number);
   }
   if (!measured[PS]) guess(out, PS, setpoint, GUESSED_SUPPLY_SIGMA_F);
   if (!measured[SR]) guess(out, SR, measured[PR] ? (temperatures[PR] as number) : setpoint + rise, GUESSED_RETURN_SIGMA_F);
@@ -112,11 +127,23 @@ function readFlows(slot: SlotValues, flowErrors: FlowErrors, designPrimary: numb
         fi * dj * (gainZero[ij] as number) +
         fj * di * (gainZero[ji] as number) +
         di * dj * (zeroZero[ij] as number);
-      if (i === j) value += (fi * fi * (noise[i] as number) * (noise[i] as number)) / (slot.counts[TEMPERATURES + i] as number);
+      value += fi * fj * flowNoise(slot, noise, i, j);
+      if (i === j && (slot.leanOn[TEMPERATURES + i] as number) >= 0) value += slot.leanVariance[TEMPERATURES + i] as number;
       w[ij] = value;
       w[ji] = value;
     }
   }
+}
+
+/** Relative noise covariance of two flows; a flow that leans on the primary one shares its noise. */
+function flowNoise(slot: SlotValues, noise: Float64Array, i: number, j: number): number {
+  const base = slot.leanOn[TEMPERATURES + i] as number;
+  const own = (noise[i] as number) * (noise[i] as number);
+  if (base < 0) return i === j ? own / (slot.counts[TEMPERATURES + i] as number) : 0;
+  const ofBase = (noise[FP] as number) * (noise[FP] as number);
+  const shared = ofBase / (slot.counts[TEMPERATURES + FP] as number);
+  if (i !== j) return j === FP || (slot.leanOn[TEMPERATURES + j] as number) >= 0 ? shared : 0;
+  return shared;
 }
 
 function readCross(flowErrors: FlowErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {

@@ -84,10 +84,6 @@ export class PlantActivity {
     return this.movedTally(`moved ${names.join(' ')} ${limitF}`, channels, limitF);
   }
 
-  has(names: readonly SensorChannel['name'][]): boolean {
-    return this.channels.some((channel) => names.includes(channel.name));
-  }
-
   /** Slots in which a unit's status or pump says that it runs and production carries heat. */
   loaded(): Tally {
     const { primarySupplyF, primaryReturnF } = this.measurements;

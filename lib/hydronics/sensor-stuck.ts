@@ -9,10 +9,11 @@ import type { Run } from './sensor-scan';
 const AROUND_MINUTES = 12 * 60;
 /** One verdict for each of these, counted from the start of the record (which starts a day). */
 const VERDICT_MINUTES = 15;
-/** Least time on one value while the plant runs; where nothing but that value is seen for a day, this much more. */
+/** Least time on one value while the plant runs; where nothing but that value is seen, nearly the whole of 24 hours. */
 const STUCK_MINUTES = 120;
 /** A coarse step makes equal neighbours likelier than time does. */
 const STUCK_SLOTS = 10;
+const WHOLE_DAY_MINUTES = 20 * 60;
 const WHOLE_DAY_RUNNING_MINUTES = 480;
 /**
  * A run must be this many times the run that one usually finds the channel in nearby. With a coarse resolution or increment
@@ -22,6 +23,7 @@ const USUAL_RUNS = 5;
 /** Least record outside the run that tells what is usual for the channel. */
 const USUAL_MINUTES = 60;
 const USUAL_SLOTS = 6;
+const USUAL_CHANGES = 3;
 /** Share of the slots in which the rest of the plant must have moved within the hour. */
 const MOVED_SHARE = 0.1;
 const MOVED_CLEARLY_SHARE = 0.05;
@@ -35,15 +37,13 @@ const COARSE_MOVE_F = 2.5;
 
 /**
  * Streams that a sensor's own stream is made of: when they move, it moves. The primary supply, the secondary return and the
- * common pipe are made of nothing measured here; for them both kinds of stream must have moved.
+ * common pipe are made of nothing measured here.
  */
 const MADE_OF: Partial<Record<SensorChannel['name'], readonly SensorChannel['name'][]>> = {
   secondarySupplyF: ['primarySupplyF', 'unitLeavingF'],
   primaryReturnF: ['secondaryReturnF', 'unitEnteringF'],
   unitEnteringF: ['primaryReturnF', 'secondaryReturnF'],
 };
-const SUPPLIES = ['primarySupplyF', 'secondarySupplyF', 'unitLeavingF'] as const;
-const RETURNS = ['primaryReturnF', 'secondaryReturnF', 'unitEnteringF'] as const;
 
 /** What a verdict on one slot looks at: the part of the run near it, and the record beside that part. */
 interface View {
@@ -55,16 +55,14 @@ interface View {
   runningSlots: number;
 }
 
-export const leastHeldSlots = (stepMinutes: number): number => Math.max(STUCK_SLOTS, Math.ceil(STUCK_MINUTES / stepMinutes));
+export const leastHeldSlots = (stepMinutes: number): number =>
+  Math.max(STUCK_SLOTS, Math.ceil(STUCK_MINUTES / stepMinutes));
 
-/** Judges slots of one run of one value. */
+/** Judges a channel's slots that lie in a run of one value. */
 class StuckJudge {
   private readonly leastSlots: number;
   private readonly around: number;
   private readonly running: Tally;
-  /** The record around the run starts here. */
-  private readonly fromSlot: number;
-  private readonly toSlot: number;
   private own: OwnRuns | undefined;
 
   constructor(
@@ -72,29 +70,21 @@ class StuckJudge {
     private readonly activity: PlantActivity,
     private readonly stepMinutes: number,
     private readonly steadyFlow: boolean,
-    private readonly run: Run,
   ) {
     this.around = Math.round(AROUND_MINUTES / stepMinutes);
     this.leastSlots = leastHeldSlots(stepMinutes);
     this.running = activity.running(channel.unitIndex);
-    this.fromSlot = Math.max(0, run.fromSlot - this.around);
-    this.toSlot = Math.min(channel.values.length, run.toSlot + this.around);
   }
 
-  /** Whether any slot of the run can be stuck at all. */
-  isPossible(): boolean {
-    return within(this.running, this.run.fromSlot, this.run.toSlot) >= this.leastSlots;
-  }
-
-  isStuck(slot: number): boolean {
-    const from = Math.max(this.run.fromSlot, slot - this.around);
-    const to = Math.min(this.run.toSlot, slot + this.around + 1);
+  isStuck(run: Run, slot: number): boolean {
+    const beforeFrom = Math.max(0, slot - this.around);
+    const afterTo = Math.min(this.channel.values.length, slot + this.around + 1);
+    const from = Math.max(run.fromSlot, beforeFrom);
+    const to = Math.min(run.toSlot, afterTo);
     const runningSlots = within(this.running, from, to);
     if (runningSlots < this.leastSlots) return false;
-    const beforeFrom = Math.max(this.fromSlot, slot - this.around);
-    const afterTo = Math.min(this.toSlot, slot + this.around + 1);
     const view: View = { from, to, beforeFrom, afterTo, runningSlots };
-    const value = this.channel.values[this.run.fromSlot] as number;
+    const value = this.channel.values[run.fromSlot] as number;
     if (isZeroFlow(this.channel, value)) return this.isDeadMeter(view);
     return this.beyondUsual(view) ?? this.heldAllDay(view, value);
   }
@@ -107,39 +97,42 @@ class StuckJudge {
 
   /** Far beyond the channel's own usual run while the plant moved; undefined when the record nearby does not tell. */
   private beyondUsual(view: View): boolean | undefined {
-    const start = this.fromSlot;
-    const own = (this.own ??= ownRuns(this.channel, this.stepMinutes, start, this.toSlot));
+    const own = (this.own ??= ownRuns(this.channel, this.stepMinutes));
     const beside: UsualRuns = { said: 0, squares: 0, changes: 0, fine: 0, medium: 0 };
-    addRuns(own, view.beforeFrom - start, view.from - start, beside);
-    addRuns(own, view.to - start, view.afterTo - start, beside);
+    addRuns(own, view.beforeFrom, view.from, beside);
+    addRuns(own, view.to, view.afterTo, beside);
     if (beside.said < Math.max(USUAL_SLOTS, USUAL_MINUTES / this.stepMinutes)) return undefined;
+    if (beside.changes < USUAL_CHANGES) return undefined;
     // The mean run met by a glance at any moment: long ones count by their length.
     if (view.runningSlots < (USUAL_RUNS * beside.squares) / beside.said) return false;
     if (beside.fine >= FINE_SHARE * beside.changes)
       return this.movedMeanwhile(view, this.activity.moved(), MOVED_SHARE);
-    return this.contradicted(view, beside.medium >= FINE_SHARE * beside.changes ? MEDIUM_MOVE_F : COARSE_MOVE_F);
+    // Steps too coarse to show the noise: only what the channel must have followed speaks against it.
+    return this.restarted(view) || this.unfollowed(view, beside.medium >= FINE_SHARE * beside.changes);
   }
 
-  /** Nothing but this one value for a day. */
+  /** Nothing but this one value for a day. At the record's ends, where less is seen, nothing is said. */
   private heldAllDay(view: View, value: number): boolean {
-    if (this.contradicted(view, MEDIUM_MOVE_F)) return true;
+    if ((view.to - view.from) * this.stepMinutes < WHOLE_DAY_MINUTES) return false;
+    if (this.restarted(view) || this.unfollowed(view, true)) return true;
     // A pump of constant speed may give its one flow all day, a coarse logger its one value.
     if (this.steadyFlow || isOnCoarseGrid(this.channel, value)) return false;
     if (view.runningSlots * this.stepMinutes < WHOLE_DAY_RUNNING_MINUTES) return false;
     return this.movedMeanwhile(view, this.activity.moved(), MOVED_SHARE);
   }
 
-  /** Judged by what a sensor in that pipe would have had to follow. */
-  private contradicted(view: View, limitF: number): boolean {
-    // A pipe that came to rest and ran again did not keep its temperature, nor its flow.
+  /** A pipe that came to rest and ran again did not keep its temperature, nor its flow. */
+  private restarted(view: View): boolean {
     const restingSlots = within(this.activity.resting(this.channel.unitIndex), view.from, view.to);
-    if (restingSlots * this.stepMinutes >= STUCK_MINUTES) return true;
-    if (this.channel.quantity === 'flow') return false;
-    const source = MADE_OF[this.channel.name];
-    const streams = source && this.activity.has(source) ? [source] : [SUPPLIES, RETURNS];
-    return streams.every((names) =>
-      this.movedMeanwhile(view, this.activity.movedBy(names, limitF), MOVED_CLEARLY_SHARE),
-    );
+    return restingSlots * this.stepMinutes >= STUCK_MINUTES;
+  }
+
+  /** The streams that the sensor's own is made of moved by more than its steps hide. */
+  private unfollowed(view: View, hasMediumSteps: boolean): boolean {
+    const streams = MADE_OF[this.channel.name];
+    if (!streams) return false;
+    const moved = this.activity.movedBy(streams, hasMediumSteps ? MEDIUM_MOVE_F : COARSE_MOVE_F);
+    return this.movedMeanwhile(view, moved, MOVED_CLEARLY_SHARE);
   }
 
   /** The channel itself stands still in the view, so that any movement there is another's. */
@@ -155,7 +148,7 @@ function stuckParts(judge: StuckJudge, run: Run, blockSlots: number): Run[] {
   const parts: Run[] = [];
   for (let from = run.fromSlot; from < run.toSlot;) {
     const to = Math.min(run.toSlot, (Math.floor(from / blockSlots) + 1) * blockSlots);
-    if (judge.isStuck((from + to - 1) >> 1)) {
+    if (judge.isStuck(run, (from + to - 1) >> 1)) {
       const before = parts.at(-1);
       if (before?.toSlot === from) before.toSlot = to;
       else parts.push({ fromSlot: from, toSlot: to });
@@ -181,8 +174,7 @@ export function stuckStretches(
   steadyFlow: boolean,
 ): Run[] {
   const blockSlots = Math.max(1, Math.round(VERDICT_MINUTES / stepMinutes));
-  return held.flatMap((run) => {
-    const judge = new StuckJudge(channel, activity, stepMinutes, steadyFlow, run);
-    return judge.isPossible() ? stuckParts(judge, run, blockSlots) : [];
-  });
+  if (held.length === 0) return [];
+  const judge = new StuckJudge(channel, activity, stepMinutes, steadyFlow);
+  return held.flatMap((run) => stuckParts(judge, run, blockSlots));
 }
