@@ -44,7 +44,7 @@ const OUTLIER_CHI_SQUARE = 40;
  */
 const OPEN_SHARE = Number.POSITIVE_INFINITY;
 /** Worth of the sensors' classes in judging how large this plant's offsets are, in sensors. */
-const SCALE_WORTH = 4;
+const SCALE_WORTH = 3;
 const MIN_SCALE = 0.7;
 const MAX_SCALE = 2;
 /** Hours of one kind of day: errors of the model within one are taken as one error. */

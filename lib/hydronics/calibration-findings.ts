@@ -49,6 +49,7 @@ export function describeCalibration(work: CalibrationWork, checks: readonly Spot
   const hours = clearHours(work);
   const findings: SensorFinding[] = [];
   const describe = (role: SensorRole, kind: 'offset' | 'gain', place: number, channel: number) => {
+    if (!(seen.noise[channel] as number >= 0)) return;
     const unit = kind === 'offset' ? 1 : 100;
     const k = place * p + place;
     const classVariance = (prior[k] as number) * (kind === 'offset' ? work.classScale ** 2 : 1);

@@ -74,7 +74,9 @@ function unitMixF(
   let heatSum = 0;
   for (let index = 0; index < plant.units.length; index += 1) {
     const unit = plant.units[index] as UnitModel;
-    const flowGpm = unitFlow(measurements, plant, unit, index, slot);
+    // As a weight, the rated flow of a running pump will do, also where speeds vary.
+    const metered = measurements.unitFlowGpm[index];
+    const flowGpm = metered ? at(metered, slot) : pumpOn(measurements, unit, index, slot) * unit.flowGpm;
     if (flowGpm <= FLOWING_SHARE * unit.flowGpm) continue;
     flowSum += flowGpm;
     heatSum += flowGpm * at(temperatures[index], slot);

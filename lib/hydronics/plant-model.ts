@@ -43,8 +43,8 @@ const DEFAULTS = {
   pumpEfficiency: 0.78,
   /** Premium motors of 50 to 500 hp: 0.93 to 0.96. */
   motorEfficiency: 0.93,
-  /** Thermistor as installed, standard uncertainty (common practice, no source). */
-  temperatureSigmaF: 0.25,
+  /** A sensor of which nothing is known: resistance thermometer of class B at 45 F, k = 1 (IEC 60751, from memory). */
+  temperatureSigmaF: 0.35,
   /** Common pipes have strap-on sensors more often than wells: 0.5 to 1 F (common practice, no source). */
   bypassTemperatureSigmaF: 0.5,
   /** Insertion meter as installed: 3 to 5 % (common practice, no source). */

@@ -83,15 +83,22 @@ function readTemperatures(slot: SlotValues, errors: SensorErrors, setpoint: numb
       const baseNoise = errors.noise[base] as number;
       const shared = (baseNoise * baseNoise) / (slot.counts[base] as number);
       variance = shared + (slot.leanVariance[i] as number);
-      const [ij, ji] = [i * TEMPERATURES + base, base * TEMPERATURES + i];
-      temperatureCovariance[ij] = (temperatureCovariance[ij] as number) + shared;
-      temperatureCovariance[ji] = temperatureCovariance[ij];
+      share(temperatureCovariance, i, base, shared);
+      // Two that lean on one base share its noise with each other too.
+      for (let j = 0; j < i; j += 1) if (slot.leanOn[j] === base) share(temperatureCovariance, i, j, shared);
     }
     temperatureCovariance[k] = (temperatureCovariance[k] as number) + variance + (slot.moving[i] as number);
   }
   if (!measured[PS]) guess(out, PS, setpoint, GUESSED_SUPPLY_SIGMA_F);
   if (!measured[SR]) guess(out, SR, measured[PR] ? (temperatures[PR] as number) : setpoint + rise, GUESSED_RETURN_SIGMA_F);
   if (!measured[SS]) guess(out, SS, temperatures[PS] as number, UNMEASURED_SIGMA_F);
+}
+
+/** Adds noise that two readings have in common. */
+function share(covariance: Float64Array, i: number, j: number, variance: number): void {
+  const value = (covariance[i * TEMPERATURES + j] as number) + variance;
+  covariance[i * TEMPERATURES + j] = value;
+  covariance[j * TEMPERATURES + i] = value;
 }
 
 /** Puts a vague value where nothing was measured: independent of every sensor. */

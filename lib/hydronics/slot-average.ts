@@ -10,7 +10,7 @@ const PROPORTION_REACH_MINUTES = 45;
 /** A ring of neighbours joins while no channel's mean departs from the inner one by more than this many sigmas of both. */
 const JOIN_SIGMAS = 2;
 /** The same for proportions, whose rings are many. */
-const PROPORTION_JOIN_SIGMAS = 1.5;
+const PROPORTION_JOIN_SIGMAS = 1.7;
 /** Proportions between temperatures are formed where supply and return are this many sigmas apart. */
 const LEAST_SPAN_SIGMAS = 8;
 const CHANNELS = TEMPERATURES + FLOWS;
