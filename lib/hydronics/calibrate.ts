@@ -5,19 +5,30 @@ import { describeCalibration } from './calibration-findings';
 import { checkLengths } from './estimate';
 import { choleskyInPlace, choleskyInverse } from './linear-algebra';
 import { minimise } from './least-squares';
-import { FLOW_METERED, FP, FS, PR, PS, readLoop, SR, SS, TEMPERATURES } from './loop-record';
+import { FP, FS, PR, PS, readLoop, SR, SS, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
 import { mixingScale } from './mixing-scale';
-import { emptySlotValues, fillReading, flowErrorsAt } from './read-slot';
+import { emptySlotValues, fillReading } from './read-slot';
 import { recordNoise } from './record-noise';
 import type { RecordNoise } from './record-noise';
-import { errorsOf, PRIMARY_GAIN, PRIMARY_ZERO, priorCovariance, SECONDARY_GAIN, SET_GAINS } from './sensor-errors';
+import {
+  errorsAtSlot,
+  errorsOf,
+  parameterCount,
+  PRIMARY_GAIN,
+  PRIMARY_ZERO,
+  priorCovariance,
+  SECONDARY_GAIN,
+  SET_GAINS,
+  setOffset,
+} from './sensor-errors';
 import { emptySlotReading } from './slot-reading';
 import { plantStates } from './state';
 import { markSteady } from './steadiness';
 import type { Measurements, PlantModel } from './types';
 import { emptyWayFit, fitWay } from './way-fit';
 import { profileScore } from './way-score';
+import type { PrimaryPlaces } from './way-score';
 
 /** Share of the prior variance that classification allows for, pass by pass: wide first, so that no wrong way is locked in. */
 const ANNEAL = [2, 0.6, 0.2, 0.06, 0.02, 0] as const;
@@ -77,6 +88,12 @@ const values = emptySlotValues();
 const forwardFit = emptyWayFit('forward');
 const reverseFit = emptyWayFit('reverse');
 
+/** Doubt that stays on a parameter whatever the record: offsets in F, gains as share of flow, zeros none of their own. */
+function misfitOf(parameter: number, sets: number): number {
+  if (parameter < TEMPERATURES || parameter >= SET_GAINS + sets) return MISFIT_F;
+  return parameter % 2 === 1 || parameter >= SET_GAINS ? MISFIT_FLOW : 0;
+}
+
 /** Errors as one pass takes them: the parameters known, what is left of the prior as doubt, noise as seen. */
 function errorsAt(work: CalibrationWork, parameters: Float64Array, left: number) {
   const p = parameters.length;
@@ -84,7 +101,7 @@ function errorsAt(work: CalibrationWork, parameters: Float64Array, left: number)
   for (let i = 0; i < p * p; i += 1) covariance[i] = left * (work.prior[i] as number);
   for (let i = 0; i < p; i += 1) {
     const k = i * p + i;
-    const misfit = i < TEMPERATURES ? MISFIT_F : i % 2 === 1 || i >= SET_GAINS ? MISFIT_FLOW : 0;
+    const misfit = misfitOf(i, work.loop.sets.length);
     covariance[k] = (covariance[k] as number) + misfit * misfit;
   }
   const noise = Array.from(work.seen.noise, (sigma) => (Number.isFinite(sigma) ? sigma : 0));
@@ -97,8 +114,8 @@ type Errors = ReturnType<typeof errorsAt>;
 function readInto(work: CalibrationWork, errors: Errors, bin: number): void {
   const { loop, bins, plant } = work;
   readBin(bins, bin, values);
-  const flowErrors = flowErrorsAt(loop, errors, bins.slots[bin] as number);
-  fillReading(loop, values, errors, flowErrors, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
+  const slotErrors = errorsAtSlot(loop, errors, bins.slots[bin] as number);
+  fillReading(loop, values, slotErrors, errors.noise, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
 }
 
 /** How likely each way is in each bin, and how far the bin is to be trusted: the E step. */
@@ -129,15 +146,17 @@ function weighBins(work: CalibrationWork, left: number): void {
   work.shareScale = Math.min(1, Math.max(0.03, shares / weights));
 }
 
-/** Where a bin's primary flow keeps its gain and zero. */
-function placesOf(loop: LoopRecord, slot: number): { gain: number; zero: number } {
-  const from = loop.primaryFrom[slot] as number;
-  if (from === FLOW_METERED) return METERED_PLACES;
-  places.gain = from >= 0 ? SET_GAINS + from : -1;
+const places: PrimaryPlaces = { supply: PS, gain: PRIMARY_GAIN, zero: PRIMARY_ZERO };
+
+/** Where a bin's primary supply and flow keep their errors. */
+function placesOf(loop: LoopRecord, slot: number): PrimaryPlaces {
+  const set = loop.set[slot] as number;
+  const rated = set >= 0 && loop.rated[slot] === 1;
+  places.supply = set >= 0 && loop.mixed[slot] === 1 ? setOffset(loop.sets.length, set) : PS;
+  places.gain = rated ? SET_GAINS + set : PRIMARY_GAIN;
+  places.zero = rated ? -1 : PRIMARY_ZERO;
   return places;
 }
-const METERED_PLACES = { gain: PRIMARY_GAIN, zero: PRIMARY_ZERO };
-const places = { gain: -1, zero: -1 };
 
 /** Adds one bin's score under both ways at the given errors. */
 function scoreBin(
@@ -198,7 +217,12 @@ function invert(matrix: Float64Array, p: number): Float64Array {
 function priorTerms(work: CalibrationWork, checks: readonly SpotTerm[]): PriorTerms {
   const p = work.parameters.length;
   const scaled = work.prior.slice();
-  for (let i = 0; i < TEMPERATURES; i += 1) scaled[i * p + i] = (scaled[i * p + i] as number) * work.classScale ** 2;
+  const square = work.classScale ** 2;
+  const sets = work.loop.sets.length;
+  for (let i = 0; i < TEMPERATURES; i += 1) scaled[i * p + i] = (scaled[i * p + i] as number) * square;
+  for (let i = SET_GAINS + sets; i < p; i += 1) {
+    for (let j = SET_GAINS + sets; j < p; j += 1) scaled[i * p + j] = (scaled[i * p + j] as number) * square;
+  }
   const information = invert(scaled, p);
   const pull = new Float64Array(p);
   for (const check of checks) {
@@ -291,7 +315,7 @@ function spreadOfStretches(work: CalibrationWork, checks: readonly SpotTerm[]): 
   work.covariance.set(invert(full, p));
   for (let i = 0; i < p; i += 1) {
     const k = i * p + i;
-    const misfit = i < TEMPERATURES ? MISFIT_F : i % 2 === 1 || i >= SET_GAINS ? MISFIT_FLOW : 0;
+    const misfit = misfitOf(i, work.loop.sets.length);
     work.covariance[k] = (work.covariance[k] as number) + misfit * misfit;
   }
 }
@@ -327,7 +351,7 @@ export function calibrateRecord(
   const loop = readLoop(measurements, plant, scale);
   const bins = calibrationBins(loop, state, steady);
   const prior = priorCovariance(plant, loop.sets.length);
-  const p = SET_GAINS + loop.sets.length;
+  const p = parameterCount(loop.sets.length);
   const work: CalibrationWork = {
     loop,
     plant,
@@ -387,7 +411,7 @@ function startsOf(work: CalibrationWork): Float64Array[] {
       const start = offsets.slice();
       start[SECONDARY_GAIN] = -ratio / 2;
       start[PRIMARY_GAIN] = ratio / 2;
-      for (let i = SET_GAINS; i < start.length; i += 1) start[i] = ratio / 2;
+      for (let set = 0; set < loop.sets.length; set += 1) start[SET_GAINS + set] = ratio / 2;
       starts.push(start);
     }
   }

@@ -52,7 +52,7 @@ function usable(loop: LoopRecord, state: Float64Array, steady: Float64Array, usu
   const supply = loop.temperatures[PS] ?? loop.temperatures[SS];
   const secondary = loop.flows[FS];
   for (let slot = from; slot < to; slot += 1) {
-    if (state[slot] !== RUNNING || steady[slot] !== 1 || loop.primaryFrom[slot] !== loop.primaryFrom[from]) return false;
+    if (state[slot] !== RUNNING || steady[slot] !== 1 || loop.set[slot] !== loop.set[from]) return false;
     if (secondary && (secondary[slot] as number) < NO_FLOW_SHARE * loop.designSecondaryGpm) return false;
     if (supply && (supply[slot] as number) > usual + WARM_SUPPLY_F) return false;
   }

@@ -1,9 +1,9 @@
 import type { CalibrationWork, SpotTerm } from './calibrate';
 import type { Calibration, CalibrationLimit, SensorFinding, SensorRole, SensorTie } from './calibration-types';
-import { FB, FLOW_METERED, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
+import { FB, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import { NINETY_PERCENT_Z } from './normal';
 import { medianOf } from './record-noise';
-import { BYPASS_GAIN, PRIMARY_GAIN, SECONDARY_GAIN, SET_GAINS } from './sensor-errors';
+import { BYPASS_GAIN, PRIMARY_GAIN, SECONDARY_GAIN, SET_GAINS, setOffset } from './sensor-errors';
 import { KERNEL_VERSION } from './types';
 
 /** 0.95 points of chi-square for 1 to 5 degrees of freedom. Source: any table; computed. */
@@ -73,13 +73,15 @@ export function describeCalibration(work: CalibrationWork, checks: readonly Spot
     });
   };
   TEMPERATURE_ROLES.forEach((role, place) => {
-    if (loop.temperatures[place]) describe(role, 'offset', place, place);
+    // Where units' leaving sensors stand in, the most frequent set speaks for the supply.
+    const own = place !== PS || !loop.mixed.includes(1) || loop.sets.length === 0;
+    if (loop.temperatures[place]) describe(role, 'offset', own ? place : setOffset(loop.sets.length, 0), place);
   });
-  const metered = loop.primaryFrom.includes(FLOW_METERED);
+  const metered = loop.rated.includes(0) && !loop.rated.includes(1);
   if (loop.flows[FP] && metered) describe('primaryFlow', 'gain', PRIMARY_GAIN, TEMPERATURES + FP);
   if (loop.flows[FS]) describe('secondaryFlow', 'gain', SECONDARY_GAIN, TEMPERATURES + FS);
   if (loop.flows[FB]) describe('bypassFlow', 'gain', BYPASS_GAIN, TEMPERATURES + FB);
-  if (loop.sets.length > 0) describe('ratedFlow', 'gain', SET_GAINS, TEMPERATURES + FP);
+  if (loop.rated.includes(1)) describe('ratedFlow', 'gain', SET_GAINS, TEMPERATURES + FP);
 
   return {
     kernelVersion: KERNEL_VERSION,

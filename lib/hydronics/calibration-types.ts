@@ -67,7 +67,8 @@ export type CalibrationLimit =
 
 /**
  * Lasting errors of a record's sensors with their covariance, and what one interval's reading scatters by.
- * `values` and `covariance` (row-major) run over CALIBRATION_PARAMETERS, then one gain for each set of units in `sets`.
+ * `values` and `covariance` (row-major) run over the parameters of lib/hydronics/sensor-errors.ts: five offsets (F), gain and
+ * zero of three meters (share of reading, of design flow), a gain and a supply offset for each set of units in `sets`.
  */
 export interface Calibration {
   kernelVersion: string;

@@ -8,8 +8,8 @@ import { fromMixing, mixingScale, toMixing } from './mixing-scale';
 import type { MixingScale } from './mixing-scale';
 import { NINETY_PERCENT_Z } from './normal';
 import { markQuality } from './quality';
-import { emptySlotValues, fillReading, flowErrorsAt } from './read-slot';
-import { errorsOfCalibration, errorsOfClass } from './sensor-errors';
+import { emptySlotValues, fillReading } from './read-slot';
+import { errorsAtSlot, errorsOfCalibration, errorsOfClass } from './sensor-errors';
 import { emptySlotReading } from './slot-reading';
 import { plantStates } from './state';
 import { markSteady } from './steadiness';
@@ -145,8 +145,8 @@ export function estimateIntervals(
     average(slot, values);
     const setpointF = at(measurements.supplySetpointF, slot);
     const supply = toMixing(setpointF > 20 && setpointF < 80 ? setpointF : plant.productionSupplyF, scale);
-    const flowErrors = flowErrorsAt(loop, errors, slot);
-    fillReading(loop, values, errors, flowErrors, calibration !== undefined, supply, plant.loadDeltaTF, reading);
+    const slotErrors = errorsAtSlot(loop, errors, slot);
+    fillReading(loop, values, slotErrors, errors.noise, calibration !== undefined, supply, plant.loadDeltaTF, reading);
     if (weighSlot(plant.arrangement, reading, weighing, verdict)) writeSlot(out, slot, verdict, scale, curves);
     else {
       settleNothing(reading, verdict);

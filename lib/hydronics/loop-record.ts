@@ -16,9 +16,6 @@ export const FS = 1;
 export const FB = 2;
 export const FLOWS = 3;
 
-/** Where a slot's primary flow comes from: no value, a meter (or the units' meters), or rated flow of running pumps. */
-export const FLOW_NONE = -2;
-export const FLOW_METERED = -1;
 /** Most running sets of units that get a gain of their own. */
 const MAX_SETS = 7;
 /** Stands last among the sets, for any that was not met. */
@@ -35,10 +32,14 @@ export interface LoopRecord {
   flows: (Float64Array | null)[];
   /** True when the bypass meter gives a magnitude only. */
   bypassUnsigned: boolean;
-  /** FLOW_NONE, FLOW_METERED, or the index into `sets` whose rated flow stands in. */
-  primaryFrom: Int8Array;
-  /** Running sets (bit i = unit i) met in the record, most frequent first, then ANY_SET; empty when flow is metered. */
+  /** The running set of units at each slot, as index into `sets`; -1 where nothing tells. */
+  set: Int8Array;
+  /** Running sets (bit i = unit i) met in the record, most frequent first, then ANY_SET; empty when no errors hang on them. */
   sets: number[];
+  /** 1 where primary flow is the rated flow of the running set. */
+  rated: Uint8Array;
+  /** 1 where primary supply is the mix of the running units' leaving sensors. */
+  mixed: Uint8Array;
   designPrimaryGpm: number;
   designSecondaryGpm: number;
 }
@@ -84,20 +85,24 @@ function unitMixF(
   return flowSum > 0 ? heatSum / flowSum : Number.NaN;
 }
 
-/** A loop temperature on the mixing scale: its own sensor, else what the units' sensors make of it. */
+/** A loop temperature on the mixing scale: its own sensor, else what the units' sensors make of it (marked in `mixed`). */
 function temperatureChannel(
   own: Float64Array | undefined,
   ofUnits: readonly (Float64Array | undefined)[],
   measurements: Measurements,
   plant: PlantModel,
   scale: MixingScale,
+  mixed: Uint8Array,
 ): Float64Array | null {
   const byUnits = ofUnits.some((channel) => channel !== undefined);
   if (!own && !byUnits) return null;
   const channel = new Float64Array(measurements.n);
   for (let slot = 0; slot < measurements.n; slot += 1) {
     let tempF = own ? (own[slot] as number) : Number.NaN;
-    if (byUnits && tempF !== tempF) tempF = unitMixF(measurements, plant, ofUnits, slot);
+    if (byUnits && tempF !== tempF) {
+      tempF = unitMixF(measurements, plant, ofUnits, slot);
+      mixed[slot] = 1;
+    }
     channel[slot] = Math.abs(tempF) < 1e3 ? toMixing(tempF, scale) : Number.NaN;
   }
   return channel;
@@ -116,61 +121,73 @@ function flowChannel(source: Float64Array | undefined, negative: boolean): Float
 
 interface PrimaryFlow {
   flow: Float64Array | null;
-  from: Int8Array;
-  sets: number[];
+  rated: Uint8Array;
 }
 
-/** Primary flow by meter, else by the units' meters and the rated flow of running pumps; with where it comes from. */
-function primaryFlow(measurements: Measurements, plant: PlantModel, given: readonly number[] | undefined): PrimaryFlow {
+/** Primary flow by meter, else by the units' meters and the rated flow of running pumps (marked in `rated`). */
+function primaryFlow(measurements: Measurements, plant: PlantModel): PrimaryFlow {
   const n = measurements.n;
   const metered = flowChannel(measurements.primaryFlowGpm, false);
-  const from = new Int8Array(n).fill(FLOW_NONE);
+  const rated = new Uint8Array(n);
+  if (!tellsUnits(measurements)) return { flow: metered, rated };
   const flow = metered ?? new Float64Array(n).fill(Number.NaN);
-  const byUnits = [measurements.unitFlowGpm, measurements.primaryPumpStatus, measurements.unitStatus, measurements.unitPowerKw]
-    .some((channels) => channels.some((channel) => channel !== undefined));
-  if (!metered && !byUnits) return { flow: null, from, sets: [...(given ?? [])] };
-  const masks = byUnits ? new Int32Array(n).fill(-1) : null;
-  const counts = new Map<number, number>();
   let any = metered !== null;
   for (let slot = 0; slot < n; slot += 1) {
-    const reading = flow[slot] as number;
-    if (reading === reading) {
-      from[slot] = FLOW_METERED;
-      continue;
-    }
-    if (!masks) continue;
+    if (flow[slot] === flow[slot]) continue;
     let sumGpm = 0;
-    let ratedGpm = 0;
+    for (let index = 0; index < plant.units.length; index += 1) {
+      const unitGpm = unitFlow(measurements, plant, plant.units[index] as UnitModel, index, slot);
+      sumGpm += unitGpm > 0 || unitGpm !== unitGpm ? unitGpm : 0;
+      if (!measurements.unitFlowGpm[index] && unitGpm > 0) rated[slot] = 1;
+    }
+    if (!(sumGpm < 1e7)) continue;
+    flow[slot] = sumGpm;
+    if (sumGpm > 0) any = true;
+  }
+  return { flow: any ? flow : null, rated };
+}
+
+/** True when any point of a unit says whether water moves through it. */
+const tellsUnits = (measurements: Measurements): boolean =>
+  [measurements.unitFlowGpm, measurements.primaryPumpStatus, measurements.unitStatus, measurements.unitPowerKw].some(
+    (channels) => channels.some((channel) => channel !== undefined),
+  );
+
+/** Running sets of a record: the list, and each slot's place in it. */
+function runningSets(
+  measurements: Measurements,
+  plant: PlantModel,
+  given: readonly number[] | undefined,
+): { set: Int8Array; sets: number[] } {
+  const n = measurements.n;
+  const set = new Int8Array(n).fill(-1);
+  if (!tellsUnits(measurements)) return { set, sets: [...(given ?? [])] };
+  const masks = new Int32Array(n);
+  const counts = new Map<number, number>();
+  for (let slot = 0; slot < n; slot += 1) {
     let mask = 0;
     for (let index = 0; index < plant.units.length; index += 1) {
       const unit = plant.units[index] as UnitModel;
-      const unitGpm = unitFlow(measurements, plant, unit, index, slot);
-      sumGpm += unitGpm > 0 || unitGpm !== unitGpm ? unitGpm : 0;
-      if (!measurements.unitFlowGpm[index] && unitGpm > 0) {
-        ratedGpm += unitGpm;
-        if (unitGpm > unit.flowGpm / 2) mask |= 1 << index;
-      }
+      const metered = measurements.unitFlowGpm[index];
+      const flowGpm = metered ? at(metered, slot) : pumpOn(measurements, unit, index, slot) * unit.flowGpm;
+      if (flowGpm > unit.flowGpm / 2) mask |= 1 << index;
     }
-    if (!(sumGpm < 1e7)) continue;
-    any = true;
-    flow[slot] = sumGpm;
-    if (ratedGpm > 0) {
-      masks[slot] = mask;
-      counts.set(mask, (counts.get(mask) ?? 0) + 1);
-    } else {
-      from[slot] = FLOW_METERED;
-    }
+    masks[slot] = mask;
+    if (mask > 0) counts.set(mask, (counts.get(mask) ?? 0) + 1);
   }
   // Ties in frequency go by the mask itself, so that the order never depends on where a record starts.
-  const met = [...counts].sort((a, b) => b[1] - a[1] || a[0] - b[0]).slice(0, MAX_SETS).map(([mask]) => mask);
+  const met = [...counts]
+    .sort((a, b) => b[1] - a[1] || a[0] - b[0])
+    .slice(0, MAX_SETS)
+    .map(([mask]) => mask);
   const sets = given ? [...given] : met.length > 0 ? [...met, ANY_SET] : [];
-  if (masks) {
+  if (sets.length > 0) {
     for (let slot = 0; slot < n; slot += 1) {
       const mask = masks[slot] as number;
-      if (mask >= 0) from[slot] = placeOfSet(sets, mask);
+      if (mask > 0) set[slot] = placeOfSet(sets, mask);
     }
   }
-  return { flow: any ? flow : null, from, sets };
+  return { set, sets };
 }
 
 /** Index of a running set; one that is not listed counts as the last, ANY_SET. */
@@ -193,28 +210,38 @@ export function readLoop(
   scale: MixingScale,
   sets?: readonly number[],
 ): LoopRecord {
-  const channel = (own: Float64Array | undefined, ofUnits: readonly (Float64Array | undefined)[] = []) =>
-    temperatureChannel(own, ofUnits, measurements, plant, scale);
-  const primary = primaryFlow(measurements, plant, sets);
+  const mixed = new Uint8Array(measurements.n);
+  const unmarked = new Uint8Array(measurements.n);
+  const channel = (
+    own: Float64Array | undefined,
+    ofUnits: readonly (Float64Array | undefined)[] = [],
+    marks: Uint8Array = unmarked,
+  ) => temperatureChannel(own, ofUnits, measurements, plant, scale, marks);
+  const primary = primaryFlow(measurements, plant);
   const signed = measurements.bypassFlowGpm;
+  const temperatures = [
+    channel(measurements.primarySupplyF, measurements.unitLeavingF, mixed),
+    channel(measurements.primaryReturnF, measurements.unitEnteringF),
+    channel(measurements.secondarySupplyF),
+    channel(measurements.secondaryReturnF),
+    channel(measurements.bypassF),
+  ];
+  // Without a calibration that names them, sets matter only where something hangs on them.
+  const hang = sets !== undefined || primary.rated.includes(1) || mixed.includes(1);
+  const running = hang ? runningSets(measurements, plant, sets) : { set: new Int8Array(measurements.n).fill(-1), sets: [] };
   return {
     n: measurements.n,
     stepMinutes: measurements.stepMinutes,
-    temperatures: [
-      channel(measurements.primarySupplyF, measurements.unitLeavingF),
-      channel(measurements.primaryReturnF, measurements.unitEnteringF),
-      channel(measurements.secondarySupplyF),
-      channel(measurements.secondaryReturnF),
-      channel(measurements.bypassF),
-    ],
+    temperatures,
     flows: [
       primary.flow,
       flowChannel(measurements.secondaryFlowGpm, false),
       signed ? flowChannel(signed, true) : flowChannel(measurements.bypassFlowUnsignedGpm, true),
     ],
     bypassUnsigned: !signed,
-    primaryFrom: primary.from,
-    sets: primary.sets,
+    ...running,
+    rated: primary.rated,
+    mixed,
     designPrimaryGpm: designPrimaryFlowGpm(plant),
     designSecondaryGpm: plant.distributionPumps.flowGpm,
   };

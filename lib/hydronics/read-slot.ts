@@ -1,6 +1,6 @@
-import { FB, FLOW_METERED, FLOW_NONE, FLOWS, FP, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
+import { FB, FLOWS, FP, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
-import type { FlowErrors, SensorErrors } from './sensor-errors';
+import type { SlotErrors } from './sensor-errors';
 import type { SlotReading } from './slot-reading';
 
 /**
@@ -60,13 +60,7 @@ export function readValues(loop: LoopRecord, slot: number, out: SlotValues): voi
   }
 }
 
-/** Which errors the flows of a slot have. */
-export function flowErrorsAt(loop: LoopRecord, errors: SensorErrors, slot: number): FlowErrors {
-  const from = loop.primaryFrom[slot] as number;
-  return from === FLOW_METERED || from === FLOW_NONE ? errors.metered : (errors.rated[from] ?? errors.metered);
-}
-
-function readTemperatures(slot: SlotValues, errors: SensorErrors, setpoint: number, rise: number, out: SlotReading): void {
+function readTemperatures(slot: SlotValues, errors: SlotErrors, temperatureNoise: Float64Array, setpoint: number, rise: number, out: SlotReading): void {
   const { temperatures, measured, temperatureCovariance } = out;
   temperatureCovariance.set(errors.offsetOffset);
   for (let i = 0; i < TEMPERATURES; i += 1) {
@@ -75,12 +69,12 @@ function readTemperatures(slot: SlotValues, errors: SensorErrors, setpoint: numb
     temperatures[i] = corrected;
     measured[i] = there ? 1 : 0;
     if (!there) continue;
-    const noise = errors.noise[i] as number;
+    const noise = temperatureNoise[i] as number;
     const k = i * TEMPERATURES + i;
     const base = slot.leanOn[i] as number;
     let variance = (noise * noise) / (slot.counts[i] as number);
     if (base >= 0) {
-      const baseNoise = errors.noise[base] as number;
+      const baseNoise = temperatureNoise[base] as number;
       const shared = (baseNoise * baseNoise) / (slot.counts[base] as number);
       variance = shared + (slot.leanVariance[i] as number);
       share(temperatureCovariance, i, base, shared);
@@ -111,7 +105,7 @@ function guess(out: SlotReading, i: number, value: number, sigmaF: number): void
   out.temperatureCovariance[i * TEMPERATURES + i] = sigmaF * sigmaF;
 }
 
-function readFlows(slot: SlotValues, flowErrors: FlowErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {
+function readFlows(slot: SlotValues, flowErrors: SlotErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {
   const { flows, flowCovariance: w } = out;
   const { gain, zero, gainGain, gainZero, zeroZero, noise } = flowErrors;
   for (let i = 0; i < FLOWS; i += 1) {
@@ -153,7 +147,7 @@ function flowNoise(slot: SlotValues, noise: Float64Array, i: number, j: number):
   return shared;
 }
 
-function readCross(flowErrors: FlowErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {
+function readCross(flowErrors: SlotErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {
   const { offsetGain, offsetZero } = flowErrors;
   const { flows, measured, crossCovariance } = out;
   for (let j = 0; j < FLOWS; j += 1) {
@@ -178,17 +172,17 @@ function readCross(flowErrors: FlowErrors, designPrimary: number, designSecondar
 export function fillReading(
   loop: LoopRecord,
   slot: SlotValues,
-  errors: SensorErrors,
-  flowErrors: FlowErrors,
+  errors: SlotErrors,
+  temperatureNoise: Float64Array,
   calibrated: boolean,
   setpoint: number,
   rise: number,
   out: SlotReading,
 ): void {
-  readTemperatures(slot, errors, setpoint, rise, out);
-  readFlows(slot, flowErrors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
+  readTemperatures(slot, errors, temperatureNoise, setpoint, rise, out);
+  readFlows(slot, errors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
   // Without a calibration no offset is tied to any meter.
-  if (calibrated) readCross(flowErrors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
+  if (calibrated) readCross(errors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
   out.bypassUnsigned = loop.bypassUnsigned;
   // The pipe's own sensor only ever adds a comparison: its readings outside the loop's range are no temperature of it.
   if (!measuredInRange(out)) {

@@ -44,7 +44,7 @@ function runningChanges(loop: LoopRecord, state: Float64Array): Int32Array {
   const changes = new Int32Array(loop.n + 1);
   for (let slot = 0; slot < loop.n; slot += 1) {
     const changed =
-      slot > 0 && (state[slot] !== state[slot - 1] || loop.primaryFrom[slot] !== loop.primaryFrom[slot - 1]);
+      slot > 0 && (state[slot] !== state[slot - 1] || loop.set[slot] !== loop.set[slot - 1]);
     changes[slot + 1] = (changes[slot] as number) + (changed ? 1 : 0);
   }
   return changes;
@@ -165,7 +165,7 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
   const widths = halfWidths(loop.stepMinutes, REACH_MINUTES);
   const seen = errors.noise.some((sigma) => sigma > 0);
   if (!seen) return (slot, out) => readValues(loop, slot, out);
-  const flowNoise = errors.metered.noise;
+  const { flowNoise } = errors;
   const sums = [...loop.temperatures, ...loop.flows].map((channel, i) => {
     if (!channel) return null;
     const sigma = i < TEMPERATURES ? (errors.noise[i] as number) : (flowNoise[i - TEMPERATURES] as number);

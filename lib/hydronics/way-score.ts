@@ -1,4 +1,4 @@
-import { FB, FLOWS, FP, FS, TB } from './loop-record';
+import { FB, FP, FS, PS, TB } from './loop-record';
 import { BYPASS_GAIN, BYPASS_ZERO, SECONDARY_GAIN, SECONDARY_ZERO } from './sensor-errors';
 import type { SlotReading } from './slot-reading';
 import { CONTRASTS, bypassThisWay, partsOf } from './way-fit';
@@ -13,8 +13,9 @@ const columns = new Int32Array(TOUCHED);
 const whiteSlope = new Float64Array(CONTRASTS);
 const whiteRest = new Float64Array(CONTRASTS);
 
-/** Where a slot's primary flow keeps its errors; -1: it has none. */
+/** Where a slot's primary supply and flow keep their errors; -1: it has none. */
 export interface PrimaryPlaces {
+  supply: number;
   gain: number;
   zero: number;
 }
@@ -97,6 +98,7 @@ export function profileScore(
   const share = known ? (fit.share > 0 ? (fit.share < 1 ? fit.share : 1) : 0) : 0;
   errorDerivatives(reading, fit, share, designPrimaryGpm, designSecondaryGpm, derivative);
   for (let i = 0; i < 5; i += 1) columns[i] = i;
+  columns[PS] = places.supply;
   columns[5 + 2 * FP] = places.gain;
   columns[6 + 2 * FP] = places.zero;
   columns[5 + 2 * FS] = SECONDARY_GAIN;
