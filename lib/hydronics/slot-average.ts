@@ -7,6 +7,8 @@ import type { SensorErrors } from './sensor-errors';
 /** Farthest neighbour that may be averaged in: readings, and proportions between them. */
 const REACH_MINUTES = 20;
 const PROPORTION_REACH_MINUTES = 45;
+/** Up to here neighbours join one by one. */
+const FINE_MINUTES = 20;
 /** A ring of neighbours joins while no channel's mean departs from the inner one by more than this many sigmas of both. */
 const JOIN_SIGMAS = 2;
 /** The same for proportions, whose rings are many. */
@@ -18,15 +20,18 @@ const CHANNELS = TEMPERATURES + FLOWS;
 /** Reads one slot's values, averaged with neighbours where the record shows that nothing moves. */
 export type SlotAverager = (slot: number, out: SlotValues) => void;
 
-/** Running sums of one series: values and how many there were. `noise` is that of one value. */
+/** Running sums of one series: values and how many there were. */
 interface Sums {
   channel: Float64Array;
   value: Float64Array;
   count: Int32Array;
-  noise: (slot: number) => number;
+  /** Noise of one value: constant, a share of the value, or a variance for each slot. */
+  sigma: number;
+  share: number;
+  variance: Float64Array | null;
 }
 
-function runningSums(channel: Float64Array, noise: (slot: number) => number): Sums {
+function runningSums(channel: Float64Array, sigma: number, share: number, variance: Float64Array | null): Sums {
   const n = channel.length;
   const value = new Float64Array(n + 1);
   const count = new Int32Array(n + 1);
@@ -36,7 +41,7 @@ function runningSums(channel: Float64Array, noise: (slot: number) => number): Su
     value[slot + 1] = (value[slot] as number) + (there ? reading : 0);
     count[slot + 1] = (count[slot] as number) + (there ? 1 : 0);
   }
-  return { channel, value, count, noise };
+  return { channel, value, count, sigma, share, variance };
 }
 
 /** Running count of slots at which the plant's state or its source of primary flow changes. */
@@ -50,11 +55,16 @@ function runningChanges(loop: LoopRecord, state: Float64Array): Int32Array {
   return changes;
 }
 
-/** Half-widths tried one after another: each ring about as wide as what it joins. */
+/** Half-widths tried one after another: single neighbours first, then rings about as wide as what they join. */
 function halfWidths(stepMinutes: number, reachMinutes: number): number[] {
   const reach = Math.floor(reachMinutes / stepMinutes);
+  const single = FINE_MINUTES / stepMinutes;
   const widths: number[] = [];
-  for (let width = 1; width <= reach; width = Math.max(width + 1, Math.floor(1.5 * width))) widths.push(width);
+  let width = Math.max(1, Math.round(single / 4));
+  while (width <= reach) {
+    widths.push(width);
+    width = width < single && stepMinutes >= 2 ? width + 1 : 2 * width;
+  }
   return widths;
 }
 
@@ -88,9 +98,11 @@ function ringJoins(sums: Sums, slot: number, inner: number, outer: number, sigma
   const ringCount = (count[slot + outer + 1] as number) - (count[slot - outer] as number) - insideCount;
   if (ringCount === 0) return true;
   const ringSum = (value[slot + outer + 1] as number) - (value[slot - outer] as number) - insideSum;
-  const away = ringSum / ringCount - insideSum / insideCount;
-  const limit = sigmas * sums.noise(slot);
-  return away * away <= limit * limit * (1 / insideCount + 1 / ringCount);
+  const inside = insideSum / insideCount;
+  const away = ringSum / ringCount - inside;
+  const shared = sums.share * inside;
+  const variance = sums.variance ? (sums.variance[slot] as number) : sums.sigma * sums.sigma + shared * shared;
+  return away * away <= sigmas * sigmas * variance * (1 / insideCount + 1 / ringCount);
 }
 
 /** A temperature's place between the streams, or a flow's share of the primary flow: what moves only with the bypass. */
@@ -108,7 +120,7 @@ function proportions(loop: LoopRecord, noise: Float64Array, flowNoise: Float64Ar
   const [ps, pr, ss, sr, tb] = loop.temperatures;
   const found: Proportion[] = [];
   const keep = (target: number, base: number, series: Float64Array, variance: Float64Array) =>
-    found.push({ target, base, variance, sums: runningSums(series, (slot) => Math.sqrt(variance[slot] as number)) });
+    found.push({ target, base, variance, sums: runningSums(series, 0, 0, variance) });
   const place = (target: number, base: number, far: number) => {
     const own = loop.temperatures[target];
     const from = loop.temperatures[base];
@@ -169,7 +181,7 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
   const sums = [...loop.temperatures, ...loop.flows].map((channel, i) => {
     if (!channel) return null;
     const sigma = i < TEMPERATURES ? (errors.noise[i] as number) : (flowNoise[i - TEMPERATURES] as number);
-    return runningSums(channel, i < TEMPERATURES ? () => sigma : (slot) => sigma * (channel[slot] as number));
+    return i < TEMPERATURES ? runningSums(channel, sigma, 0, null) : runningSums(channel, 0, sigma, null);
   });
   const changes = runningChanges(loop, state);
   const leaning = proportions(loop, errors.noise, flowNoise);

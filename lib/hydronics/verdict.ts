@@ -17,6 +17,8 @@ const SIGMA_FREEDOM = 4;
 /** A common-pipe temperature this far from both ends says that the pipe ran both ways, or that the water hunts. */
 const BETWEEN_LOW = 0.25;
 const BETWEEN_HIGH = 0.75;
+/** A way less probable than this is left out. */
+const NEGLIGIBLE = 1e-6;
 /** A blended supply less sure than this is not known, F. */
 const UNKNOWN_BLEND_SIGMA_F = 8;
 
@@ -106,29 +108,32 @@ export function bypassQuantile(level: number, pReverse: number, forward: WayStat
   return Math.max(0, mu - sigma * normalQuantile(above));
 }
 
+/** Probability that a normal cut off at zero lies below `band`. */
+function belowBand(mu: number, sigma: number, band: number): number {
+  if (!(sigma > 0)) return mu < band ? 1 : 0;
+  if (mu > band + 8 * sigma) return 0;
+  const below = normalCdf(-mu / sigma);
+  return (normalCdf((band - mu) / sigma) - below) / Math.max(1e-300, 1 - below);
+}
+
 /** Probability that the bypass is within `band` of zero. */
 function stillProbability(band: number, pReverse: number, forward: WayState, reverse: WayState): number {
-  const within = (mu: number, sigma: number): number => {
-    if (!(sigma > 0)) return mu < band ? 1 : 0;
-    if (mu > band + 8 * sigma) return 0;
-    const below = normalCdf(-mu / sigma);
-    return (normalCdf((band - mu) / sigma) - below) / (1 - below);
-  };
-  const near = (state: WayState, probability: number): number =>
-    probability > 1e-6 ? probability * within(state.bypassGpm, state.bypassSigma) : 0;
-  return near(forward, 1 - pReverse) + near(reverse, pReverse);
+  const ahead = pReverse < 1 - NEGLIGIBLE ? (1 - pReverse) * belowBand(forward.bypassGpm, forward.bypassSigma, band) : 0;
+  const back = pReverse > NEGLIGIBLE ? pReverse * belowBand(reverse.bypassGpm, reverse.bypassSigma, band) : 0;
+  return ahead + back;
 }
 
 /** The same of the share, where no flow is known. */
 function stillShareProbability(pReverse: number, forward: WayFit, reverse: WayFit): number {
-  const within = (fit: WayFit): number => {
-    const sigma = Math.sqrt(fit.shareVariance);
-    const below = normalCdf(-fit.share / sigma);
-    return (normalCdf((STILL_SHARE - fit.share) / sigma) - below) / Math.max(1e-300, 1 - below);
-  };
-  const near = (fit: WayFit, probability: number): number =>
-    probability > 1e-6 && known(fit.share) ? probability * within(fit) : 0;
-  return near(forward, 1 - pReverse) + near(reverse, pReverse);
+  const ahead =
+    pReverse < 1 - NEGLIGIBLE && known(forward.share)
+      ? (1 - pReverse) * belowBand(forward.share, Math.sqrt(forward.shareVariance), STILL_SHARE)
+      : 0;
+  const back =
+    pReverse > NEGLIGIBLE && known(reverse.share)
+      ? pReverse * belowBand(reverse.share, Math.sqrt(reverse.shareVariance), STILL_SHARE)
+      : 0;
+  return ahead + back;
 }
 
 /** Why the direction is not known, when the measurements do not contradict each other. */
@@ -158,13 +163,13 @@ function unsignedSawBoth(reading: SlotReading): boolean {
 /** Bypass, flows, temperatures and the interval of the bypass from both ways' states. */
 function combine(reading: SlotReading, pReverse: number, forward: WayState, reverse: WayState, out: Verdict): void {
   const sized =
-    (known(forward.heldGpm) || pReverse > 1 - 1e-6) && (known(reverse.heldGpm) || pReverse < 1e-6);
+    (known(forward.heldGpm) || pReverse > 1 - NEGLIGIBLE) && (known(reverse.heldGpm) || pReverse < NEGLIGIBLE);
   if (sized) {
-    const forwardGpm = pReverse > 1 - 1e-6 ? 0 : (1 - pReverse) * forward.heldGpm;
-    const reverseGpm = pReverse < 1e-6 ? 0 : pReverse * reverse.heldGpm;
+    const forwardGpm = pReverse > 1 - NEGLIGIBLE ? 0 : (1 - pReverse) * forward.heldGpm;
+    const reverseGpm = pReverse < NEGLIGIBLE ? 0 : pReverse * reverse.heldGpm;
     out.bypassGpm = forwardGpm - reverseGpm;
-    const decided = pReverse < 1e-6 ? forward : reverse;
-    if ((pReverse < 1e-6 || pReverse > 1 - 1e-6) && decided.bypassGpm > 4 * decided.bypassSigma) {
+    const decided = pReverse < NEGLIGIBLE ? forward : reverse;
+    if ((pReverse < NEGLIGIBLE || pReverse > 1 - NEGLIGIBLE) && decided.bypassGpm > 4 * decided.bypassSigma) {
       const reach = NINETY_PERCENT_Z * decided.bypassSigma;
       out.bypassLoGpm = out.bypassGpm - reach;
       out.bypassHiGpm = out.bypassGpm + reach;
@@ -186,9 +191,9 @@ function combine(reading: SlotReading, pReverse: number, forward: WayState, reve
     out.temperatures[i] = mean(forward.temperatures[i] as number, reverse.temperatures[i] as number, p);
   }
   const gap =
-    p > 1e-6 && p < 1 - 1e-6 ? (forward.temperatures[SS] as number) - (reverse.temperatures[SS] as number) : 0;
-  const forwardVariance = p > 1 - 1e-6 ? 0 : (1 - p) * forward.blendVariance;
-  const reverseVariance = p < 1e-6 ? 0 : p * reverse.blendVariance;
+    p > NEGLIGIBLE && p < 1 - NEGLIGIBLE ? (forward.temperatures[SS] as number) - (reverse.temperatures[SS] as number) : 0;
+  const forwardVariance = p > 1 - NEGLIGIBLE ? 0 : (1 - p) * forward.blendVariance;
+  const reverseVariance = p < NEGLIGIBLE ? 0 : p * reverse.blendVariance;
   out.blendSigma = Math.sqrt(forwardVariance + reverseVariance + p * (1 - p) * gap * gap);
   blank(reading, out);
 }

@@ -335,6 +335,7 @@ function firstGuess(fit: WayFit): number {
   return guess > 0 ? (guess < 1 ? guess : 1) : 0;
 }
 
+const SAME_SHARE = 0.02;
 /** A share this uncertain is not known at all. */
 const NO_SHARE_VARIANCE = 1;
 
@@ -359,10 +360,13 @@ export function fitWay(reading: SlotReading, fit: WayFit, shareScale: number): v
     fit.chiSquare = fit.redundancy = fit.logEvidence = 0;
     return;
   }
-  evaluate(reading, parts, firstGuess(fit), fit);
+  const guess = firstGuess(fit);
+  evaluate(reading, parts, guess, fit);
   if (sums.ss * NO_SHARE_VARIANCE > 1) {
     const once = -sums.as / sums.ss;
-    evaluate(reading, parts, once > 0 ? (once < 1 ? once : 1) : 0, fit);
+    const better = once > 0 ? (once < 1 ? once : 1) : 0;
+    // The covariance changes slowly with the share: near enough is the same.
+    if (Math.abs(better - guess) > SAME_SHARE) evaluate(reading, parts, better, fit);
   }
   const perShare = 1 / shareScale;
   const normalise = perShare > 0 ? Math.log(-Math.expm1(-perShare) * shareScale) : 0;

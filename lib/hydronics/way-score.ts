@@ -20,6 +20,11 @@ export interface PrimaryPlaces {
   zero: number;
 }
 
+function add(out: Float64Array, row: number, column: number, value: number): void {
+  const k = row * TOUCHED + column;
+  out[k] = (out[k] as number) + value;
+}
+
 /**
  * Derivatives of the comparisons with respect to the lasting errors, at a share: rows CONTRASTS, columns the five offsets,
  * then gain and zero of primary, secondary and bypass flow. A sensor that reads high by d is corrected down by d.
@@ -37,31 +42,27 @@ export function errorDerivatives(
   const { pure, mate, far, mix, main, other, sign } = partsOf(fit.way);
   const { rows } = fit;
   out.fill(0);
-  const add = (row: number, column: number, value: number) => {
-    const k = row * TOUCHED + column;
-    out[k] = (out[k] as number) + value;
-  };
   const rest = 1 - share;
   if (rows.mate >= 0) {
-    if (reading.measured[mate]) add(rows.mate, mate, -1);
-    if (reading.measured[pure]) add(rows.mate, pure, 1);
+    if (reading.measured[mate]) add(out, rows.mate, mate, -1);
+    if (reading.measured[pure]) add(out, rows.mate, pure, 1);
   }
   if (rows.mix >= 0) {
-    if (reading.measured[mix]) add(rows.mix, mix, -1);
-    if (reading.measured[far]) add(rows.mix, far, rest);
-    if (reading.measured[pure]) add(rows.mix, pure, share);
+    if (reading.measured[mix]) add(out, rows.mix, mix, -1);
+    if (reading.measured[far]) add(out, rows.mix, far, rest);
+    if (reading.measured[pure]) add(out, rows.mix, pure, share);
   }
   if (rows.pipe >= 0 && share > PIPE_TELLS_SHARE) {
-    add(rows.pipe, TB, -1);
-    if (reading.measured[pure]) add(rows.pipe, pure, 1);
+    add(out, rows.pipe, TB, -1);
+    if (reading.measured[pure]) add(out, rows.pipe, pure, 1);
   }
   // Gains act on the flows as fitted, not as read: else all meters together would be scaled down to shrink what is left over.
   const mainKnown = reading.flows[main] === reading.flows[main];
   const mainGpm = mainKnown ? (reading.flows[main] as number) : (reading.flows[other] as number) / Math.max(0.05, rest);
   const flow = (row: number, index: number, fittedGpm: number, factor: number) => {
-    add(row, 5 + 2 * index, -factor * fittedGpm);
+    add(out, row, 5 + 2 * index, -factor * fittedGpm);
     if (index === FB && reading.bypassUnsigned) return;
-    add(row, 6 + 2 * index, -factor * (index === FP ? designPrimaryGpm : designSecondaryGpm));
+    add(out, row, 6 + 2 * index, -factor * (index === FP ? designPrimaryGpm : designSecondaryGpm));
   };
   if (rows.other >= 0) {
     flow(rows.other, other, rest * mainGpm, 1);

@@ -3,6 +3,7 @@
  *
  *   node --import tsx tests/bench/estimate-year.bench.ts
  */
+import { calibrateRecord } from '../../lib/hydronics/calibrate';
 import { summariseDay } from '../../lib/hydronics/days';
 import { findEpisodes } from '../../lib/hydronics/episodes';
 import { estimateIntervals } from '../../lib/hydronics/estimate';
@@ -81,7 +82,8 @@ function timed<Result>(label: string, work: () => Result): Result {
 const year = yearOfMinutes();
 const starts = Array.from({ length: MINUTES / 60 }, (_, hour) => hour * 3_600_000);
 for (let round = 1; round <= ROUNDS; round += 1) {
-  const estimates = timed(`${round}: ${MINUTES} intervals`, () => estimateIntervals(year, plant));
+  const calibration = timed(`${round}: calibration`, () => calibrateRecord(year, plant));
+  const estimates = timed(`${round}: ${MINUTES} intervals`, () => estimateIntervals(year, plant, calibration));
   const hours = timed(`${round}: ${starts.length} hours`, () =>
     summariseHours(estimates, year, plant, { startMs: 0, stepMinutes: 1 }, starts),
   );
