@@ -114,8 +114,9 @@ type Errors = ReturnType<typeof errorsAt>;
 function readInto(work: CalibrationWork, errors: Errors, bin: number): void {
   const { loop, bins, plant } = work;
   readBin(bins, bin, values);
-  const slotErrors = errorsAtSlot(loop, errors, bins.slots[bin] as number);
-  fillReading(loop, values, slotErrors, errors.noise, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
+  const slot = bins.slots[bin] as number;
+  const slotErrors = errorsAtSlot(loop, errors, slot);
+  fillReading(loop, slot, values, slotErrors, errors.noise, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
 }
 
 /** How likely each way is in each bin, and how far the bin is to be trusted: the E step. */

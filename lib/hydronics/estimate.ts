@@ -65,6 +65,9 @@ function writeSlot(out: Estimates, slot: number, verdict: Verdict, scale: Mixing
   const blendReachF = NINETY_PERCENT_Z * verdict.blendSigma;
   out.direction[slot] = DIRECTIONS.indexOf(verdict.direction);
   out.reason[slot] = REASONS.indexOf(verdict.reason);
+  out.chi_square[slot] = verdict.chiSquare;
+  out.redundancy[slot] = verdict.redundancy;
+  out.at_odds[slot] = verdict.atOdds;
   out.reverse_probability[slot] = verdict.reverseProbability;
   out.bypass_flow_gpm[slot] = verdict.bypassGpm;
   out.bypass_flow_lo_gpm[slot] = verdict.bypassLoGpm;
@@ -146,7 +149,7 @@ export function estimateIntervals(
     const setpointF = at(measurements.supplySetpointF, slot);
     const supply = toMixing(setpointF > 20 && setpointF < 80 ? setpointF : plant.productionSupplyF, scale);
     const slotErrors = errorsAtSlot(loop, errors, slot);
-    fillReading(loop, values, slotErrors, errors.noise, calibration !== undefined, supply, plant.loadDeltaTF, reading);
+    fillReading(loop, slot, values, slotErrors, errors.noise, calibration !== undefined, supply, plant.loadDeltaTF, reading);
     if (weighSlot(plant.arrangement, reading, weighing, verdict)) writeSlot(out, slot, verdict, scale, curves);
     else {
       settleNothing(reading, verdict);

@@ -40,6 +40,8 @@ export interface LoopRecord {
   rated: Uint8Array;
   /** 1 where primary supply is the mix of the running units' leaving sensors. */
   mixed: Uint8Array;
+  /** Opening of a bypass valve, percent; null where nothing tells. */
+  valve: Float64Array | null;
   designPrimaryGpm: number;
   designSecondaryGpm: number;
 }
@@ -242,6 +244,7 @@ export function readLoop(
     ...running,
     rated: primary.rated,
     mixed,
+    valve: measurements.bypassValvePercent ?? null,
     designPrimaryGpm: designPrimaryFlowGpm(plant),
     designSecondaryGpm: plant.distributionPumps.flowGpm,
   };

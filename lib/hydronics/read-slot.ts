@@ -15,6 +15,10 @@ const GUESSED_SUPPLY_SIGMA_F = 3;
 const GUESSED_RETURN_SIGMA_F = 8;
 const UNMEASURED_SIGMA_F = 30;
 
+/** A bypass valve less open than this is shut, and then leaks this share of the main flow (k = 1; common practice). */
+const SHUT_PERCENT = 2;
+const SHUT_SIGMA = 0.01;
+
 /** Values of one slot that may be means over neighbours: order PS PR SS SR TB, FP FS FB, and how many readings each holds. */
 export interface SlotValues {
   values: Float64Array;
@@ -166,13 +170,14 @@ function readCross(flowErrors: SlotErrors, designPrimary: number, designSecondar
 }
 
 /**
- * Fills `out` with one slot's corrected readings and the covariance of their errors.
+ * Fills `out` with slot `index`'s corrected readings and the covariance of their errors.
  *
  * Units   mixing scale, gpm; `setpoint` and `rise` stand in, vaguely, for a supply or return that nothing measures.
  * Gaps    NaN flows stay NaN with whatever covariance; a missing PS, SS or SR gets a vague value, PR and TB stay NaN.
  */
 export function fillReading(
   loop: LoopRecord,
+  index: number,
   slot: SlotValues,
   errors: SlotErrors,
   temperatureNoise: Float64Array,
@@ -186,6 +191,9 @@ export function fillReading(
   // Without a calibration no offset is tied to any meter.
   if (calibrated) readCross(errors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
   out.bypassUnsigned = loop.bypassUnsigned;
+  out.rated = loop.rated[index] === 1;
+  const valve = loop.valve ? (loop.valve[index] as number) : Number.NaN;
+  out.shutSigma = valve < SHUT_PERCENT ? SHUT_SIGMA : Number.NaN;
   // The pipe's own sensor only ever adds a comparison: its readings outside the loop's range are no temperature of it.
   if (!measuredInRange(out)) {
     out.temperatures[TB] = Number.NaN;

@@ -18,6 +18,8 @@ export interface SlotReading {
   /** 5 x 3, F gpm: what a calibration ties together. */
   crossCovariance: Float64Array;
   bypassUnsigned: boolean;
+  /** Primary flow is the rated flow of running pumps. */
+  rated: boolean;
   /** Something outside the balance holds the share at zero within this sigma (a shut bypass valve); NaN: nothing does. */
   shutSigma: number;
 }
@@ -30,5 +32,6 @@ export const emptySlotReading = (): SlotReading => ({
   flowCovariance: new Float64Array(FLOWS * FLOWS),
   crossCovariance: new Float64Array(TEMPERATURES * FLOWS),
   bypassUnsigned: false,
+  rated: false,
   shutSigma: Number.NaN,
 });

@@ -71,11 +71,15 @@ export interface Measurements {
   secondarySupplyF?: Float64Array;
   secondaryReturnF?: Float64Array;
   bypassF?: Float64Array;
+  /** A supply header sensor of which nobody knows the side of the tee: the record places it. */
+  headerSupplyF?: Float64Array;
   primaryFlowGpm?: Float64Array;
   secondaryFlowGpm?: Float64Array;
   /** Signed, positive forward. */
   bypassFlowGpm?: Float64Array;
   bypassFlowUnsignedGpm?: Float64Array;
+  /** Opening of a minimum-flow bypass valve, 0 (shut) to 100. */
+  bypassValvePercent?: Float64Array;
   /** By unit, in unit order; undefined where a unit has no such point. */
   unitStatus: readonly (Float64Array | undefined)[];
   unitFlowGpm: readonly (Float64Array | undefined)[];
@@ -119,8 +123,9 @@ export type Cause = (typeof CAUSES)[number];
 
 /**
  * One value an interval for each channel, all of length n, NaN where unknown.
- * `direction`, `state` and `reason` hold indices into DIRECTIONS, STATES and REASONS; `steady` is 0 or 1.
- * Names are the columns of result_block and of the interval row in the API.
+ * `direction`, `state` and `reason` hold indices into DIRECTIONS, STATES and REASONS; `steady` is 0 or 1. `chi_square` is the
+ * squared disagreement of the measurements with the likelier way, `redundancy` how many comparisons it holds beyond the
+ * unknowns, `at_odds` the index into SENSOR_ROLES of the measurement most at odds (-1: none stands out). The other names are the columns of result_block and of the interval row in the API.
  */
 export const RESULT_CHANNELS = [
   'direction',
@@ -143,6 +148,9 @@ export const RESULT_CHANNELS = [
   'quality',
   'state',
   'reason',
+  'chi_square',
+  'redundancy',
+  'at_odds',
 ] as const;
 export type ResultChannel = (typeof RESULT_CHANNELS)[number];
 export type Estimates = Record<ResultChannel, Float64Array>;
@@ -185,4 +193,4 @@ export interface HourResult {
 }
 
 /** Named by every stored result: raise it when any number of the kernel changes. */
-export const KERNEL_VERSION = '0.1.0';
+export const KERNEL_VERSION = '0.2.0';

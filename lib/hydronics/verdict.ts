@@ -1,3 +1,5 @@
+import { mostAtOdds } from './at-odds';
+import type { BothWays } from './both-ways';
 import { FB, FLOWS, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import { NINETY_PERCENT_Z, normalCdf, normalQuantile } from './normal';
 import type { SlotReading } from './slot-reading';
@@ -37,6 +39,8 @@ export interface Verdict {
   blendSigma: number;
   chiSquare: number;
   redundancy: number;
+  /** Index into SENSOR_ROLES, -1 for none. */
+  atOdds: number;
 }
 
 export const emptyVerdict = (): Verdict => ({
@@ -52,6 +56,7 @@ export const emptyVerdict = (): Verdict => ({
   blendSigma: Number.NaN,
   chiSquare: Number.NaN,
   redundancy: 0,
+  atOdds: -1,
 });
 
 const known = (value: number): boolean => value === value;
@@ -237,6 +242,7 @@ export function settleNothing(reading: SlotReading, out: Verdict): void {
   if (!reading.measured[SS]) out.blendSigma = Number.NaN;
   out.chiSquare = Number.NaN;
   out.redundancy = 0;
+  out.atOdds = -1;
 }
 
 /**
@@ -255,7 +261,7 @@ export function settle(
   reverseFit: WayFit,
   forward: WayState,
   reverse: WayState,
-  bothWays: number,
+  bothWays: BothWays | null,
   out: Verdict,
 ): void {
   const oneWay = arrangement === 'variable-primary';
@@ -263,8 +269,10 @@ export function settle(
   out.reverseProbability = pReverse;
   out.chiSquare = closest.chiSquare;
   out.redundancy = closest.redundancy;
+  out.atOdds = mostAtOdds(reading, closest, reading.rated);
   combine(reading, pReverse, forward, reverse, out);
-  if (bothWays > 0.5) {
+  if (bothWays) {
+    swing(bothWays, reading, out);
     out.direction = 'unknown';
     out.reason = 'both ways within the interval';
     return;
@@ -286,6 +294,20 @@ export function settle(
     out.direction = 'unknown';
     out.reason = known(forwardFit.share) || known(forward.bypassGpm) ? 'too near balance' : 'no data';
   }
+}
+
+/** The net of a pipe that ran both ways, with the blended supply as measured: the mean of what went out. */
+function swing(both: BothWays, reading: SlotReading, out: Verdict): void {
+  out.chiSquare = Number.NaN;
+  out.redundancy = 0;
+  passTemperatures(reading, out);
+  if (!known(both.bypassGpm)) return;
+  const reach = NINETY_PERCENT_Z * both.bypassSigma;
+  out.bypassGpm = both.bypassGpm;
+  out.bypassLoGpm = both.bypassGpm - reach;
+  out.bypassHiGpm = both.bypassGpm + reach;
+  out.reverseProbability = normalCdf(-both.bypassGpm / both.bypassSigma);
+  passFlows(reading, out);
 }
 
 /** The unheld estimate is above zero with the probability that names a direction. */

@@ -336,6 +336,7 @@ function firstGuess(fit: WayFit): number {
 }
 
 const SAME_SHARE = 0.02;
+const HOPELESS_Z = -10;
 /** A share this uncertain is not known at all. */
 const NO_SHARE_VARIANCE = 1;
 
@@ -387,7 +388,10 @@ export function fitWay(reading: SlotReading, fit: WayFit, shareScale: number): v
   const lowZ = peak / sigma;
   const highZ = (1 - peak) / sigma;
   logEvidence += HALF_LOG_TWO_PI + Math.log(sigma) - 0.5 * least - perShare * (share - 0.5 * variance * perShare);
-  if (lowZ < 6 || highZ < 6) {
+  if (lowZ < HOPELESS_Z) {
+    // Leading term of the tail: beyond this the way is ruled out whatever the rest.
+    logEvidence += -0.5 * lowZ * lowZ - Math.log(-lowZ) - HALF_LOG_TWO_PI;
+  } else if (lowZ < 6 || highZ < 6) {
     logEvidence += highZ < 6 && lowZ >= 6 ? logNormalCdf(highZ) : logNormalCdf(lowZ) + (highZ < 6 ? Math.log1p(-tailShare(lowZ, highZ)) : 0);
   }
   const beyond = share < 0 ? share : share > 1 ? share - 1 : 0;
@@ -408,4 +412,26 @@ function flowMeasure(reading: SlotReading, parts: Parts): number {
   const mainGpm = reading.flows[parts.main] as number;
   const otherGpm = reading.flows[parts.other] as number;
   return mainGpm > 0 && otherGpm > 0 ? 0.5 * Math.log(mainGpm / otherGpm) : 0;
+}
+
+/** Least squared disagreement that a way can have, from its two sensors in one stream alone; 0 where there are not two. */
+export function leastDisagreement(reading: SlotReading, way: Way): number {
+  const { pure, mate } = partsOf(way);
+  const { temperatures, measured, temperatureCovariance: v } = reading;
+  if (!measured[pure] || !measured[mate]) return 0;
+  const apart = (temperatures[mate] as number) - (temperatures[pure] as number);
+  const variance =
+    (v[mate * TEMPERATURES + mate] as number) +
+    (v[pure * TEMPERATURES + pure] as number) -
+    2 * (v[mate * TEMPERATURES + pure] as number);
+  return (apart * apart) / (variance > 1e-9 ? variance : 1e-9);
+}
+
+/** Marks a way as ruled out without working it out. */
+export function ruleOut(fit: WayFit, disagreement: number): void {
+  fit.informed = true;
+  fit.share = fit.shareVariance = Number.NaN;
+  fit.chiSquare = disagreement;
+  fit.redundancy = 1;
+  fit.logEvidence = Number.NEGATIVE_INFINITY;
 }

@@ -1,14 +1,23 @@
+import { emptyBothWays, weighBothWays } from './both-ways';
+import type { BothWays } from './both-ways';
 import type { SlotReading } from './slot-reading';
 import type { Arrangement } from './types';
 import { excessDisagreement, settle, stretchOf } from './verdict';
 import type { Verdict } from './verdict';
-import { emptyWayFit, fitWay } from './way-fit';
+import { emptyWayFit, fitWay, leastDisagreement, ruleOut } from './way-fit';
 import type { WayFit } from './way-fit';
 import { emptyWayState, stateOfWay } from './way-state';
 import type { WayState } from './way-state';
 
 /** Odds beyond which the less likely way is not worked out at all. */
 const NEGLIGIBLE_LOG_ODDS = 14;
+
+/** A way whose paired sensors disagree by this much more than all of the other's comparisons is out of the question. */
+const HOPELESS_CHI_SQUARE = 80;
+const HOPELESS_FACTOR = 2;
+
+/** Squared disagreement with the closest way from which a swing within the interval is considered. */
+const ASK_BOTH_CHI_SQUARE = 4;
 
 /** Scratch of the weighing of one slot after another. */
 export interface Weighing {
@@ -20,6 +29,7 @@ export interface Weighing {
   shareScale: number;
   /** Prior probability that the pipe ran both ways within one interval. */
   bothPrior: number;
+  both: BothWays;
 }
 
 export const emptyWeighing = (shareScale: number, stepMinutes: number): Weighing => ({
@@ -29,6 +39,7 @@ export const emptyWeighing = (shareScale: number, stepMinutes: number): Weighing
   reverseState: emptyWayState(),
   shareScale,
   bothPrior: Math.min(0.2, 0.004 * stepMinutes),
+  both: emptyBothWays(),
 });
 
 /**
@@ -38,15 +49,15 @@ export const emptyWeighing = (shareScale: number, stepMinutes: number): Weighing
  */
 export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratch: Weighing, out: Verdict): boolean {
   const { forward, reverse, forwardState, reverseState, shareScale } = scratch;
-  fitWay(reading, forward, shareScale);
   const oneWay = arrangement === 'variable-primary';
   if (oneWay) {
+    fitWay(reading, forward, shareScale);
     if (!forward.informed) return false;
     stateOfWay(reading, forward, stretchOf(forward), shareScale, forwardState);
-    settle(arrangement, reading, 0, forward, forward, forwardState, forwardState, 0, out);
+    settle(arrangement, reading, 0, forward, forward, forwardState, forwardState, null, out);
     return true;
   }
-  fitWay(reading, reverse, shareScale);
+  fitBoth(reading, forward, reverse, shareScale);
   if (!forward.informed && !reverse.informed) return false;
   const closest = excessDisagreement(forward) < excessDisagreement(reverse) ? forward : reverse;
   const stretch = stretchOf(closest);
@@ -55,6 +66,29 @@ export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratc
   const pReverse = 1 / (1 + Math.exp(-logOdds));
   if (logOdds < NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, forward, stretch, shareScale, forwardState);
   if (logOdds > -NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, reverse, stretch, shareScale, reverseState);
-  settle(arrangement, reading, pReverse, forward, reverse, forwardState, reverseState, 0, out);
+  const bothWays = bothProbability(reading, scratch, closest);
+  settle(arrangement, reading, pReverse, forward, reverse, forwardState, reverseState, bothWays > 0.5 ? scratch.both : null, out);
   return true;
+}
+
+/** Probability that the pipe ran both ways within the interval; asked only where one way alone does not explain it. */
+function bothProbability(reading: SlotReading, scratch: Weighing, closest: WayFit): number {
+  if (!(closest.chiSquare > ASK_BOTH_CHI_SQUARE)) return 0;
+  weighBothWays(reading, scratch.both);
+  const high = Math.max(scratch.forward.logEvidence, scratch.reverse.logEvidence);
+  const low = Math.min(scratch.forward.logEvidence, scratch.reverse.logEvidence);
+  const oneWay = high + Math.log1p(Math.exp(low - high)) + Math.log(0.5 * (1 - scratch.bothPrior));
+  return 1 / (1 + Math.exp(oneWay - scratch.both.logEvidence - Math.log(scratch.bothPrior)));
+}
+
+/** Fits the way that the paired sensors favour, and the other unless those alone rule it out. */
+function fitBoth(reading: SlotReading, forward: WayFit, reverse: WayFit, shareScale: number): void {
+  const leastForward = leastDisagreement(reading, 'forward');
+  const leastReverse = leastDisagreement(reading, 'reverse');
+  const first = leastForward <= leastReverse ? forward : reverse;
+  const other = first === forward ? reverse : forward;
+  const least = first === forward ? leastReverse : leastForward;
+  fitWay(reading, first, shareScale);
+  if (first.informed && least > HOPELESS_FACTOR * first.chiSquare + HOPELESS_CHI_SQUARE) ruleOut(other, least);
+  else fitWay(reading, other, shareScale);
 }
