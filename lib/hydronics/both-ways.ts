@@ -1,4 +1,4 @@
-import { FLOWS, FP, FS, PR, PS, SR, SS, TEMPERATURES } from './loop-record';
+import { FB, FLOWS, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import { logNormalCdf } from './normal';
 import type { SlotReading } from './slot-reading';
 
@@ -56,6 +56,8 @@ export function weighBothWays(reading: SlotReading, out: BothWays): void {
   const inside =
     logNormalCdf(back / Math.sqrt(vBack)) + logNormalCdf(ahead / Math.sqrt(vAhead)) - 2 * Math.log(LARGEST_SHARE);
   out.logEvidence = inside - 2 * Math.log(span);
+  // The pipe's own temperature is then a mean over both streams: as likely anywhere between them.
+  if (measured[TB]) out.logEvidence -= Math.log(span);
   const primary = flows[FP] as number;
   const secondary = flows[FS] as number;
   const main = Math.max(primary, secondary);
@@ -72,4 +74,10 @@ export function weighBothWays(reading: SlotReading, out: BothWays): void {
   const share = ofTemperature / variance;
   out.bypassGpm = byTemperature + share * apart;
   out.bypassSigma = Math.sqrt(share * ofFlow);
+  const meter = flows[FB] as number;
+  if (meter !== meter) return;
+  const expected = reading.bypassUnsigned ? (ahead + back) * main : out.bypassGpm;
+  const off = (reading.bypassUnsigned ? Math.abs(meter) : meter) - expected;
+  const doubt = (w[FB * FLOWS + FB] as number) + (reading.bypassUnsigned ? ofTemperature : out.bypassSigma ** 2);
+  out.logEvidence -= 0.5 * ((off * off) / doubt + Math.log(doubt) + LOG_TWO_PI);
 }

@@ -7,7 +7,10 @@ import { choleskyInPlace, choleskyInverse } from './linear-algebra';
 import { minimise } from './least-squares';
 import { FP, FS, PR, PS, readLoop, SR, SS, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
-import { mixingScale } from './mixing-scale';
+import { fromMixing, mixingScale } from './mixing-scale';
+import type { MixingScale } from './mixing-scale';
+import { judgeHeader, placeHeader } from './header-side';
+import type { HeaderStretch } from './header-side';
 import { emptySlotValues, fillReading } from './read-slot';
 import { recordNoise } from './record-noise';
 import type { RecordNoise } from './record-noise';
@@ -344,6 +347,36 @@ export function calibrateRecord(
   spotChecks: readonly SpotCheck[] = [],
 ): Calibration {
   checkLengths(measurements, 'calibrateRecord');
+  const { headerSupplyF, ...known } = measurements;
+  const solved = solve(known, plant, spotChecks);
+  if (!headerSupplyF) return describe(solved, { side: 'absent', primaryProbability: Number.NaN });
+  const header = judgeHeader(measurements, stretchesOf(solved.work), solved.work.shareScale);
+  const placed = placeHeader(measurements, header);
+  const joins = placed.primarySupplyF !== known.primarySupplyF || placed.secondarySupplyF !== known.secondarySupplyF;
+  return describe(joins ? solve(placed, plant, spotChecks) : solved, header);
+}
+
+/** What the bins say of the way, for judging where the header sensor sits. */
+function stretchesOf(work: CalibrationWork): HeaderStretch[] {
+  const { bins } = work;
+  const worth = Math.min(1, bins.hoursEach / HOURS_PER_COMPARISON);
+  return Array.from({ length: bins.count }, (_, bin) => {
+    const [forward, reverse] = [work.forward[bin] as number, work.reverse[bin] as number];
+    const told = forward + reverse > 0 ? reverse / (forward + reverse) : 0.5;
+    return { slot: bins.slots[bin] as number, slots: bins.width, reverse: told, worth };
+  });
+}
+
+interface Solved {
+  work: CalibrationWork;
+  checks: SpotTerm[];
+}
+
+const describe = (solved: Solved, header: Calibration['header']): Calibration =>
+  describeCalibration(solved.work, solved.checks, header);
+
+/** The lasting errors of a record whose sensors all have their place. */
+function solve(measurements: Measurements, plant: PlantModel, spotChecks: readonly SpotCheck[]): Solved {
   const state = new Float64Array(measurements.n);
   const steady = new Float64Array(measurements.n);
   plantStates(measurements, plant, state);
@@ -352,14 +385,13 @@ export function calibrateRecord(
   const loop = readLoop(measurements, plant, scale);
   const bins = calibrationBins(loop, state, steady);
   const prior = priorCovariance(plant, loop.sets.length);
-  const p = parameterCount(loop.sets.length);
   const work: CalibrationWork = {
     loop,
     plant,
     bins,
     seen: recordNoise(loop, steady),
     prior,
-    parameters: new Float64Array(p),
+    parameters: new Float64Array(parameterCount(loop.sets.length)),
     covariance: prior.slice(),
     forward: new Float64Array(bins.count),
     reverse: new Float64Array(bins.count),
@@ -368,18 +400,20 @@ export function calibrateRecord(
     shareScale: 0.3,
     classScale: 1,
   };
-  const checks: SpotTerm[] = spotTerms(spotChecks, loop);
-  if (bins.count >= MIN_BINS) {
-    search(work, checks);
-    for (const left of REFINE) {
-      weighBins(work, left);
-      refit(work, left, checks, 3);
-      rescaleClass(work);
-    }
-    weighBins(work, 0);
-    spreadOfStretches(work, checks);
+  const checks = spotTerms(spotChecks, loop, scale);
+  if (bins.count < MIN_BINS) {
+    if (checks.length > 0) refit(work, 0, checks, 2);
+    return { work, checks };
   }
-  return describeCalibration(work, checks);
+  search(work, checks);
+  for (const left of REFINE) {
+    weighBins(work, left);
+    refit(work, left, checks, 3);
+    rescaleClass(work);
+  }
+  weighBins(work, 0);
+  spreadOfStretches(work, checks);
+  return { work, checks };
 }
 
 /** Starting points: the sensors as they are, meters that disagree either way, supplies and returns that meet at the corner. */
@@ -469,13 +503,14 @@ function search(work: CalibrationWork, checks: readonly SpotTerm[]): void {
 }
 
 /** Spot checks as what they say of one error each. A flow reading says gain; its zero is left to the record. */
-function spotTerms(spotChecks: readonly SpotCheck[], loop: LoopRecord): SpotTerm[] {
+function spotTerms(spotChecks: readonly SpotCheck[], loop: LoopRecord, scale: MixingScale): SpotTerm[] {
   const terms: SpotTerm[] = [];
   for (const check of spotChecks) {
     const temperature = SPOT_TEMPERATURES.indexOf(check.role as (typeof SPOT_TEMPERATURES)[number]);
     const flow = SPOT_FLOWS.indexOf(check.role as (typeof SPOT_FLOWS)[number]);
     const channel = temperature >= 0 ? loop.temperatures[temperature] : flow >= 0 ? loop.flows[flow] : null;
-    const shown = Number.isFinite(check.shown) ? check.shown : (channel?.[check.slot] ?? Number.NaN);
+    const recorded = channel?.[check.slot] ?? Number.NaN;
+    const shown = Number.isFinite(check.shown) ? check.shown : temperature >= 0 ? fromMixing(recorded, scale) : recorded;
     if (!Number.isFinite(shown) || !(check.sigma > 0)) continue;
     if (temperature >= 0) terms.push({ place: temperature, value: shown - check.reading, variance: check.sigma ** 2 });
     else if (flow >= 0 && check.reading > 0) {

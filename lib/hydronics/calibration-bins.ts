@@ -18,8 +18,9 @@ export interface CalibrationBins {
   readings: Float64Array;
   /** Doubt of moving temperatures, F^2, TEMPERATURES a row. */
   moving: Float64Array;
-  /** First slot of the bin. */
+  /** First slot of each bin, and how many it holds. */
   slots: Int32Array;
+  width: number;
   /** Hours of record that one bin stands for. */
   hoursEach: number;
 }
@@ -78,6 +79,7 @@ export function calibrationBins(loop: LoopRecord, state: Float64Array, steady: F
     readings: new Float64Array(count * CHANNELS),
     moving: new Float64Array(count * TEMPERATURES),
     slots: Int32Array.from(kept),
+    width,
     hoursEach: (thin * width * loop.stepMinutes) / 60,
   };
   const channels = [...loop.temperatures, ...loop.flows];
@@ -130,6 +132,7 @@ export function thinBins(bins: CalibrationBins, most: number): CalibrationBins {
     readings: pick(bins.readings, CHANNELS),
     moving: pick(bins.moving, TEMPERATURES),
     slots: Int32Array.from(kept, (bin) => bins.slots[bin] as number),
+    width: bins.width,
     hoursEach: bins.hoursEach * thin,
   };
 }

@@ -43,7 +43,11 @@ function tieOf(place: number, work: CalibrationWork, hours: Hours, told: number)
 }
 
 /** What a calibration says, sensor by sensor, with what no record of its kind can tell. */
-export function describeCalibration(work: CalibrationWork, checks: readonly SpotTerm[]): Calibration {
+export function describeCalibration(
+  work: CalibrationWork,
+  checks: readonly SpotTerm[],
+  header: Calibration['header'],
+): Calibration {
   const { loop, parameters, covariance, prior, seen, bins } = work;
   const p = parameters.length;
   const hours = clearHours(work);
@@ -91,7 +95,7 @@ export function describeCalibration(work: CalibrationWork, checks: readonly Spot
     sets: [...loop.sets],
     noise: [...seen.noise],
     shareScale: work.shareScale,
-    header: { side: 'absent', primaryProbability: Number.NaN },
+    header,
     findings,
     limits: limitsOf(work, hours, checks),
     chiSquare: fitOf(work),

@@ -2,6 +2,7 @@ import { TON_BTU_PER_HOUR } from '../units';
 import type { Calibration } from './calibration-types';
 import { densityFromCurves, enthalpyFromCurves, fluidCurves } from './fluids';
 import type { FluidCurves } from './fluids';
+import { placeHeader } from './header-side';
 import { readLoop } from './loop-record';
 import type { LoopRecord } from './loop-record';
 import { fromMixing, mixingScale, toMixing } from './mixing-scale';
@@ -24,6 +25,7 @@ import { emptyWeighing, weighSlot } from './weigh-slot';
 const OFF = STATES.indexOf('off');
 const UNKNOWN = DIRECTIONS.indexOf('unknown');
 const REASON_OFF = REASONS.indexOf('off');
+const UNPLACED = { side: 'unknown' as const, primaryProbability: Number.NaN };
 const known = (value: number): boolean => value === value;
 
 /** Empty result channels of a record's length: NaN everywhere. */
@@ -121,16 +123,13 @@ function writeOff(out: Estimates, slot: number, loop: LoopRecord, scale: MixingS
  * Throws  RangeError when a channel's length is not n, or a glycol's mass percent is outside 0 to 60.
  * Source  steady balances of mass and energy at both tees; generalized least squares; Bayes' rule.
  */
-export function estimateIntervals(
-  measurements: Measurements,
-  plant: PlantModel,
-  calibration?: Calibration,
-): Estimates {
-  checkLengths(measurements, 'estimateIntervals');
+export function estimateIntervals(record: Measurements, plant: PlantModel, calibration?: Calibration): Estimates {
+  checkLengths(record, 'estimateIntervals');
+  const measurements = placeHeader(record, calibration?.header ?? UNPLACED);
   const out = emptyEstimates(measurements.n);
   plantStates(measurements, plant, out.state);
   markSteady(measurements, plant, out.steady);
-  markQuality(measurements, out.quality);
+  markQuality(record, out.quality);
   const scale = mixingScale(plant.productionSupplyF + plant.loadDeltaTF / 2, plant.fluid);
   const curves = fluidCurves(plant.fluid);
   const loop = readLoop(measurements, plant, scale, calibration?.sets);

@@ -8,6 +8,8 @@ function inputChannels(measurements: Measurements): Float64Array[] {
     measurements.secondarySupplyF,
     measurements.secondaryReturnF,
     measurements.bypassF,
+    measurements.headerSupplyF,
+    measurements.bypassValvePercent,
     measurements.primaryFlowGpm,
     measurements.secondaryFlowGpm,
     measurements.bypassFlowGpm,
