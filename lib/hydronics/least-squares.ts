@@ -42,6 +42,8 @@ export interface Minimum {
 
 /** Damping beyond which the steps are below rounding: nothing nearby is lower. */
 const DAMPING_LIMIT = 1e16;
+/** A fall of the cost by less than this share of it is lost in the rounding of its sum. */
+const ROUNDING = 1e-13;
 /** Where damping starts again after a step that failed undamped. */
 const DAMPING_FLOOR = 1e-9;
 
@@ -149,12 +151,15 @@ export function minimise(
     // A short step under heavy damping says only that longer ones failed.
     converged = damping <= 1 && isSmall(step, at.parameters, stepTolerance);
     if (converged) break;
+    const beyondRounding = !(predicted <= ROUNDING * at.cost);
     let gain = -1;
     if (predicted > 0) {
       for (let i = 0; i < p; i += 1) trial.parameters[i] = (at.parameters[i] as number) + (step[i] as number);
       accumulateAt(trial, accumulate);
       iterations += 1;
-      gain = (at.cost - trial.cost) / predicted;
+      // Near the minimum the cost no longer shows a step's worth; the gradient still does.
+      const flatter = largestCosine(at, p) - largestCosine(trial, p);
+      gain = beyondRounding ? (at.cost - trial.cost) / predicted : flatter > 0 ? 1 : -1;
     }
     // NaN, from a trial where the model does not exist, counts as no gain.
     if (gain > 0 || (options.scoring && Number.isFinite(trial.cost) && predicted > 0)) {
@@ -163,8 +168,7 @@ export function minimise(
       damping *= options.scoring ? 1 : Math.max(1 / 3, 1 - (2 * gain - 1) ** 3);
       growth = 2;
     } else {
-      // The predicted fall is lost in the rounding of the cost: this is the minimum as far as numbers can tell.
-      converged = predicted <= 1e-15 * at.cost;
+      converged = !beyondRounding;
       if (converged) break;
       damping = Math.max(damping, DAMPING_FLOOR) * growth;
       growth *= 2;
