@@ -350,7 +350,9 @@ export function calibrateRecord(
   const { headerSupplyF, ...known } = measurements;
   const solved = solve(known, plant, spotChecks);
   if (!headerSupplyF) return describe(solved, { side: 'absent', primaryProbability: Number.NaN });
-  const header = judgeHeader(measurements, stretchesOf(solved.work), solved.work.shareScale);
+  // Without any flow, nothing but the supplies tells how much crosses over: staying together then says nothing.
+  const sized = solved.work.loop.flows.some((flow) => flow !== null);
+  const header = judgeHeader(measurements, stretchesOf(solved.work), sized ? solved.work.shareScale : 0);
   const placed = placeHeader(measurements, header);
   const joins = placed.primarySupplyF !== known.primarySupplyF || placed.secondarySupplyF !== known.secondarySupplyF;
   return describe(joins ? solve(placed, plant, spotChecks) : solved, header);

@@ -206,13 +206,15 @@ function combine(reading: SlotReading, pReverse: number, forward: WayState, reve
 /** Takes out what only the vague stand-ins said. */
 function blank(reading: SlotReading, out: Verdict): void {
   const { measured } = reading;
-  if (!(out.blendSigma < UNKNOWN_BLEND_SIGMA_F)) {
-    out.temperatures[SS] = Number.NaN;
-    out.blendSigma = Number.NaN;
-  }
   const pReverse = out.reverseProbability;
   const forward = pReverse <= 1 - DECIDED_PROBABILITY;
   const reverse = pReverse >= DECIDED_PROBABILITY;
+  // Without its own sensor the blend is made of measured streams: of the primary supply alone only where nothing comes back.
+  const made = measured[PS] && (forward || measured[SR] || measured[PR]);
+  if (!(measured[SS] || made) || !(out.blendSigma < UNKNOWN_BLEND_SIGMA_F)) {
+    out.temperatures[SS] = Number.NaN;
+    out.blendSigma = Number.NaN;
+  }
   if (!measured[PS] && !(forward && measured[SS])) out.temperatures[PS] = Number.NaN;
   const returnTold = reverse && measured[PR];
   const unmixed = forward && measured[PR] && known(out.bypassGpm) && (measured[PS] || measured[SS]);

@@ -98,7 +98,8 @@ function compare(reading: SlotReading, parts: Parts, fit: WayFit): void {
   const mateF = temperatures[mate] as number;
   const pureF = temperatures[pure] as number;
   const farF = temperatures[far] as number;
-  if (mateF === mateF) {
+  // What leans on vague stand-ins alone says nothing and is left out.
+  if (mateF === mateF && (measured[mate] || measured[pure])) {
     at[count] = mateF - pureF;
     slope[count] = 0;
     rows.mate = count;
@@ -106,7 +107,7 @@ function compare(reading: SlotReading, parts: Parts, fit: WayFit): void {
     if (measured[mate] && measured[pure]) real += 1;
   }
   const mixF = temperatures[mix] as number;
-  if (mixF === mixF) {
+  if (mixF === mixF && (measured[far] || measured[pure])) {
     at[count] = mixF - farF;
     slope[count] = farF - pureF;
     rows.mix = count;

@@ -9,7 +9,7 @@ describe('with the units’ points alone', () => {
   test('running units times rated flow stand in for the primary meter, with a wider sigma', () => {
     const rated = rowOf(recordOf(1, 5, { secondaryFlowGpm: 1200 }, { unitStatus: [1, 0] }));
     const metered = estimateOne({ primaryFlowGpm: 900, secondaryFlowGpm: 1200 });
-    expect(rated.primary_flow_gpm).toBeCloseTo(900, 6);
+    expect(rated.primary_flow_gpm).toBeCloseTo(900, 0);
     expect(rated.direction).toBe('reverse');
     const width = (row: typeof rated) => row.bypass_flow_hi_gpm - row.bypass_flow_lo_gpm;
     expect(width(rated)).toBeGreaterThan(1.5 * width(metered));
@@ -17,7 +17,7 @@ describe('with the units’ points alone', () => {
 
   test('pump status goes before unit status', () => {
     const record = recordOf(1, 5, { secondaryFlowGpm: 1200 }, { unitStatus: [1, 0], primaryPumpStatus: [1, 1] });
-    expect(rowOf(record).primary_flow_gpm).toBeCloseTo(1800, 6);
+    expect(Math.abs(rowOf(record).primary_flow_gpm - 1800)).toBeLessThan(1);
   });
 
   test('a missing status makes the sum missing, never the sum of the rest', () => {
@@ -34,8 +34,8 @@ describe('with the units’ points alone', () => {
       unitEnteringF: [56, 61],
     });
     const row = rowOf(record);
-    expect(row.primary_supply_f).toBe(44);
-    expect(row.primary_return_f).toBe(56);
+    expect(row.primary_supply_f).toBeCloseTo(44, 1);
+    expect(row.primary_return_f).toBeCloseTo(56, 1);
     expect(row.direction).toBe('reverse');
     expect(Math.abs(row.bypass_flow_gpm + 180)).toBeLessThan(3);
   });
@@ -47,7 +47,10 @@ describe('with the units’ points alone', () => {
       unitLeavingF: [44, 56],
       unitEnteringF: [56, 56],
     });
-    expect(rowOf(record).primary_supply_f).toBe(47);
+    // 47 F by the units; the balance, with 46 F sent out at nearly the same flow, pulls it down within its doubt.
+    const row = rowOf(record);
+    expect(row.primary_supply_f).toBeGreaterThan(46);
+    expect(row.primary_supply_f).toBeLessThan(47.1);
   });
 });
 

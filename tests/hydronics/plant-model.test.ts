@@ -45,7 +45,7 @@ describe('plantModelFromSettings', () => {
     expect(model).toMatchObject({ loadTons: 450, primarySpeed: 'constant', energyPerKwh: null, blendedSupplyF: null });
     expect(model.loadDeltaTF).toBeCloseTo(12, 2);
     expect(model.distributionPumps.flowGpm).toBeCloseTo(unit?.flowGpm ?? 0, 0);
-    expect(model.sensors.temperatureSigmaF.secondarySupplyTemp).toBe(0.25);
+    expect(model.sensors.temperatureSigmaF.secondarySupplyTemp).toBe(0.35);
   });
 
   test('lists nothing that was given', () => {

@@ -19,6 +19,13 @@ export const TWO_UNITS: PlantSettingsInput = {
     ],
   },
   tariff: { currency: 'USD', energyPerKwh: 0.14 },
+  sensors: {
+    primarySupplyTemp: { sigmaF: 0.25 },
+    primaryReturnTemp: { sigmaF: 0.25 },
+    secondarySupplyTemp: { sigmaF: 0.25 },
+    secondaryReturnTemp: { sigmaF: 0.25 },
+    bypassTemp: { sigmaF: 0.5 },
+  },
 };
 
 export function plantOf(
