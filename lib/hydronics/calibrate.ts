@@ -17,6 +17,8 @@ import type { RecordNoise } from './record-noise';
 import {
   errorsAtSlot,
   errorsOf,
+  MISFIT_F,
+  MISFIT_FLOW,
   parameterCount,
   PRIMARY_GAIN,
   PRIMARY_ZERO,
@@ -43,9 +45,6 @@ const REFINE = [0.02, 0, 0, 0] as const;
 const SEARCH_BINS = 200;
 /** No bin speaks against a start with more than this (log likelihood): one bad stretch does not choose it. */
 const WORST_BIN = 12;
-/** What the model of two ideal tees leaves out, whatever the number of readings (k = 1): F, and share of flow. */
-const MISFIT_F = 0.04;
-const MISFIT_FLOW = 0.006;
 /** Neighbouring readings err together: a record is worth one independent comparison in this many hours. */
 const HOURS_PER_COMPARISON = 1;
 /** Degrees of freedom of the robust loss: beyond a few sigma a bin says less the further it is off. */
@@ -84,6 +83,8 @@ export interface CalibrationWork {
   shareScale: number;
   /** How far this plant's offsets exceed their class. */
   classScale: number;
+  /** How far this plant departs from two ideal tees, against the usual. */
+  misfitScale: number;
 }
 
 const reading = emptySlotReading();
@@ -104,7 +105,7 @@ function errorsAt(work: CalibrationWork, parameters: Float64Array, left: number)
   for (let i = 0; i < p * p; i += 1) covariance[i] = left * (work.prior[i] as number);
   for (let i = 0; i < p; i += 1) {
     const k = i * p + i;
-    const misfit = misfitOf(i, work.loop.sets.length);
+    const misfit = work.misfitScale * misfitOf(i, work.loop.sets.length);
     covariance[k] = (covariance[k] as number) + misfit * misfit;
   }
   const noise = Array.from(work.seen.noise, (sigma) => (Number.isFinite(sigma) ? sigma : 0));
@@ -119,7 +120,7 @@ function readInto(work: CalibrationWork, errors: Errors, bin: number): void {
   readBin(bins, bin, values);
   const slot = bins.slots[bin] as number;
   const slotErrors = errorsAtSlot(loop, errors, slot);
-  fillReading(loop, slot, values, slotErrors, errors.noise, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
+  fillReading(loop, slot, values, slotErrors, errors, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
 }
 
 /** How likely each way is in each bin, and how far the bin is to be trusted: the E step. */
@@ -279,6 +280,30 @@ function rescaleClass(work: CalibrationWork): void {
 }
 
 /**
+ * How far this plant departs from two ideal tees: its stretches' squared disagreement against what chance makes of their
+ * redundancy, by the upper part of the distribution, where a loop that is less than ideal shows.
+ */
+function rescaleMisfit(work: CalibrationWork): void {
+  const ratios = new Float64Array(work.bins.count);
+  let count = 0;
+  for (let bin = 0; bin < work.bins.count; bin += 1) {
+    const freedom = work.redundancy[bin] as number;
+    if (freedom < 1) continue;
+    ratios[count] = (work.chiSquare[bin] as number) / upperChiSquare(freedom);
+    count += 1;
+  }
+  if (count < MIN_BINS) return;
+  const sorted = ratios.subarray(0, count).sort();
+  const ratio = sorted[Math.floor(MISFIT_QUANTILE * count)] as number;
+  work.misfitScale = Math.min(MAX_MISFIT, Math.max(1, work.misfitScale * Math.sqrt(ratio)));
+}
+const MISFIT_QUANTILE = 0.8;
+const MAX_MISFIT = 8;
+/** Source: E. Wilson, M. Hilferty, Proc. Nat. Acad. Sci. 17 (1931) 684; 0.8416 is the 0.8 point of the standard normal. */
+const upperChiSquare = (freedom: number): number =>
+  freedom * (1 - 2 / (9 * freedom) + 0.8416 * Math.sqrt(2 / (9 * freedom))) ** 3;
+
+/**
  * Covariance of the errors with what the model leaves out: neighbouring bins err together, so the information of a record is
  * judged by how its stretches of a few hours disagree (clustered scores), never by the number of readings alone.
  */
@@ -319,7 +344,7 @@ function spreadOfStretches(work: CalibrationWork, checks: readonly SpotTerm[]): 
   work.covariance.set(invert(full, p));
   for (let i = 0; i < p; i += 1) {
     const k = i * p + i;
-    const misfit = misfitOf(i, work.loop.sets.length);
+    const misfit = work.misfitScale * misfitOf(i, work.loop.sets.length);
     work.covariance[k] = (work.covariance[k] as number) + misfit * misfit;
   }
 }
@@ -401,6 +426,7 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
     redundancy: new Float64Array(bins.count),
     shareScale: 0.3,
     classScale: 1,
+    misfitScale: 1,
   };
   const checks = spotTerms(spotChecks, loop, scale);
   if (bins.count < MIN_BINS) {
@@ -412,6 +438,7 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
     weighBins(work, left);
     refit(work, left, checks, 3);
     rescaleClass(work);
+    rescaleMisfit(work);
   }
   weighBins(work, 0);
   spreadOfStretches(work, checks);

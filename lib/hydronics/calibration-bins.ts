@@ -48,16 +48,26 @@ function usualSupply(loop: LoopRecord, state: Float64Array): number {
   return count > 0 ? (seen.subarray(0, count).sort()[count >> 2] as number) : Number.NaN;
 }
 
-/** Where a bin may lie: its slots run steadily from the same source of flow, with water moving that is cooled just now. */
-function usable(loop: LoopRecord, state: Float64Array, steady: Float64Array, usual: number, from: number, to: number): boolean {
+/** Share of a bin's slots that must run steadily. */
+const STEADY_SHARE = 0.6;
+
+/** A slot that enters: it runs steadily, with water moving that is cooled just now. */
+function enters(loop: LoopRecord, state: Float64Array, steady: Float64Array, usual: number, slot: number): boolean {
+  if (state[slot] !== RUNNING || steady[slot] !== 1) return false;
   const supply = loop.temperatures[PS] ?? loop.temperatures[SS];
   const secondary = loop.flows[FS];
+  if (secondary && (secondary[slot] as number) < NO_FLOW_SHARE * loop.designSecondaryGpm) return false;
+  return !(supply && (supply[slot] as number) > usual + WARM_SUPPLY_F);
+}
+
+/** Where a bin may lie: one running set, and enough slots that enter (marked in `entering`). */
+function usable(loop: LoopRecord, entering: Uint8Array, from: number, to: number): boolean {
+  let count = 0;
   for (let slot = from; slot < to; slot += 1) {
-    if (state[slot] !== RUNNING || steady[slot] !== 1 || loop.set[slot] !== loop.set[from]) return false;
-    if (secondary && (secondary[slot] as number) < NO_FLOW_SHARE * loop.designSecondaryGpm) return false;
-    if (supply && (supply[slot] as number) > usual + WARM_SUPPLY_F) return false;
+    if (loop.set[slot] !== loop.set[from]) return false;
+    count += entering[slot] as number;
   }
-  return true;
+  return count >= STEADY_SHARE * (to - from);
 }
 
 /**
@@ -68,8 +78,10 @@ function usable(loop: LoopRecord, state: Float64Array, steady: Float64Array, usu
 export function calibrationBins(loop: LoopRecord, state: Float64Array, steady: Float64Array): CalibrationBins {
   const width = Math.max(1, Math.round(BIN_MINUTES / loop.stepMinutes));
   const usual = usualSupply(loop, state);
+  const entering = new Uint8Array(loop.n);
+  for (let slot = 0; slot < loop.n; slot += 1) entering[slot] = enters(loop, state, steady, usual, slot) ? 1 : 0;
   const starts: number[] = [];
-  for (let from = 0; from + width <= loop.n; from += width) if (usable(loop, state, steady, usual, from, from + width)) starts.push(from);
+  for (let from = 0; from + width <= loop.n; from += width) if (usable(loop, entering, from, from + width)) starts.push(from);
   const thin = Math.max(1, Math.ceil(starts.length / MAX_BINS));
   const kept = starts.filter((_, index) => index % thin === 0);
   const count = kept.length;
@@ -90,7 +102,7 @@ export function calibrationBins(loop: LoopRecord, state: Float64Array, steady: F
       if (channel) {
         for (let slot = from; slot < from + width; slot += 1) {
           const value = channel[slot] as number;
-          if (value === value) {
+          if (value === value && entering[slot] === 1) {
             sum += value;
             readings += 1;
           }

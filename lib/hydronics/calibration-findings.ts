@@ -1,3 +1,4 @@
+import { MISFIT_F, MISFIT_FLOW } from './sensor-errors';
 import type { CalibrationWork, SpotTerm } from './calibrate';
 import type { Calibration, CalibrationLimit, SensorFinding, SensorRole, SensorTie } from './calibration-types';
 import { FB, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
@@ -95,6 +96,7 @@ export function describeCalibration(
     sets: [...loop.sets],
     noise: [...seen.noise],
     shareScale: work.shareScale,
+    misfit: { temperatureF: MISFIT_F * work.misfitScale, flowShare: MISFIT_FLOW * work.misfitScale },
     header,
     findings,
     limits: limitsOf(work, hours, checks),

@@ -148,7 +148,7 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
     const setpointF = at(measurements.supplySetpointF, slot);
     const supply = toMixing(setpointF > 20 && setpointF < 80 ? setpointF : plant.productionSupplyF, scale);
     const slotErrors = errorsAtSlot(loop, errors, slot);
-    fillReading(loop, slot, values, slotErrors, errors.noise, calibration !== undefined, supply, plant.loadDeltaTF, reading);
+    fillReading(loop, slot, values, slotErrors, errors, calibration !== undefined, supply, plant.loadDeltaTF, reading);
     if (weighSlot(plant.arrangement, reading, weighing, verdict)) writeSlot(out, slot, verdict, scale, curves);
     else {
       settleNothing(reading, verdict);

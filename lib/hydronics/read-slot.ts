@@ -1,6 +1,6 @@
 import { FB, FLOWS, FP, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
-import type { SlotErrors } from './sensor-errors';
+import type { SensorErrors, SlotErrors } from './sensor-errors';
 import type { SlotReading } from './slot-reading';
 
 /**
@@ -64,9 +64,10 @@ export function readValues(loop: LoopRecord, slot: number, out: SlotValues): voi
   }
 }
 
-function readTemperatures(slot: SlotValues, errors: SlotErrors, temperatureNoise: Float64Array, setpoint: number, rise: number, out: SlotReading): void {
+function readTemperatures(slot: SlotValues, errors: SlotErrors, all: SensorErrors, setpoint: number, rise: number, out: SlotReading): void {
   const { temperatures, measured, temperatureCovariance } = out;
   const lasting = errors.offsetOffset;
+  const misfit = all.misfitF * all.misfitF;
   // A plain loop: set() on so few numbers costs more than the numbers.
   for (let k = 0; k < TEMPERATURES * TEMPERATURES; k += 1) temperatureCovariance[k] = lasting[k] as number;
   for (let i = 0; i < TEMPERATURES; i += 1) {
@@ -75,19 +76,19 @@ function readTemperatures(slot: SlotValues, errors: SlotErrors, temperatureNoise
     temperatures[i] = corrected;
     measured[i] = there ? 1 : 0;
     if (!there) continue;
-    const noise = temperatureNoise[i] as number;
+    const noise = all.noise[i] as number;
     const k = i * TEMPERATURES + i;
     const base = slot.leanOn[i] as number;
     let variance = (noise * noise) / (slot.counts[i] as number);
     if (base >= 0) {
-      const baseNoise = temperatureNoise[base] as number;
+      const baseNoise = all.noise[base] as number;
       const shared = (baseNoise * baseNoise) / (slot.counts[base] as number);
       variance = shared + (slot.leanVariance[i] as number);
       share(temperatureCovariance, i, base, shared);
       // Two that lean on one base share its noise with each other too.
       for (let j = 0; j < i; j += 1) if (slot.leanOn[j] === base) share(temperatureCovariance, i, j, shared);
     }
-    temperatureCovariance[k] = (temperatureCovariance[k] as number) + variance + (slot.moving[i] as number);
+    temperatureCovariance[k] = (temperatureCovariance[k] as number) + variance + (slot.moving[i] as number) + misfit;
   }
   if (!measured[PS]) guess(out, PS, setpoint, GUESSED_SUPPLY_SIGMA_F);
   if (!measured[SR]) guess(out, SR, measured[PR] ? (temperatures[PR] as number) : setpoint + rise, GUESSED_RETURN_SIGMA_F);
@@ -111,7 +112,7 @@ function guess(out: SlotReading, i: number, value: number, sigmaF: number): void
   out.temperatureCovariance[i * TEMPERATURES + i] = sigmaF * sigmaF;
 }
 
-function readFlows(slot: SlotValues, flowErrors: SlotErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {
+function readFlows(slot: SlotValues, flowErrors: SlotErrors, misfit: number, designPrimary: number, designSecondary: number, out: SlotReading): void {
   const { flows, flowCovariance: w } = out;
   const { gain, zero, gainGain, gainZero, zeroZero, noise } = flowErrors;
   for (let i = 0; i < FLOWS; i += 1) {
@@ -135,6 +136,7 @@ function readFlows(slot: SlotValues, flowErrors: SlotErrors, designPrimary: numb
         fj * di * (gainZero[ji] as number) +
         di * dj * (zeroZero[ij] as number);
       value += fi * fj * flowNoise(slot, noise, i, j);
+      if (i === j) value += fi * fi * misfit * misfit;
       if (i === j && (slot.leanOn[TEMPERATURES + i] as number) >= 0) value += slot.leanVariance[TEMPERATURES + i] as number;
       w[ij] = value;
       w[ji] = value;
@@ -180,14 +182,14 @@ export function fillReading(
   index: number,
   slot: SlotValues,
   errors: SlotErrors,
-  temperatureNoise: Float64Array,
+  all: SensorErrors,
   calibrated: boolean,
   setpoint: number,
   rise: number,
   out: SlotReading,
 ): void {
-  readTemperatures(slot, errors, temperatureNoise, setpoint, rise, out);
-  readFlows(slot, errors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
+  readTemperatures(slot, errors, all, setpoint, rise, out);
+  readFlows(slot, errors, all.misfitShare, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
   // Without a calibration no offset is tied to any meter.
   if (calibrated) readCross(errors, loop.designPrimaryGpm, loop.designSecondaryGpm, out);
   out.bypassUnsigned = loop.bypassUnsigned;

@@ -27,6 +27,9 @@ const BYPASS_ZERO_SHARE = 0.01;
 const SHARED_MIX_VARIANCE = 0.3;
 /** Of the variance of a rated flow, what all running sets share (common practice: one duty point, one system curve). */
 const SHARED_RATED_VARIANCE = 0.7;
+/** What the model of two ideal tees leaves out, whatever the number of readings (k = 1): F, and share of flow. */
+export const MISFIT_F = 0.04;
+export const MISFIT_FLOW = 0.006;
 /** Noise of one interval where the record has not shown it: a rated flow moves with the system (common practice). */
 export const RATED_FLOW_NOISE = 0.015;
 
@@ -53,6 +56,9 @@ export interface SensorErrors {
   /** Noise of one interval, F; of the meters, share of reading. */
   noise: Float64Array;
   flowNoise: Float64Array;
+  /** What departs from two ideal tees in each interval, however many readings are averaged: F, share of flow (k = 1). */
+  misfitF: number;
+  misfitShare: number;
   /** Meters and own sensors throughout. */
   own: SlotErrors;
   /** By running set: with rated flow, with mixed supply, with both. */
@@ -140,6 +146,8 @@ export function errorsOf(
   return {
     noise: Float64Array.from(noise.slice(0, TEMPERATURES)),
     flowNoise: Float64Array.from(meters),
+    misfitF: 0,
+    misfitShare: 0,
     own: pick(OFFSETS, PRIMARY_GAIN, PRIMARY_ZERO, meters),
     rated: sets.map((_, k) => pick(OFFSETS, SET_GAINS + k, -1, rated)),
     mixed: sets.map((_, k) => pick(setOffset(sets.length, k), PRIMARY_GAIN, PRIMARY_ZERO, meters)),
@@ -166,5 +174,8 @@ export function errorsOfClass(plant: PlantModel, sets: readonly number[]): Senso
 /** What a calibration says. Noise that the record did not show counts as none: the lasting doubt covers it. */
 export function errorsOfCalibration(calibration: Calibration): SensorErrors {
   const noise = calibration.noise.map((sigma) => (Number.isFinite(sigma) ? sigma : 0));
-  return errorsOf(calibration.values, calibration.covariance, calibration.sets, noise);
+  const errors = errorsOf(calibration.values, calibration.covariance, calibration.sets, noise);
+  errors.misfitF = calibration.misfit.temperatureF;
+  errors.misfitShare = calibration.misfit.flowShare;
+  return errors;
 }

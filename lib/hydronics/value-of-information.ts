@@ -133,7 +133,7 @@ export function furtherSensors(record: Measurements, plant: PlantModel, calibrat
     for (const slot of tried) {
       average(slot, values);
       const slotErrors = errorsAtSlot(loop, errors, slot);
-      fillReading(loop, slot, values, slotErrors, errors.noise, true, plant.productionSupplyF, plant.loadDeltaTF, reading);
+      fillReading(loop, slot, values, slotErrors, errors, true, plant.productionSupplyF, plant.loadDeltaTF, reading);
       if (!weighSlot(plant.arrangement, reading, weighing, verdict)) {
         sum.unknown += 1;
         continue;
