@@ -1,6 +1,6 @@
 import { TON_BTU_PER_HOUR } from '../units';
 import type { Calibration } from './calibration-types';
-import { densityFromCurves, enthalpyFromCurves, fluidCurves } from './fluids';
+import { densityFromCurves, fluidCurves, specificHeatFromCurves } from './fluids';
 import type { FluidCurves } from './fluids';
 import { placeHeader } from './header-side';
 import { readLoop } from './loop-record';
@@ -25,6 +25,10 @@ import { emptyWeighing, weighSlot } from './weigh-slot';
 const OFF = STATES.indexOf('off');
 const UNKNOWN = DIRECTIONS.indexOf('unknown');
 const REASON_OFF = REASONS.indexOf('off');
+const codes = <Word extends string>(words: readonly Word[]) =>
+  Object.fromEntries(words.map((word, code) => [word, code])) as Record<Word, number>;
+const DIRECTION_CODE = codes(DIRECTIONS);
+const REASON_CODE = codes(REASONS);
 const UNPLACED = { side: 'unknown' as const, primaryProbability: Number.NaN };
 const known = (value: number): boolean => value === value;
 
@@ -49,24 +53,45 @@ export function checkLengths(measurements: Measurements, caller: string): void {
   }
 }
 
-/** Cooling of a flow between two temperatures, its meter at the first. */
-const tons = (flowGpm: number, supplyF: number, returnF: number, curves: FluidCurves): number =>
-  (60 *
-    densityFromCurves(supplyF, curves) *
-    flowGpm *
-    (enthalpyFromCurves(returnF, curves) - enthalpyFromCurves(supplyF, curves))) /
-  TON_BTU_PER_HOUR;
+/** Turns flow and rise on the mixing scale into tons: the heat factor at the base, bent by density at the meter. */
+interface HeatScale {
+  tonsPerGpmF: number;
+  baseF: number;
+  /** Relative slope and curvature of density, 1/F and 1/F^2. */
+  slope: number;
+  bend: number;
+}
+
+function heatScale(scale: MixingScale, curves: FluidCurves): HeatScale {
+  const { baseF } = scale;
+  const reachF = 8;
+  const density = densityFromCurves(baseF, curves);
+  const above = densityFromCurves(baseF + reachF, curves) / density;
+  const below = densityFromCurves(baseF - reachF, curves) / density;
+  return {
+    tonsPerGpmF: (60 * density * specificHeatFromCurves(baseF, curves)) / TON_BTU_PER_HOUR,
+    baseF,
+    slope: (above - below) / (2 * reachF),
+    bend: (above - 2 + below) / (2 * reachF * reachF),
+  };
+}
+
+/** Cooling of a flow between two temperatures of the mixing scale, its meter at the first. */
+function tons(flowGpm: number, supply: number, back: number, heat: HeatScale): number {
+  const away = supply - heat.baseF;
+  return heat.tonsPerGpmF * (1 + away * (heat.slope + heat.bend * away)) * flowGpm * (back - supply);
+}
 
 /** Writes one slot's verdict and the temperatures and loads that follow from it. */
-function writeSlot(out: Estimates, slot: number, verdict: Verdict, scale: MixingScale, curves: FluidCurves): void {
+function writeSlot(out: Estimates, slot: number, verdict: Verdict, scale: MixingScale, heat: HeatScale): void {
   const t = verdict.temperatures;
   const primarySupplyF = fromMixing(t[0] as number, scale);
   const primaryReturnF = fromMixing(t[1] as number, scale);
   const blendF = fromMixing(t[2] as number, scale);
   const secondaryReturnF = fromMixing(t[3] as number, scale);
   const blendReachF = NINETY_PERCENT_Z * verdict.blendSigma;
-  out.direction[slot] = DIRECTIONS.indexOf(verdict.direction);
-  out.reason[slot] = REASONS.indexOf(verdict.reason);
+  out.direction[slot] = DIRECTION_CODE[verdict.direction];
+  out.reason[slot] = REASON_CODE[verdict.reason];
   out.chi_square[slot] = verdict.chiSquare;
   out.redundancy[slot] = verdict.redundancy;
   out.at_odds[slot] = verdict.atOdds;
@@ -84,11 +109,11 @@ function writeSlot(out: Estimates, slot: number, verdict: Verdict, scale: Mixing
   out.secondary_return_f[slot] = secondaryReturnF;
   out.load_delta_t_f[slot] = secondaryReturnF - blendF;
   out.production_delta_t_f[slot] = primaryReturnF - primarySupplyF;
-  const bySecondary = tons(verdict.secondaryFlowGpm, blendF, secondaryReturnF, curves);
+  const bySecondary = tons(verdict.secondaryFlowGpm, t[2] as number, t[3] as number, heat);
   // Load equals production over the whole decoupler, whichever way the common pipe runs.
   out.load_tons[slot] = known(bySecondary)
     ? bySecondary
-    : tons(verdict.primaryFlowGpm, primarySupplyF, primaryReturnF, curves);
+    : tons(verdict.primaryFlowGpm, t[0] as number, t[1] as number, heat);
 }
 
 /** An idle plant: what is measured is passed on, nothing is concluded from standing water. */
@@ -131,7 +156,7 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
   markSteady(measurements, plant, out.steady);
   markQuality(record, out.quality);
   const scale = mixingScale(plant.productionSupplyF + plant.loadDeltaTF / 2, plant.fluid);
-  const curves = fluidCurves(plant.fluid);
+  const heat = heatScale(scale, fluidCurves(plant.fluid));
   const loop = readLoop(measurements, plant, scale, calibration?.sets);
   const errors = calibration ? errorsOfCalibration(calibration) : errorsOfClass(plant, loop.sets);
   const average = slotAverager(loop, errors, out.state);
@@ -149,10 +174,10 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
     const supply = toMixing(setpointF > 20 && setpointF < 80 ? setpointF : plant.productionSupplyF, scale);
     const slotErrors = errorsAtSlot(loop, errors, slot);
     fillReading(loop, slot, values, slotErrors, errors, calibration !== undefined, supply, plant.loadDeltaTF, reading);
-    if (weighSlot(plant.arrangement, reading, weighing, verdict)) writeSlot(out, slot, verdict, scale, curves);
+    if (weighSlot(plant.arrangement, reading, weighing, verdict)) writeSlot(out, slot, verdict, scale, heat);
     else {
       settleNothing(reading, verdict);
-      writeSlot(out, slot, verdict, scale, curves);
+      writeSlot(out, slot, verdict, scale, heat);
     }
   }
   return out;

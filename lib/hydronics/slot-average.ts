@@ -1,4 +1,4 @@
-import { FLOWS, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
+import { FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
 import { readValues } from './read-slot';
 import type { SlotValues } from './read-slot';
@@ -15,7 +15,6 @@ const JOIN_SIGMAS = 2;
 const PROPORTION_JOIN_SIGMAS = 1.7;
 /** Proportions between temperatures are formed where supply and return are this many sigmas apart. */
 const LEAST_SPAN_SIGMAS = 8;
-const CHANNELS = TEMPERATURES + FLOWS;
 
 /** Reads one slot's values, averaged with neighbours where the record shows that nothing moves. */
 export type SlotAverager = (slot: number, out: SlotValues) => void;
@@ -69,7 +68,7 @@ function halfWidths(stepMinutes: number, reachMinutes: number): number[] {
 }
 
 /** Widest half-width about a slot whose rings all join, over the series that have a value there; 0 for none. */
-function joinedWidth(series: readonly (Sums | null)[], widths: readonly number[],
+function joinedWidth(series: readonly Sums[], widths: readonly number[],
   changes: Int32Array,
   sigmas: number,
   slot: number,
@@ -81,8 +80,8 @@ function joinedWidth(series: readonly (Sums | null)[], widths: readonly number[]
     if (slot < width || slot + width >= n) break;
     if (changes[slot + width + 1] !== changes[slot - width + 1]) break;
     for (let i = 0; i < series.length; i += 1) {
-      const sums = series[i];
-      if (!sums || !((sums.channel[slot] as number) < Infinity)) continue;
+      const sums = series[i] as Sums;
+      if (!((sums.channel[slot] as number) < Infinity)) continue;
       if (!ringJoins(sums, slot, joined, width, sigmas)) return joined;
     }
     joined = width;
@@ -178,29 +177,33 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
   const seen = errors.noise.some((sigma) => sigma > 0);
   if (!seen) return (slot, out) => readValues(loop, slot, out);
   const { flowNoise } = errors;
-  const sums = [...loop.temperatures, ...loop.flows].map((channel, i) => {
-    if (!channel) return null;
-    const sigma = i < TEMPERATURES ? (errors.noise[i] as number) : (flowNoise[i - TEMPERATURES] as number);
-    return i < TEMPERATURES ? runningSums(channel, sigma, 0, null) : runningSums(channel, 0, sigma, null);
-  });
   const changes = runningChanges(loop, state);
   const leaning = proportions(loop, errors.noise, flowNoise);
   const leaningSums = leaning.map((each) => each.sums);
+  // What leans on another reading has its own, wider window.
+  const own: { index: number; sums: Sums }[] = [];
+  [...loop.temperatures, ...loop.flows].forEach((channel, index) => {
+    if (!channel || leaning.some((each) => each.target === index)) return;
+    const sigma = index < TEMPERATURES ? (errors.noise[index] as number) : (flowNoise[index - TEMPERATURES] as number);
+    const sums = index < TEMPERATURES ? runningSums(channel, sigma, 0, null) : runningSums(channel, 0, sigma, null);
+    own.push({ index, sums });
+  });
+  const ownSums = own.map((each) => each.sums);
   const wide = halfWidths(loop.stepMinutes, PROPORTION_REACH_MINUTES);
   return (slot, out) => {
     readValues(loop, slot, out);
-    const joined = joinedWidth(sums, widths, changes, JOIN_SIGMAS, slot);
+    const joined = joinedWidth(ownSums, widths, changes, JOIN_SIGMAS, slot);
     if (joined > 0) {
-      for (let i = 0; i < CHANNELS; i += 1) {
-        const series = sums[i];
-        if (!series || !((series.channel[slot] as number) < Infinity)) continue;
-        const count = (series.count[slot + joined + 1] as number) - (series.count[slot - joined] as number);
-        out.values[i] = ((series.value[slot + joined + 1] as number) - (series.value[slot - joined] as number)) / count;
-        out.counts[i] = count;
+      for (let i = 0; i < own.length; i += 1) {
+        const { index, sums } = own[i] as (typeof own)[number];
+        if (!((sums.channel[slot] as number) < Infinity)) continue;
+        const count = (sums.count[slot + joined + 1] as number) - (sums.count[slot - joined] as number);
+        out.values[index] = ((sums.value[slot + joined + 1] as number) - (sums.value[slot - joined] as number)) / count;
+        out.counts[index] = count;
       }
     }
     const leant = joinedWidth(leaningSums, wide, changes, PROPORTION_JOIN_SIGMAS, slot);
-    if (leant > joined) lean(leaning, slot, leant, out);
+    if (leant > 0) lean(leaning, slot, leant, out);
   };
 }
 

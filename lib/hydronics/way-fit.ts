@@ -337,7 +337,7 @@ function firstGuess(fit: WayFit): number {
 }
 
 const SAME_SHARE = 0.02;
-const HOPELESS_Z = -10;
+const HOPELESS_Z = -5;
 /** A share this uncertain is not known at all. */
 const NO_SHARE_VARIANCE = 1;
 

@@ -102,19 +102,21 @@ function leverOfFlow(reading: SlotReading, parts: Parts, fit: WayFit, flow: numb
 
 const target = { value: Number.NaN, variance: Number.NaN, withShare: Number.NaN };
 
-/** Reconciles one reading from its lever in `work`: value, variance, covariance of its error with the share's. */
-function reconcileOne(fit: WayFit, reading: number, variance: number): void {
-  const count = fit.count;
+/** Reconciles one reading from its lever in `work`: what the comparisons say of its error is taken off. */
+function reconciled(fit: WayFit, reading: number): number {
   let shift = 0;
+  for (let row = 0; row < fit.count; row += 1) shift += (work[row] as number) * (pull[row] as number);
+  return reading - shift;
+}
+
+/** The same with its variance and the covariance of its error with the share's; overwrites `work`. */
+function reconcileWithDoubt(fit: WayFit, reading: number, variance: number): void {
+  target.value = reconciled(fit, reading);
+  const { lower, pivots, count } = fit;
   let leant = 0;
-  for (let row = 0; row < count; row += 1) {
-    const lever = work[row] as number;
-    shift += lever * (pull[row] as number);
-    leant += lever * (lean[row] as number);
-  }
+  for (let row = 0; row < count; row += 1) leant += (work[row] as number) * (lean[row] as number);
   // work becomes the whitened lever: its square is what the comparisons take off the variance.
   let told = 0;
-  const { lower, pivots } = fit;
   for (let row = 0; row < count; row += 1) {
     let sum = work[row] as number;
     for (let k = 0; k < row; k += 1) sum -= (lower[row * CONTRASTS + k] as number) * (work[k] as number);
@@ -122,7 +124,6 @@ function reconcileOne(fit: WayFit, reading: number, variance: number): void {
     told += (sum * sum) / (pivots[row] as number);
   }
   const shareVariance = fit.shareVariance === fit.shareVariance ? fit.shareVariance : 0;
-  target.value = reading - shift;
   target.variance = Math.max(0, variance - told + leant * leant * shareVariance);
   target.withShare = -leant * shareVariance;
 }
@@ -138,7 +139,7 @@ function settleBypass(reading: SlotReading, parts: Parts, fit: WayFit, out: WayS
   if (mainKnown || (otherKnown && share === share && share < 0.95)) {
     const flow = mainKnown ? main : other;
     leverOfFlow(reading, parts, fit, flow);
-    reconcileOne(fit, flows[flow] as number, flowCovariance[flow * FLOWS + flow] as number);
+    reconcileWithDoubt(fit, flows[flow] as number, flowCovariance[flow * FLOWS + flow] as number);
     let mainGpm = target.value > 0 ? target.value : 0;
     let mainVariance = target.variance;
     let withShare = target.withShare;
@@ -199,9 +200,13 @@ export function stateOfWay(reading: SlotReading, fit: WayFit, stretch: number, s
       continue;
     }
     leverOfTemperature(reading, parts, fit, temperature);
-    reconcileOne(fit, value, temperatureCovariance[temperature * TEMPERATURES + temperature] as number);
+    if (temperature !== SS) {
+      out.temperatures[temperature] = reconciled(fit, value);
+      continue;
+    }
+    reconcileWithDoubt(fit, value, temperatureCovariance[temperature * TEMPERATURES + temperature] as number);
     out.temperatures[temperature] = target.value;
-    if (temperature === SS) out.blendVariance = target.variance * stretch;
+    out.blendVariance = target.variance * stretch;
   }
   fillUnmeasured(measured, parts, share, out);
 
