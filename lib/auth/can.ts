@@ -10,6 +10,7 @@ export const ACTIONS = [
   'mapping.confirm',
   'upload.remove',
   'analysis.start',
+  'spot-check.manage',
   'alert.manage',
   'alert.run',
   'episode.acknowledge',

@@ -13,7 +13,19 @@ interface SiForm {
 }
 
 /** Names whose F is a difference of temperatures or an uncertainty: no 32 is taken off. In camelCase. */
-const DIFFERENCES = new Set(['sigmaF', 'tempPlusMinusF', 'loadF', 'blendF', 'dilutionF', 'productionF']);
+const DIFFERENCES = new Set([
+  'sigmaF',
+  'priorSigmaF',
+  'noiseF',
+  'incrementF',
+  'offsetLoF',
+  'offsetHiF',
+  'tempPlusMinusF',
+  'loadF',
+  'blendF',
+  'dilutionF',
+  'productionF',
+]);
 /** Words before a closing F that make it a difference wherever they stand: deltaTF, offsetF, plusMinusF, warmerByF. */
 const DIFFERENCE_WORDS = /(deltaT|offset|Offset|plusMinus|PlusMinus|By|drift|Drift|error|Error|change|Change)F$/;
 

@@ -13,8 +13,11 @@ import { DAY_MS } from './local-time';
 import { apiInstant, type PeriodMs } from './period';
 import { resultSlices, slotsInside } from './result-slices';
 
+/** What tells how well an interval's measurements fit together is told hour by hour, not in the interval rows of the contract. */
+const FIT_CHANNELS: readonly string[] = ['chi_square', 'redundancy', 'at_odds'];
+const INTERVAL_CHANNELS = RESULT_CHANNELS.filter((channel) => !FIT_CHANNELS.includes(channel));
 /** The columns of the CSV, in the contract's order. */
-export const INTERVAL_COLUMNS = ['timestamp', ...RESULT_CHANNELS] as const;
+export const INTERVAL_COLUMNS = ['timestamp', ...INTERVAL_CHANNELS] as const;
 
 interface Owner {
   organizationId: string;
@@ -69,7 +72,7 @@ export async function listIntervals(
   let lastMs = 0;
   // Days that a page fills at one-minute intervals, so that a short page does not read a month.
   const firstDays = 1 + Math.ceil(page.limit / 1440);
-  for await (const day of resultSlices(em, owner, rest, RESULT_CHANNELS, firstDays)) {
+  for await (const day of resultSlices(em, owner, rest, INTERVAL_CHANNELS, firstDays)) {
     const start = dayStartMs(day.day);
     const { first, end } = slotsInside(start, day.stepMinutes, day.channels.direction?.length ?? 0, rest);
     for (let slot = first; slot < end; slot++) {
@@ -99,7 +102,7 @@ export async function* intervalCells(
   period: PeriodMs,
   units: 'ip' | 'si',
 ): AsyncGenerator<readonly CsvCell[]> {
-  const write = RESULT_CHANNELS.map((channel) => cellOf(channel, units));
+  const write = INTERVAL_CHANNELS.map((channel) => cellOf(channel, units));
   const days = Math.ceil((period.toMs - period.fromMs) / DAY_MS);
   for (let done = 0; done <= days; done += DOWNLOAD_DAYS) {
     const part = {
@@ -112,7 +115,7 @@ export async function* intervalCells(
       const { first, end } = slotsInside(start, day.stepMinutes, day.channels.direction?.length ?? 0, part);
       for (let slot = first; slot < end; slot++) {
         const timestamp = apiInstant(start + slot * day.stepMinutes * 60_000);
-        yield [timestamp, ...RESULT_CHANNELS.map((channel, index) => write[index]?.(value(day, channel, slot)))];
+        yield [timestamp, ...INTERVAL_CHANNELS.map((channel, index) => write[index]?.(value(day, channel, slot)))];
       }
     }
   }
@@ -121,7 +124,7 @@ export async function* intervalCells(
 async function readPart(owner: Owner, part: PeriodMs): Promise<ResultDay[]> {
   return withTenant({ organizationIds: [owner.organizationId] }, async (em) => {
     const days: ResultDay[] = [];
-    for await (const day of resultSlices(em, owner, part, RESULT_CHANNELS)) days.push(day);
+    for await (const day of resultSlices(em, owner, part, INTERVAL_CHANNELS)) days.push(day);
     return days;
   });
 }

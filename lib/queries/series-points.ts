@@ -13,7 +13,7 @@ export type SeriesSource =
 export type ChannelQuantity = 'temperature' | 'temperatureDifference' | 'flow' | 'load' | 'share';
 
 /** Codes, not quantities: their mean would mean nothing. `/tide` thins directions. */
-const CODES: ReadonlySet<ResultChannel> = new Set(['direction', 'state', 'reason']);
+const CODES: ReadonlySet<ResultChannel> = new Set(['direction', 'state', 'reason', 'at_odds']);
 const MOST_SERIES = 40;
 
 const camelOf = (channel: string): string =>

@@ -120,7 +120,10 @@ function valueAt(record: Measurements, model: PlantModel, role: SensorRole, slot
     case 'bypassTemp':
       return at(record.bypassF);
     case 'primaryFlow':
-      return at(record.primaryFlowGpm);
+      // Without a meter in the main, the units' own add up to it; one missing makes the sum missing.
+      return record.primaryFlowGpm
+        ? at(record.primaryFlowGpm)
+        : record.unitFlowGpm.reduce((sum, channel) => sum + at(channel), 0);
     case 'secondaryFlow':
       return at(record.secondaryFlowGpm);
     case 'bypassFlow':

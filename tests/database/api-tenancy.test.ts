@@ -27,6 +27,7 @@ const BODIES: Record<string, object> = {
   'PUT plants/[plantId]/alert-rule': { enabled: false },
   'POST plants/[plantId]/alerts/runs': { day: '2026-07-01' },
   'POST plants/[plantId]/analyses': {},
+  'POST plants/[plantId]/spot-checks': { at: '2026-07-01T10:00:00Z', role: 'primarySupplyTemp', readingF: 44 },
   'PATCH episodes/[episodeId]': { acknowledged: true },
   'PUT uploads/[uploadId]/mapping': {
     timestamp: { columns: ['Time'], form: 'iso' },
@@ -79,6 +80,10 @@ beforeAll(async () => {
       `insert into episode (organization_id, plant_id, cause, started_at, ended_at, hours, worst_hour)
        values ($1, $2, 'reverse-flow', '2026-07-01T10:00Z', '2026-07-01T12:00Z', 2, '2026-07-01T10:00Z')`,
     ),
+    spotCheckId: await insert(
+      `insert into spot_check (organization_id, plant_id, at, role, reading, sigma)
+       values ($1, $2, '2026-07-01T10:00Z', 'primarySupplyTemp', 44, 0.1)`,
+    ),
     tokenId: await insert(
       `insert into api_token (organization_id, plant_id, name, scope, token_hash) values ($1, $2, 'x', 'read', '\\x01')`,
     ),
@@ -123,7 +128,8 @@ describe('another organization’s object', () => {
   });
   it('is untouched by all of this', async () => {
     const { rows } = await api.owner.query(
-      `select p.name, p.deleted_at, p.settings_revision, r.enabled, e.acknowledged_at, t.revoked_at
+      `select p.name, p.deleted_at, p.settings_revision, r.enabled, e.acknowledged_at, t.revoked_at,
+         (select count(*)::integer from spot_check) as checks
        from plant p join alert_rule r on r.plant_id = p.id join episode e on e.plant_id = p.id join api_token t on t.plant_id = p.id`,
     );
     expect(rows).toEqual([
@@ -134,6 +140,7 @@ describe('another organization’s object', () => {
         enabled: true,
         acknowledged_at: null,
         revoked_at: null,
+        checks: 1,
       },
     ]);
   });

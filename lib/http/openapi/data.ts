@@ -27,6 +27,16 @@ import {
   SeriesQuery,
   Tide,
 } from '../../schemas/results';
+import {
+  CreateSpotCheck,
+  Sensors,
+  SensorsQuery,
+  SpotCheck,
+  SpotCheckMade,
+  SpotCheckParams,
+  SpotCheckRemoved,
+  SpotChecksQuery,
+} from '../../schemas/sensors';
 import { ConfirmMapping, Preview, Upload } from '../../schemas/upload';
 import { named, type Operation } from './describe';
 
@@ -230,5 +240,48 @@ export const DATA_OPERATIONS: readonly Operation[] = [
     params: PlantParams,
     query: CoverageQuery,
     answers: { 200: { description: 'The shares.', schema: named('Coverage', Coverage) } },
+  },
+  {
+    ...data,
+    method: 'get',
+    path: '/plants/{plantId}/sensors',
+    summary:
+      'What the record says about its sensors: likely errors with their evidence, bad stretches, coverage, and which further sensor would help most. At most three months.',
+    who: EVERY_ROLE,
+    params: PlantParams,
+    query: SensorsQuery,
+    conditional: true,
+    answers: { 200: { description: 'The sensors.', schema: named('Sensors', Sensors) } },
+  },
+  {
+    ...data,
+    method: 'get',
+    path: '/plants/{plantId}/spot-checks',
+    summary: 'Readings of reference instruments, the latest first.',
+    who: EVERY_ROLE,
+    params: PlantParams,
+    query: SpotChecksQuery,
+    answers: { 200: { description: 'A page of spot checks.', schema: listOf(named('SpotCheck', SpotCheck)) } },
+  },
+  {
+    ...data,
+    method: 'post',
+    path: '/plants/{plantId}/spot-checks',
+    summary:
+      'Enter a reading of a reference instrument; the record is analysed again with it. readingF for a temperature, readingGpm for a flow. Without shown... the record says what the plant’s own sensor showed.',
+    who: 'owner, engineer; scope manage',
+    params: PlantParams,
+    body: named('CreateSpotCheck', CreateSpotCheck),
+    idempotent: true,
+    answers: { 201: { description: 'Kept.', schema: SpotCheckMade } },
+  },
+  {
+    ...data,
+    method: 'delete',
+    path: '/plants/{plantId}/spot-checks/{spotCheckId}',
+    summary: 'Take a spot check out again; the record is analysed without it.',
+    who: 'owner, engineer; scope manage',
+    params: SpotCheckParams,
+    answers: { 200: { description: 'It no longer counts.', schema: SpotCheckRemoved } },
   },
 ];
