@@ -37,6 +37,7 @@ export function HourPage({ plantId, hourStart }: { plantId: string; hourStart: s
     <Page
       foot={{
         settingsRevision: detail?.settingsRevision ?? plant.settingsRevision,
+        calibrationId: detail?.calibrationId,
         kernelVersion: detail?.kernelVersion,
         timeZone: plant.timeZone,
       }}

@@ -3,6 +3,8 @@ import { CAUTION } from '@/lib/client/words';
 
 export interface FootProps {
   settingsRevision?: number;
+  /** Number of the calibration; 0: none. */
+  calibrationId?: number;
   kernelVersion?: string;
   timeZone?: string;
   /** In place of the three, where a page is of no one plant. */
@@ -10,9 +12,10 @@ export interface FootProps {
 }
 
 /** The foot of every page: the caution, and what its numbers rest on. */
-export function Foot({ settingsRevision, kernelVersion, timeZone, right }: FootProps) {
+export function Foot({ settingsRevision, calibrationId, kernelVersion, timeZone, right }: FootProps) {
   const parts = [
     settingsRevision === undefined ? null : `Settings revision ${settingsRevision}`,
+    calibrationId === undefined || calibrationId === 0 ? null : `calibration ${calibrationId}`,
     kernelVersion === undefined ? null : `kernel ${kernelVersion}`,
     timeZone === undefined ? null : `times ${timeZone}`,
   ].filter((part) => part !== null);

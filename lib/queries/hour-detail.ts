@@ -18,6 +18,7 @@ import { hourInstant, hourRecord, SELECT_HOUR, type HourSqlRow } from './hour-re
 import { hourStations } from './hour-stations';
 import { HOUR_MS, MINUTE_MS } from './local-time';
 import { apiInstant, blockDays, type PeriodMs } from './period';
+import { calibrationOf } from './stored-calibration';
 
 interface PlantOfHour {
   id: string;
@@ -54,6 +55,7 @@ export async function readHourDetail(
   const [first] = results;
   const settingsRevision = first?.settingsRevision ?? plant.settingsRevision;
   const { facts, measurementsOf } = await plantFacts(em, plant, settingsRevision);
+  const calibrationId = first?.calibrationId ?? 0;
   const stepMinutes = first?.stepMinutes ?? 60;
   const measurements = await measurementsOf(fromDay, toDay, stepMinutes);
   const value = slotReader(results, startMs);
@@ -63,6 +65,7 @@ export async function readHourDetail(
     measured: measuredHour(measurements, slots, (startMs - dayStartMs(fromDay)) / MINUTE_MS / stepMinutes),
     workedOut: workOutHour(slots, stepMinutes, value),
     unitsRunning: row.units_running,
+    corrected: await correctedSensors(em, owner, calibrationId),
     plant: facts,
   };
   const { workedOut } = hour;
@@ -81,6 +84,7 @@ export async function readHourDetail(
     ...(await readRank(em, owner, row, among)),
     ...(await readNeighbours(em, owner, startMs)),
     settingsRevision,
+    calibrationId,
     kernelVersion: first?.kernelVersion ?? '',
   };
   return { ...inUnits(answer, units), ledger: ledgerIn(hour, units) };
@@ -123,6 +127,20 @@ function measuredHour(measurements: Measurements, slots: readonly number[], firs
     bypassFlowGpm: Number.isNaN(signed) ? mean(measurements.bypassFlowUnsignedGpm) : signed,
     bypassMeterSigned: !Number.isNaN(signed),
   };
+}
+
+/** What the calibration behind the hour's results took out; nothing where another has taken its place since. */
+async function correctedSensors(
+  em: EntityManager,
+  owner: { organizationId: string; plantId: string },
+  calibrationId: number,
+): Promise<HourFacts['corrected']> {
+  const stored = await queryOne<{ detail: unknown }>(
+    em,
+    `select detail from calibration where organization_id = $1 and plant_id = $2 and id = $3`,
+    [owner.organizationId, owner.plantId, calibrationId],
+  );
+  return stored ? calibrationOf(stored.detail).findings.filter(({ lo, hi }) => lo > 0 || hi < 0) : [];
 }
 
 /** The plant as the hour was judged by: the settings revision its results name. */

@@ -15,6 +15,7 @@ import {
   withUnit,
   type UnitSystem,
 } from '../client/format';
+import { errorWords, sensorName } from '../client/sensor-words';
 import { litresPerSecondFromGpm } from '../units';
 import { differenceReach, type HourFacts } from './hour-facts';
 
@@ -32,7 +33,19 @@ type Tell = (facts: HourFacts, units: UnitSystem) => Evidence | null;
  * the printed numbers, so that a reader's own subtraction agrees.
  */
 export function hourEvidence(facts: HourFacts, units: UnitSystem): Evidence[] {
-  const told: readonly Tell[] = [meters, commonPipe, temperatures, together, blend, staging, flow, cause, care];
+  const told: readonly Tell[] = [
+    correctedFirst,
+    meters,
+    commonPipe,
+    temperatures,
+    together,
+    fit,
+    blend,
+    staging,
+    flow,
+    cause,
+    care,
+  ];
   return told.flatMap((tell) => tell(facts, units) ?? []);
 }
 
@@ -45,6 +58,21 @@ const temperature = (tempF: number, units: UnitSystem) =>
 /** A flow as printed, as a number again, in gpm or L/s. */
 const printedFlow = (flowGpm: number, units: UnitSystem): number =>
   units === 'si' ? roundHalfAway(litresPerSecondFromGpm(flowGpm), 1) : roundHalfAway(flowGpm, 0);
+
+/** What the calibration took out of the sensors before anything was worked out: why worked-out figures leave the measured ones. */
+function correctedFirst({ corrected }: HourFacts, units: UnitSystem): Evidence | null {
+  if (corrected.length === 0) return null;
+  const each = corrected.map(
+    ({ role, kind, value }) => `${lowered(sensorName(role))} reads ${errorWords(kind, value, units)}`,
+  );
+  const list = each.length === 1 ? each[0] : `${each.slice(0, -1).join(', ')} and ${each.at(-1) ?? ''}`;
+  return {
+    claim: 'Sensors were corrected.',
+    detail: `By the record of the month ${list ?? ''}; what is worked out is free of that.`,
+  };
+}
+
+const lowered = (text: string): string => text.charAt(0).toLowerCase() + text.slice(1);
 
 function meters({ measured, plant }: HourFacts, units: UnitSystem): Evidence | null {
   const { primaryFlowGpm, secondaryFlowGpm } = measured;
@@ -183,6 +211,19 @@ function together({ workedOut }: HourFacts, units: UnitSystem): Evidence | null 
   sentences.push(`of ${formatNumber(length)} min: ${split}`);
   const because = direction === 'unknown' && reason ? ` Why not: ${reason.reason}.` : '';
   return { claim: claims[direction], detail: `${capitalised(sentences.join('; '))}.${because}` };
+}
+
+/** Only told when it is so in most intervals: one in twenty is beyond its limit by chance. */
+function fit({ workedOut: { fit: found } }: HourFacts): Evidence | null {
+  if (found.told === 0 || found.beyond <= found.told / 2) return null;
+  const odd =
+    found.atOdds === null
+      ? 'No one of them stands out.'
+      : `The ${lowered(sensorName(found.atOdds))} is the most at odds with the rest: check it first.`;
+  return {
+    claim: 'The measurements do not fit together.',
+    detail: `In ${formatNumber(found.beyond)} of ${formatNumber(found.told)} intervals they differ by more than their uncertainties allow. ${odd}`,
+  };
 }
 
 const capitalised = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1);

@@ -1,3 +1,5 @@
+import { SENSOR_ROLES, type SensorFinding, type SensorRole } from '../hydronics/calibration-types';
+import { chiSquareQuantile } from '../hydronics/distributions';
 import type { ResultChannel } from '../hydronics/types';
 import { DIRECTIONS, REASONS, STATES, type Arrangement, type Direction, type Reason } from '../hydronics/types';
 import type { HourRow } from '../schemas/results';
@@ -40,6 +42,17 @@ export interface WorkedOutHour {
   secondaryReturnF: number;
   steadyIntervals: number;
   intervals: number;
+  fit: HourFit;
+}
+
+/** Whether the measurements of an hour can be reconciled. */
+export interface HourFit {
+  /** Intervals with more measurements than unknowns. */
+  told: number;
+  /** Those whose chi-square lies beyond its 95 % limit. */
+  beyond: number;
+  /** The sensor most at odds in most of the latter; null: none stands out. */
+  atOdds: SensorRole | null;
 }
 
 /** All that the evidence of an hour is told from. Units as named, whatever units it is told in. */
@@ -48,6 +61,8 @@ export interface HourFacts {
   measured: MeasuredHour;
   workedOut: WorkedOutHour;
   unitsRunning: number | null;
+  /** Sensors whose lasting error the hour's calibration took out: zero lies outside its interval. */
+  corrected: readonly Pick<SensorFinding, 'role' | 'kind' | 'value'>[];
   plant: {
     arrangement: Arrangement;
     unitCount: number;
@@ -72,6 +87,9 @@ export const NINETY_PERCENT = 1.6449;
 
 /** 90 % half width of a difference of two independent readings. */
 export const differenceReach = (sigma1: number, sigma2: number): number => NINETY_PERCENT * Math.hypot(sigma1, sigma2);
+
+/** One interval in twenty lies beyond by chance. */
+const CHI_SQUARE_LEVEL = 0.95;
 
 type Channel = (name: ResultChannel, slot: number) => number;
 
@@ -124,7 +142,23 @@ export function workOutHour(slots: readonly number[], stepMinutes: number, value
     secondaryReturnF: mean('secondary_return_f'),
     steadyIntervals: slots.filter((slot) => value('steady', slot) === 1).length,
     intervals: slots.length,
+    fit: fitOver(slots, value),
   };
+}
+
+/** How often the measurements disagree by more than chance, and which sensor then stands out. */
+function fitOver(slots: readonly number[], value: Channel): HourFit {
+  const told = slots.filter((slot) => value('redundancy', slot) >= 1 && !Number.isNaN(value('chi_square', slot)));
+  const beyond = told.filter(
+    (slot) => value('chi_square', slot) > chiSquareQuantile(CHI_SQUARE_LEVEL, Math.round(value('redundancy', slot))),
+  );
+  const counts = new Map<SensorRole, number>();
+  for (const slot of beyond) {
+    const role = SENSOR_ROLES[value('at_odds', slot)];
+    if (role) counts.set(role, (counts.get(role) ?? 0) + 1);
+  }
+  const [most] = [...counts].sort((left, right) => right[1] - left[1]);
+  return { told: told.length, beyond: beyond.length, atOdds: most?.[0] ?? null };
 }
 
 /** The direction of most minutes; on a tie the more cautious word, and `unknown` of no minutes at all. */

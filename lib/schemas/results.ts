@@ -202,6 +202,8 @@ export const HourDetail = z.object({
   before: z.string().nullable(),
   after: z.string().nullable(),
   settingsRevision: z.number().int(),
+  /** Number of the calibration the hour rests on; 0: none. */
+  calibrationId: z.number().int(),
   kernelVersion: z.string(),
 });
 export type HourDetail = z.infer<typeof HourDetail>;

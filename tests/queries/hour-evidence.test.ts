@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { hourEvidence } from '@/lib/queries/hour-evidence';
-import type { HourFacts } from '@/lib/queries/hour-facts';
+import { workOutHour, type HourFacts } from '@/lib/queries/hour-facts';
 import { FORWARD_HOUR, REVERSE_HOUR, withRow } from './hour-facts';
 
 const plain = (text: string) => text.replaceAll('\u00a0', ' ').replaceAll('\u2212', '-');
@@ -164,5 +164,45 @@ describe('evidence that does not carry the answer says so', () => {
     const text = JSON.stringify(told(nothing));
     expect(text).not.toMatch(/NaN|null|undefined|Infinity/);
     expect(told(nothing)).toHaveProperty(['No meter speaks.']);
+  });
+});
+
+describe('sensors in the evidence of an hour', () => {
+  test('say first what the calibration took out of them, in the reader’s units', () => {
+    const corrected = [
+      { role: 'secondarySupplyTemp', kind: 'offset', value: 0.6 },
+      { role: 'primaryFlow', kind: 'gain', value: -2.1 },
+    ] as const;
+    const [first] = hourEvidence({ ...REVERSE_HOUR, corrected }, 'ip');
+    expect(first?.claim).toBe('Sensors were corrected.');
+    expect(plain(first?.detail ?? '')).toBe(
+      'By the record of the month secondary supply reads 0.6 °F warm and primary flow reads 2.1 % low; what is worked out is free of that.',
+    );
+    expect(told({ ...REVERSE_HOUR, corrected }, 'si')['Sensors were corrected.']).toContain('0.3 K warm');
+    expect(told(REVERSE_HOUR)).not.toHaveProperty('Sensors were corrected.');
+  });
+
+  test('are named when the measurements do not fit in most intervals, the one most at odds first', () => {
+    const misfit = (fit: HourFacts['workedOut']['fit']) =>
+      told(workedOut(REVERSE_HOUR, { fit }))['The measurements do not fit together.'];
+    expect(misfit({ told: 12, beyond: 9, atOdds: 'secondarySupplyTemp' })).toBe(
+      'In 9 of 12 intervals they differ by more than their uncertainties allow. The secondary supply is the most at odds with the rest: check it first.',
+    );
+    expect(misfit({ told: 12, beyond: 12, atOdds: null })).toContain('No one of them stands out.');
+    expect(misfit({ told: 12, beyond: 6, atOdds: 'bypassTemp' })).toBeUndefined();
+    expect(misfit({ told: 0, beyond: 0, atOdds: null })).toBeUndefined();
+  });
+
+  test('are judged by chi-square against its limit for as many comparisons as there are', () => {
+    const channels: Record<string, number[]> = {
+      state: [1, 1, 1, 1],
+      direction: [2, 2, 2, 2],
+      // 0.95 points: 3.84 with one degree of freedom, 5.99 with two (any table)
+      chi_square: [4, 4, 7, NaN],
+      redundancy: [1, 2, 2, NaN],
+      at_odds: [2, -1, 2, NaN],
+    };
+    const { fit } = workOutHour([0, 1, 2, 3], 15, (name, slot) => channels[name]?.[slot] ?? NaN);
+    expect(fit).toEqual({ told: 3, beyond: 2, atOdds: 'secondarySupplyTemp' });
   });
 });

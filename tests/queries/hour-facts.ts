@@ -49,8 +49,10 @@ export const REVERSE_HOUR: HourFacts = {
     secondaryReturnF: 57.8,
     steadyIntervals: 11,
     intervals: 12,
+    fit: { told: 12, beyond: 0, atOdds: null },
   },
   unitsRunning: 2,
+  corrected: [],
   plant: {
     arrangement: 'primary-secondary',
     unitCount: 3,

@@ -45,6 +45,7 @@ export const reverseHour = (given: Partial<HourDetail> = {}): HourDetail => ({
   before: null,
   after: null,
   settingsRevision: 7,
+  calibrationId: 3,
   kernelVersion: '0.1.0',
   ...given,
 });
