@@ -9,7 +9,7 @@ export interface AppShellProps extends Omit<HeaderProps, 'tabs'> {
 }
 
 /** The tabs whose pages exist. */
-export const EXISTING_TABS: readonly PlantTabKey[] = ['plant', 'hours', 'uploads', 'alerts', 'settings'];
+export const EXISTING_TABS: readonly PlantTabKey[] = ['plant', 'hours', 'sensors', 'uploads', 'alerts', 'settings'];
 
 /** What stands around every signed-in page: the way past the header, and the header. The page itself is a `Page`. */
 export function AppShell({ tabs = EXISTING_TABS, children, ...header }: AppShellProps) {

@@ -80,6 +80,19 @@ export function addLocalDays(day: string, days: number): string {
   return formatISO(addDays(parseISO(day), days), { representation: 'date' });
 }
 
+/** Epoch ms of a wall clock reading as a form gives it, `2026-07-24T15:10`, in a zone; NaN when it is none. */
+export function wallClockMs(text: string, timeZone: string): number {
+  const found = /^(\d{4})-(\d{2})-(\d{2})T(\d{2}):(\d{2})/.exec(text);
+  if (!found) return Number.NaN;
+  const [year = 1970, month = 1, day = 1, hour = 0, minute = 0] = found.slice(1).map(Number);
+  return new TZDate(year, month - 1, day, hour, minute, timeZone).getTime();
+}
+
+/** The wall clock of an instant as a form takes it, `2026-07-24T15:10`. */
+export function wallClock(epochMs: number, timeZone: string): string {
+  return `${localDay(epochMs, timeZone)}T${formatClock(epochMs, timeZone)}`;
+}
+
 /** Epoch ms of `from` or `to`, which is an instant or a local day; NaN when it is neither. */
 export function momentMs(moment: string, timeZone: string): number {
   return /^\d{4}-\d{2}-\d{2}$/.test(moment) ? startOfLocalDay(moment, timeZone) : Date.parse(moment);

@@ -6,6 +6,7 @@ import { Coverage } from '../schemas/data-requests';
 import { OverviewPlant } from '../schemas/overview';
 import { Plant } from '../schemas/plant';
 import { Episode, HourDetail, HourRow, PlantDay, Tide, type Rank } from '../schemas/results';
+import { Sensors, SpotChecks } from '../schemas/sensors';
 import { FINAL_UPLOAD_STATUSES, Preview, Upload } from '../schemas/upload';
 import { getJson, queryString } from './api';
 
@@ -134,4 +135,17 @@ export const coverageQuery = (plantId: string, period: PeriodRange) =>
     queryKey: ['plant', plantId, 'coverage', period],
     queryFn: ({ signal }) => getJson(`/plants/${plantId}/coverage${queryString({ ...period })}`, Coverage, signal),
     placeholderData: keepPreviousData,
+  });
+
+export const sensorsQuery = (plantId: string, period: PeriodRange) =>
+  queryOptions({
+    queryKey: ['plant', plantId, 'sensors', period],
+    queryFn: ({ signal }) => getJson(`/plants/${plantId}/sensors${queryString({ ...period })}`, Sensors, signal),
+    placeholderData: keepPreviousData,
+  });
+
+export const spotChecksQuery = (plantId: string) =>
+  queryOptions({
+    queryKey: ['plant', plantId, 'spot-checks'],
+    queryFn: ({ signal }) => getJson(`/plants/${plantId}/spot-checks?limit=200`, SpotChecks, signal),
   });

@@ -71,7 +71,7 @@ describe('tabs', () => {
     if (tabs === undefined) throw new Error('no tabs');
     expect(within(tabs).getByRole('link', { name: 'Hours' }).getAttribute('aria-current')).toBe('page');
     expect(within(tabs).getByRole('link', { name: 'Plant' }).hasAttribute('aria-current')).toBe(false);
-    expect(within(tabs).queryByRole('link', { name: 'Sensors' })).toBeNull();
+    expect(within(tabs).queryByRole('link', { name: 'Proof' })).toBeNull();
   });
 });
 
@@ -124,11 +124,14 @@ test('signing out is in the menu of one’s name', () => {
 });
 
 describe('keys', () => {
-  test('g h goes to the hours, and g s nowhere while there is no such page', () => {
+  test('g h goes to the hours, g s to the sensors, and g x nowhere, as there is no such page', () => {
     show();
     fireEvent.keyDown(document.body, { key: 'g' });
-    fireEvent.keyDown(document.body, { key: 's' });
+    fireEvent.keyDown(document.body, { key: 'x' });
     expect(router.push).not.toHaveBeenCalled();
+    fireEvent.keyDown(document.body, { key: 'g' });
+    fireEvent.keyDown(document.body, { key: 's' });
+    expect(router.push).toHaveBeenCalledWith('/plants/p1/sensors');
     fireEvent.keyDown(document.body, { key: 'g' });
     fireEvent.keyDown(document.body, { key: 'h' });
     expect(router.push).toHaveBeenCalledWith('/plants/p1/hours');
@@ -141,7 +144,7 @@ describe('keys', () => {
     fireEvent.keyDown(screen.getByRole('menu'), { key: 'Escape' });
     fireEvent.keyDown(document.body, { key: '?' });
     const help = await screen.findByRole('dialog', { name: 'Keys' });
-    expect(help.textContent).toContain('go to Plant, Hours, Uploads');
+    expect(help.textContent).toContain('go to Plant, Hours, Sensors, Uploads');
   });
 });
 

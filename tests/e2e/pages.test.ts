@@ -34,8 +34,9 @@ for (const colorScheme of ['light', 'dark'] as const) {
       await first.click();
       await expect(page.getByRole('heading', { name: /Tee sheet/ })).toBeVisible();
       await look('page-hour');
-      for (const tab of ['Uploads', 'Alerts', 'Settings'] as const) {
+      for (const tab of ['Sensors', 'Uploads', 'Alerts', 'Settings'] as const) {
         await openTab(page, tab);
+        if (tab === 'Sensors') await expect(page.getByRole('table', { name: /^Sensors/ })).toBeVisible();
         await look(`page-${tab.toLowerCase()}`);
       }
       expect(heard).toEqual([]);

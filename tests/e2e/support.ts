@@ -22,7 +22,10 @@ export async function openPlant(page: Page, name: string): Promise<void> {
 }
 
 /** Goes to a page of the plant in view; on a phone some tabs are behind "More". */
-export async function openTab(page: Page, name: 'Plant' | 'Hours' | 'Uploads' | 'Alerts' | 'Settings'): Promise<void> {
+export async function openTab(
+  page: Page,
+  name: 'Plant' | 'Hours' | 'Sensors' | 'Uploads' | 'Alerts' | 'Settings',
+): Promise<void> {
   const nav = page.getByRole('navigation', { name: 'Plant pages' }).filter({ visible: true });
   const link = nav.getByRole('link', { name, exact: true });
   if (await link.isVisible()) await link.click();
