@@ -51,6 +51,12 @@ export class PlantActivity {
     return this.states;
   }
 
+  /** Whether the plant runs at a slot. */
+  isRunning(slot: number): boolean {
+    const code = this.stateCodes()[slot];
+    return code === RUNNING || code === STARTING;
+  }
+
   /** Slots in which the sensor's pipe carries water for certain: the plant runs, or its own unit does. */
   running(unitIndex: number): Tally {
     if (unitIndex === 0) {

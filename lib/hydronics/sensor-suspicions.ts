@@ -28,11 +28,10 @@ const HIGH_QUANTILE = 0.95;
 
 /** Running slots, at most SAMPLES of them, evenly spread over the record. */
 function runningSample(measurements: Measurements, activity: PlantActivity): Int32Array {
-  const running = activity.running(0);
   const stride = Math.max(1, Math.ceil(measurements.n / SAMPLES));
   const slots: number[] = [];
   for (let slot = 0; slot < measurements.n; slot += stride) {
-    if ((running[slot + 1] as number) > (running[slot] as number)) slots.push(slot);
+    if (activity.isRunning(slot)) slots.push(slot);
   }
   const minutes = slots.length * stride * measurements.stepMinutes;
   return minutes >= LEAST_MINUTES && slots.length >= LEAST_SAMPLES ? Int32Array.from(slots) : new Int32Array(0);
