@@ -14,7 +14,7 @@ export const COUNT = READINGS.length;
 /** Standard uncertainties where a test names none: 0.25 F, 0.5 F in the common pipe, 20 gpm. */
 const SIGMAS: Required<ReadingValues> = { ps: 0.25, pr: 0.25, ss: 0.25, sr: 0.25, tb: 0.5, fp: 20, fs: 25, fb: 10 };
 /** Doubt of what stands in for a supply or return that nobody measures, F. */
-const VAGUE_SIGMA_F = 30;
+export const VAGUE_SIGMA_F = 30;
 
 /** Covariance of independent readings, 8 x 8. */
 export function independent(sigmas: ReadingValues = {}): Float64Array {
