@@ -38,7 +38,7 @@ import type { PrimaryPlaces } from './way-score';
 /** Share of the prior variance that classification allows for, pass by pass: wide first, so that no wrong way is locked in. */
 const ANNEAL = [2, 0.6, 0.2, 0.06, 0.02, 0] as const;
 /** The same from a start that already says something: near it is what is asked. */
-const NEAR = [0.05, 0.01, 0] as const;
+const NEAR = [0.02, 0, 0] as const;
 /** Passes over all bins, from the best start. */
 const REFINE = [0.02, 0, 0, 0] as const;
 /** Bins that the search for a start looks at. */
@@ -47,6 +47,11 @@ const SEARCH_BINS = 200;
 const WORST_BIN = 12;
 /** Neighbouring readings err together: a record is worth one independent comparison in this many hours. */
 const HOURS_PER_COMPARISON = 1;
+/**
+ * The same when one explanation is chosen over another: near balance either way fits by turns, which flatters it in every
+ * comparison, and what the sensors' classes say must not be outvoted by that.
+ */
+const HOURS_PER_CHOICE = 4;
 /** Degrees of freedom of the robust loss: beyond a few sigma a bin says less the further it is off. */
 const LOSS_FREEDOM = 5;
 /** Beyond this a bin is no reading of two ideal tees at all. */
@@ -123,6 +128,14 @@ function readInto(work: CalibrationWork, errors: Errors, bin: number): void {
   fillReading(loop, slot, values, slotErrors, errors, false, plant.productionSupplyF, plant.loadDeltaTF, reading);
 }
 
+/**
+ * Weight of a way in a bin. A way whose share is free never opposes the other, so that even a trace of an improbable way, bin
+ * after bin, would draw an offset to where it becomes probable: what is improbable counts for nothing.
+ */
+const weightOf = (probability: number): number =>
+  probability < IMPROBABLE ? 0 : probability > 1 - IMPROBABLE ? 1 : probability;
+const IMPROBABLE = 0.1;
+
 /** How likely each way is in each bin, and how far the bin is to be trusted: the E step. */
 function weighBins(work: CalibrationWork, left: number): void {
   const errors = errorsAt(work, work.parameters, left);
@@ -137,8 +150,8 @@ function weighBins(work: CalibrationWork, left: number): void {
     const worth = Math.min(1, work.bins.hoursEach / HOURS_PER_COMPARISON);
     const trust = (fit: typeof forwardFit) =>
       fit.chiSquare > OUTLIER_CHI_SQUARE ? 0 : (worth * (LOSS_FREEDOM + fit.redundancy)) / (LOSS_FREEDOM + fit.chiSquare);
-    work.forward[bin] = (1 - pReverse) * trust(forwardFit);
-    work.reverse[bin] = pReverse * trust(reverseFit);
+    work.forward[bin] = weightOf(1 - pReverse) * trust(forwardFit);
+    work.reverse[bin] = weightOf(pReverse) * trust(reverseFit);
     const closest = pReverse > 0.5 ? reverseFit : forwardFit;
     work.chiSquare[bin] = closest.chiSquare;
     work.redundancy[bin] = closest.redundancy;
@@ -448,7 +461,9 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
 /** Starting points: the sensors as they are, meters that disagree either way, supplies and returns that meet at the corner. */
 function startsOf(work: CalibrationWork): Float64Array[] {
   const { loop, bins, parameters } = work;
-  const starts = [new Float64Array(parameters.length)];
+  const asRead = new Float64Array(parameters.length);
+  // Twice: the first is annealed, the second taken as it stands.
+  const starts = [asRead, asRead];
   const corner = new Float64Array(parameters.length);
   const pair = (cold: number, warm: number) => {
     const apart = new Float64Array(bins.count);
@@ -471,7 +486,7 @@ function startsOf(work: CalibrationWork): Float64Array[] {
   starts.push(corner);
   if (!loop.flows[FP] || !loop.flows[FS]) return starts;
   for (const ratio of START_RATIOS) {
-    for (const offsets of [starts[0] as Float64Array, corner]) {
+    for (const offsets of [asRead, corner]) {
       const start = offsets.slice();
       start[SECONDARY_GAIN] = -ratio / 2;
       start[PRIMARY_GAIN] = ratio / 2;
@@ -499,7 +514,7 @@ function objective(work: CalibrationWork, checks: readonly SpotTerm[]): number {
     const best = high + 0.5 * closest.chiSquare;
     total += best + Math.max(-WORST_BIN, high + Math.log1p(Math.exp(low - high)) - best);
   }
-  const worth = Math.min(1, work.bins.hoursEach / HOURS_PER_COMPARISON);
+  const worth = Math.min(1, work.bins.hoursEach / HOURS_PER_CHOICE);
   const prior = addPrior(priorTerms(work, checks), work.parameters, new Float64Array(p * p), new Float64Array(p));
   return worth * total - prior;
 }
