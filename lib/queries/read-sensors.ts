@@ -127,7 +127,11 @@ export async function readSensors(
       const { kind, looksLike, share } = suspicion;
       return { kind, sensors: names, looksLike, share, sentence: suspicionSentence(suspicion, names) };
     }),
-    furtherSensors: calibration && passed.n > 0 ? furtherSensors(passed, model, calibration).map(furtherRecord) : [],
+    furtherSensors:
+      // One of another kernel is shown, and worked out again when its month is; this kernel cannot reckon with it.
+      calibration && inForce?.kernel_version === KERNEL_VERSION && passed.n > 0
+        ? furtherSensors(passed, model, calibration).map(furtherRecord)
+        : [],
     settingsRevision: inForce?.settings_revision ?? plant.settingsRevision,
     kernelVersion: inForce?.kernel_version ?? KERNEL_VERSION,
   };

@@ -1,49 +1,40 @@
 import { z } from 'zod';
 import { SENSOR_ROLES, type Calibration } from '../hydronics/calibration-types';
 
-/** A number that is null where it is not known: NaN in the core. */
-const figure = z
-  .number()
-  .nullable()
-  .transform((value) => value ?? Number.NaN);
+/** A number, or null where it is not known: NaN in the core. */
+const Stored = z.number().nullable();
 
-const StoredCalibration: z.ZodType<Calibration> = z.object({
+/** What every stored calibration has, whichever kernel made it; what else it has goes through as it is. */
+const StoredCalibration = z.looseObject({
   kernelVersion: z.string(),
-  intervals: z.number(),
-  values: z.array(figure),
-  covariance: z.array(figure),
-  sets: z.array(z.number()),
-  noise: z.array(figure),
-  shareScale: figure,
-  header: z.object({ side: z.enum(['primary', 'secondary', 'unknown', 'absent']), primaryProbability: figure }),
-  findings: z.array(
-    z.object({
-      role: z.enum(SENSOR_ROLES),
-      kind: z.enum(['offset', 'gain']),
-      value: figure,
-      lo: figure,
-      hi: figure,
-      prior: figure,
-      told: figure,
-      tie: z.enum(['supplies-agree', 'returns-agree', 'energy-balance', 'flow-balance', 'spot-check', 'none']),
-      evidenceHours: figure,
-      noise: figure,
-      increment: figure,
-    }),
-  ),
-  limits: z.array(z.enum(['common-offset', 'common-gain', 'one-way-only', 'no-flow', 'too-short'])),
-  chiSquare: z.object({ median: figure, limit: figure, shareWithin: figure }),
+  values: z.array(Stored),
+  covariance: z.array(Stored),
+  header: z.object({ side: z.enum(['primary', 'secondary', 'unknown', 'absent']), primaryProbability: Stored }),
+  findings: z.array(z.looseObject({ role: z.enum(SENSOR_ROLES), kind: z.enum(['offset', 'gain']), value: Stored })),
+  limits: z.array(z.string()),
+  chiSquare: z.object({ median: Stored, limit: Stored, shareWithin: Stored }),
 });
 
 /** A calibration as JSON text: what is not known becomes null. */
 export const calibrationJson = (calibration: Calibration): string => JSON.stringify(calibration);
 
+/** Null back to NaN, all through: a calibration holds numbers and words, and no other emptiness. */
+function withNaN(value: unknown): unknown {
+  if (value === null) return Number.NaN;
+  if (Array.isArray(value)) return value.map(withNaN);
+  if (typeof value !== 'object') return value;
+  return Object.fromEntries(Object.entries(value).map(([name, inner]: [string, unknown]) => [name, withNaN(inner)]));
+}
+
 /**
- * A calibration as it was stored.
+ * A calibration as it was stored, with every field that its kernel gave it.
  *
  * Throws  ZodError when it is not one: results must not rest on half of it.
  */
-export const calibrationOf = (detail: unknown): Calibration => StoredCalibration.parse(detail);
+export function calibrationOf(detail: unknown): Calibration {
+  StoredCalibration.parse(detail);
+  return withNaN(detail) as Calibration;
+}
 
 /** The same after its way through the database, so that a result is the same whether its calibration is new or stored. */
 export const asStored = (calibration: Calibration): Calibration =>
