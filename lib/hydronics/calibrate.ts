@@ -32,6 +32,8 @@ import { plantStates } from './state';
 import { markSteady } from './steadiness';
 import type { Measurements, PlantModel } from './types';
 import { emptyWayFit, fitWay } from './way-fit';
+import { emptyBothWays } from './both-ways';
+import { bothProbability, usualBothPrior } from './weigh-slot';
 import { profileScore } from './way-score';
 import type { PrimaryPlaces } from './way-score';
 
@@ -90,6 +92,8 @@ export interface CalibrationWork {
   classScale: number;
   /** How far this plant departs from two ideal tees, against the usual. */
   misfitScale: number;
+  /** Share of the bins in which the pipe ran both ways. */
+  swingShare: number;
 }
 
 const reading = emptySlotReading();
@@ -114,7 +118,7 @@ function errorsAt(work: CalibrationWork, parameters: Float64Array, left: number)
     covariance[k] = (covariance[k] as number) + misfit * misfit;
   }
   const noise = Array.from(work.seen.noise, (sigma) => (Number.isFinite(sigma) ? sigma : 0));
-  return errorsOf(parameters, covariance, work.loop.sets, noise);
+  return { ...errorsOf(parameters, covariance, work.loop.sets, noise), trustSetpoint: false };
 }
 
 type Errors = ReturnType<typeof errorsAt>;
@@ -136,11 +140,16 @@ const weightOf = (probability: number): number =>
   probability < IMPROBABLE ? 0 : probability > 1 - IMPROBABLE ? 1 : probability;
 const IMPROBABLE = 0.1;
 
+/** What the usual prior of a swing is worth, in bins. */
+const SWING_WORTH = 20;
+const bothWays = emptyBothWays();
+
 /** How likely each way is in each bin, and how far the bin is to be trusted: the E step. */
 function weighBins(work: CalibrationWork, left: number): void {
   const errors = errorsAt(work, work.parameters, left);
   let shares = 0.02;
   let weights = 1;
+  let swings = 0;
   const oneWay = work.plant.arrangement === 'variable-primary';
   for (let bin = 0; bin < work.bins.count; bin += 1) {
     readInto(work, errors, bin);
@@ -155,12 +164,18 @@ function weighBins(work: CalibrationWork, left: number): void {
     const closest = pReverse > 0.5 ? reverseFit : forwardFit;
     work.chiSquare[bin] = closest.chiSquare;
     work.redundancy[bin] = closest.redundancy;
+    const both = oneWay ? 0 : bothProbability(reading, forwardFit, reverseFit, work.swingShare, bothWays);
+    swings += both;
+    work.forward[bin] = (work.forward[bin] as number) * (1 - both);
+    work.reverse[bin] = (work.reverse[bin] as number) * (1 - both);
     const share = closest.share;
     if (share === share && closest.shareVariance < 0.04) {
       shares += Math.min(1, Math.max(0, share));
       weights += 1;
     }
   }
+  const usual = usualBothPrior(work.loop.stepMinutes);
+  work.swingShare = Math.min(0.8, (swings + SWING_WORTH * usual) / (work.bins.count + SWING_WORTH));
   work.shareScale = Math.min(1, Math.max(0.03, shares / weights));
 }
 
@@ -440,6 +455,7 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
     shareScale: 0.3,
     classScale: 1,
     misfitScale: 1,
+    swingShare: usualBothPrior(measurements.stepMinutes),
   };
   const checks = spotTerms(spotChecks, loop, scale);
   if (bins.count < MIN_BINS) {

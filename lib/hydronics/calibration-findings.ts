@@ -96,6 +96,7 @@ export function describeCalibration(
     sets: [...loop.sets],
     noise: [...seen.noise],
     shareScale: work.shareScale,
+    swingShare: work.swingShare,
     misfit: { temperatureF: MISFIT_F * work.misfitScale, flowShare: MISFIT_FLOW * work.misfitScale },
     header,
     findings,

@@ -82,6 +82,8 @@ export interface Calibration {
   noise: number[];
   /** Mean share of the main flow that crosses over, either way: the scale of the record's own prior. */
   shareScale: number;
+  /** Share of the intervals in which the pipe ran both ways: the prior of a swing. */
+  swingShare: number;
   /** What this plant's intervals depart from two ideal tees by, noise and lasting errors apart (k = 1). */
   misfit: { temperatureF: number; flowShare: number };
   /** Where the header sensor of unknown place sits, and the probability that it is the production side. */

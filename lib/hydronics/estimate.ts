@@ -20,7 +20,7 @@ import { emptyVerdict, settleNothing } from './verdict';
 import type { Verdict } from './verdict';
 import { slotAverager } from './slot-average';
 import { at } from './units-on';
-import { emptyWeighing, weighSlot } from './weigh-slot';
+import { emptyWeighing, usualBothPrior, weighSlot } from './weigh-slot';
 
 const OFF = STATES.indexOf('off');
 const UNKNOWN = DIRECTIONS.indexOf('unknown');
@@ -162,7 +162,10 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
   const average = slotAverager(loop, errors, out.state);
   const values = emptySlotValues();
   const reading = emptySlotReading();
-  const weighing = emptyWeighing(calibration?.shareScale ?? Number.POSITIVE_INFINITY, measurements.stepMinutes);
+  const weighing = emptyWeighing(
+    calibration?.shareScale ?? Number.POSITIVE_INFINITY,
+    calibration?.swingShare ?? usualBothPrior(measurements.stepMinutes),
+  );
   const verdict = emptyVerdict();
   for (let slot = 0; slot < measurements.n; slot += 1) {
     if (out.state[slot] === OFF) {

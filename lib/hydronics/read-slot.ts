@@ -10,10 +10,10 @@ import type { SlotReading } from './slot-reading';
 const TRANSPORT_LAG_MINUTES = 2;
 /** Slopes are taken over this long to either side: noise of one reading is no ramp. */
 const SLOPE_MINUTES = 5;
-/** A supply of which nothing is measured is taken at its set-point within this, a return at the design rise (k = 1, F). */
+/** A supply of which nothing is measured is taken at its set-point within this; a return is as good as unknown (k = 1, F). */
 const GUESSED_SUPPLY_SIGMA_F = 3;
-const GUESSED_RETURN_SIGMA_F = 8;
-const UNMEASURED_SIGMA_F = 30;
+const GUESSED_RETURN_SIGMA_F = 60;
+const UNMEASURED_SIGMA_F = 60;
 
 /** A bypass valve less open than this is shut, and then leaks this share of the main flow (k = 1; common practice). */
 const SHUT_PERCENT = 2;
@@ -90,7 +90,7 @@ function readTemperatures(slot: SlotValues, errors: SlotErrors, all: SensorError
     }
     temperatureCovariance[k] = (temperatureCovariance[k] as number) + variance + (slot.moving[i] as number) + misfit;
   }
-  if (!measured[PS]) guess(out, PS, setpoint, GUESSED_SUPPLY_SIGMA_F);
+  if (!measured[PS]) guess(out, PS, setpoint, all.trustSetpoint ? GUESSED_SUPPLY_SIGMA_F : UNMEASURED_SIGMA_F);
   if (!measured[SR]) guess(out, SR, measured[PR] ? (temperatures[PR] as number) : setpoint + rise, GUESSED_RETURN_SIGMA_F);
   if (!measured[SS]) guess(out, SS, temperatures[PS] as number, UNMEASURED_SIGMA_F);
 }

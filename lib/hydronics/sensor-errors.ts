@@ -59,6 +59,8 @@ export interface SensorErrors {
   /** What departs from two ideal tees in each interval, however many readings are averaged: F, share of flow (k = 1). */
   misfitF: number;
   misfitShare: number;
+  /** A missing supply may be taken near its set-point: not while sensors are judged, where every bin would repeat it. */
+  trustSetpoint: boolean;
   /** Meters and own sensors throughout. */
   own: SlotErrors;
   /** By running set: with rated flow, with mixed supply, with both. */
@@ -148,6 +150,7 @@ export function errorsOf(
     flowNoise: Float64Array.from(meters),
     misfitF: 0,
     misfitShare: 0,
+    trustSetpoint: true,
     own: pick(OFFSETS, PRIMARY_GAIN, PRIMARY_ZERO, meters),
     rated: sets.map((_, k) => pick(OFFSETS, SET_GAINS + k, -1, rated)),
     mixed: sets.map((_, k) => pick(setOffset(sets.length, k), PRIMARY_GAIN, PRIMARY_ZERO, meters)),

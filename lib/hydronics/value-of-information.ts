@@ -125,7 +125,7 @@ export function furtherSensors(record: Measurements, plant: PlantModel, calibrat
   const values = emptySlotValues();
   const [reading, trial] = [emptySlotReading(), emptySlotReading()];
   const [verdict, again] = [emptyVerdict(), emptyVerdict()];
-  const weighing = emptyWeighing(calibration.shareScale, measurements.stepMinutes);
+  const weighing = emptyWeighing(calibration.shareScale, calibration.swingShare);
   const inGpm = loop.flows.some((flow) => flow !== null);
 
   const know = (candidate: Candidate | null): Knowledge => {

@@ -19,6 +19,8 @@ const SIGMA_FREEDOM = 4;
 /** A common-pipe temperature this far from both ends says that the pipe ran both ways, or that the water hunts. */
 const BETWEEN_LOW = 0.25;
 const BETWEEN_HIGH = 0.75;
+/** The same for a way that does not know how much crosses over. */
+const UNSIZED_PROBABILITY = 0.05;
 /** A way less probable than this is left out. */
 const NEGLIGIBLE = 1e-6;
 /** A blended supply less sure than this is not known, F. */
@@ -167,24 +169,27 @@ function unsignedSawBoth(reading: SlotReading): boolean {
 
 /** Bypass, flows, temperatures and the interval of the bypass from both ways' states. */
 function combine(reading: SlotReading, pReverse: number, forward: WayState, reverse: WayState, out: Verdict): void {
-  const sized =
-    (known(forward.heldGpm) || pReverse > 1 - NEGLIGIBLE) && (known(reverse.heldGpm) || pReverse < NEGLIGIBLE);
+  // A way that does not know its size is left out where it is improbable, and leaves the bypass unknown where it is not.
+  let pSized = pReverse;
+  if (!known(forward.heldGpm) && pReverse > 1 - UNSIZED_PROBABILITY) pSized = 1;
+  if (!known(reverse.heldGpm) && pReverse < UNSIZED_PROBABILITY) pSized = 0;
+  const sized = (known(forward.heldGpm) || pSized > 1 - NEGLIGIBLE) && (known(reverse.heldGpm) || pSized < NEGLIGIBLE);
   if (sized) {
-    const forwardGpm = pReverse > 1 - NEGLIGIBLE ? 0 : (1 - pReverse) * forward.heldGpm;
-    const reverseGpm = pReverse < NEGLIGIBLE ? 0 : pReverse * reverse.heldGpm;
+    const forwardGpm = pSized > 1 - NEGLIGIBLE ? 0 : (1 - pSized) * forward.heldGpm;
+    const reverseGpm = pSized < NEGLIGIBLE ? 0 : pSized * reverse.heldGpm;
     out.bypassGpm = forwardGpm - reverseGpm;
-    const decided = pReverse < NEGLIGIBLE ? forward : reverse;
-    if ((pReverse < NEGLIGIBLE || pReverse > 1 - NEGLIGIBLE) && decided.bypassGpm > 4 * decided.bypassSigma) {
+    const decided = pSized < NEGLIGIBLE ? forward : reverse;
+    if ((pSized < NEGLIGIBLE || pSized > 1 - NEGLIGIBLE) && decided.bypassGpm > 4 * decided.bypassSigma) {
       const reach = NINETY_PERCENT_Z * decided.bypassSigma;
       out.bypassLoGpm = out.bypassGpm - reach;
       out.bypassHiGpm = out.bypassGpm + reach;
     } else {
       // The mean can lie outside the central interval only by rounding.
-      out.bypassLoGpm = Math.min(out.bypassGpm, bypassQuantile(0.05, pReverse, forward, reverse));
-      out.bypassHiGpm = Math.max(out.bypassGpm, bypassQuantile(0.95, pReverse, forward, reverse));
+      out.bypassLoGpm = Math.min(out.bypassGpm, bypassQuantile(0.05, pSized, forward, reverse));
+      out.bypassHiGpm = Math.max(out.bypassGpm, bypassQuantile(0.95, pSized, forward, reverse));
     }
   } else clearBypass(out);
-  const primary = mean(forward.mainGpm, reverse.mainGpm - reverse.heldGpm, pReverse);
+  const primary = mean(forward.mainGpm, reverse.mainGpm - reverse.heldGpm, pSized);
   out.primaryFlowGpm = known(primary) ? Math.max(0, primary) : (reading.flows[FP] as number);
   // One subtraction, so that primary less secondary is the bypass to the last digit.
   out.secondaryFlowGpm =

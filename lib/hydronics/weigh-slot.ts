@@ -18,6 +18,11 @@ const HOPELESS_FACTOR = 2;
 
 /** Squared disagreement with the closest way from which a swing within the interval is considered. */
 const ASK_BOTH_CHI_SQUARE = 4;
+/** The same in a record that swings often. */
+const ASK_SWINGING_CHI_SQUARE = 1;
+
+/** Prior probability that the pipe runs both ways within one interval, for a record that has not shown it (common practice). */
+export const usualBothPrior = (stepMinutes: number): number => Math.min(0.2, 0.004 * stepMinutes);
 
 /** Scratch of the weighing of one slot after another. */
 export interface Weighing {
@@ -32,13 +37,13 @@ export interface Weighing {
   both: BothWays;
 }
 
-export const emptyWeighing = (shareScale: number, stepMinutes: number): Weighing => ({
+export const emptyWeighing = (shareScale: number, bothPrior: number): Weighing => ({
   forward: emptyWayFit('forward'),
   reverse: emptyWayFit('reverse'),
   forwardState: emptyWayState(),
   reverseState: emptyWayState(),
   shareScale,
-  bothPrior: Math.min(0.2, 0.004 * stepMinutes),
+  bothPrior,
   both: emptyBothWays(),
 });
 
@@ -66,19 +71,25 @@ export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratc
   const pReverse = 1 / (1 + Math.exp(-logOdds));
   if (logOdds < NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, forward, stretch, shareScale, forwardState);
   if (logOdds > -NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, reverse, stretch, shareScale, reverseState);
-  const bothWays = bothProbability(reading, scratch, closest);
+  const bothWays = bothProbability(reading, forward, reverse, scratch.bothPrior, scratch.both);
   settle(arrangement, reading, pReverse, forward, reverse, forwardState, reverseState, bothWays > 0.5 ? scratch.both : null, out);
   return true;
 }
 
 /** Probability that the pipe ran both ways within the interval; asked only where one way alone does not explain it. */
-function bothProbability(reading: SlotReading, scratch: Weighing, closest: WayFit): number {
-  if (!(closest.chiSquare > ASK_BOTH_CHI_SQUARE)) return 0;
-  weighBothWays(reading, scratch.both);
-  const high = Math.max(scratch.forward.logEvidence, scratch.reverse.logEvidence);
-  const low = Math.min(scratch.forward.logEvidence, scratch.reverse.logEvidence);
-  const oneWay = high + Math.log1p(Math.exp(low - high)) + Math.log(0.5 * (1 - scratch.bothPrior));
-  return 1 / (1 + Math.exp(oneWay - scratch.both.logEvidence - Math.log(scratch.bothPrior)));
+export function bothProbability(
+  reading: SlotReading,
+  forward: WayFit,
+  reverse: WayFit,
+  prior: number,
+  both: BothWays,
+): number {
+  if (!(Math.min(forward.chiSquare, reverse.chiSquare) > (prior > 0.1 ? ASK_SWINGING_CHI_SQUARE : ASK_BOTH_CHI_SQUARE))) return 0;
+  weighBothWays(reading, both);
+  const high = Math.max(forward.logEvidence, reverse.logEvidence);
+  const low = Math.min(forward.logEvidence, reverse.logEvidence);
+  const oneWay = high + Math.log1p(Math.exp(low - high)) + Math.log(0.5 * (1 - prior));
+  return 1 / (1 + Math.exp(oneWay - both.logEvidence - Math.log(prior)));
 }
 
 /** Fits the way that the paired sensors favour, and the other unless those alone rule it out. */
