@@ -1,8 +1,8 @@
 import { SENSOR_ROLES } from './calibration-types';
 import { FP } from './loop-record';
 import type { SlotReading } from './slot-reading';
-import { CONTRASTS } from './way-fit';
-import type { WayFit } from './way-fit';
+import { CONTRASTS } from './contrasts';
+import type { WayFit } from './contrasts';
 import { errorDerivatives } from './way-score';
 
 /** Squared sigmas below which no measurement stands out: 0.95 point of chi-square with one degree of freedom. */
@@ -65,4 +65,3 @@ export function mostAtOdds(reading: SlotReading, fit: WayFit, rated: boolean): n
   }
   return found === 5 + FP && rated ? SENSOR_ROLES.indexOf('ratedFlow') : found;
 }
-

@@ -65,8 +65,7 @@ export function weighBothWays(reading: SlotReading, out: BothWays): void {
   const byTemperature = (ahead - back) * main;
   const ofTemperature = main * main * Math.max(0, vBack + vAhead - 2 * vBoth);
   const byFlow = primary - secondary;
-  const ofFlow =
-    (w[FP * FLOWS + FP] as number) + (w[FS * FLOWS + FS] as number) - 2 * (w[FP * FLOWS + FS] as number);
+  const ofFlow = (w[FP * FLOWS + FP] as number) + (w[FS * FLOWS + FS] as number) - 2 * (w[FP * FLOWS + FS] as number);
   const apart = byFlow - byTemperature;
   const variance = ofTemperature + ofFlow;
   // Density of the secondary reading given the rest, as the one-way fits have it.

@@ -81,7 +81,8 @@ export function calibrationBins(loop: LoopRecord, state: Float64Array, steady: F
   const entering = new Uint8Array(loop.n);
   for (let slot = 0; slot < loop.n; slot += 1) entering[slot] = enters(loop, state, steady, usual, slot) ? 1 : 0;
   const starts: number[] = [];
-  for (let from = 0; from + width <= loop.n; from += width) if (usable(loop, entering, from, from + width)) starts.push(from);
+  for (let from = 0; from + width <= loop.n; from += width)
+    if (usable(loop, entering, from, from + width)) starts.push(from);
   const thin = Math.max(1, Math.ceil(starts.length / MAX_BINS));
   const kept = starts.filter((_, index) => index % thin === 0);
   const count = kept.length;

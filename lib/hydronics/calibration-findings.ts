@@ -1,5 +1,5 @@
 import { MISFIT_F, MISFIT_FLOW } from './sensor-errors';
-import type { CalibrationWork, SpotTerm } from './calibrate';
+import type { CalibrationWork, SpotTerm } from './calibration-work';
 import type { Calibration, CalibrationLimit, SensorFinding, SensorRole, SensorTie } from './calibration-types';
 import { FB, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import { NINETY_PERCENT_Z } from './normal';
@@ -11,7 +11,13 @@ import { KERNEL_VERSION } from './types';
 const CHI_SQUARE_95 = [3.8415, 3.8415, 5.9915, 7.8147, 9.4877, 11.0705] as const;
 /** Below this share of prior variance taken away, a record has not told a sensor's error. */
 const TOLD_LEAST = 0.1;
-const TEMPERATURE_ROLES = ['primarySupplyTemp', 'primaryReturnTemp', 'secondarySupplyTemp', 'secondaryReturnTemp', 'bypassTemp'] as const;
+const TEMPERATURE_ROLES = [
+  'primarySupplyTemp',
+  'primaryReturnTemp',
+  'secondarySupplyTemp',
+  'secondaryReturnTemp',
+  'bypassTemp',
+] as const;
 
 /** Hours of the record that lie clearly on one side. */
 interface Hours {
@@ -36,9 +42,11 @@ function tieOf(place: number, work: CalibrationWork, hours: Hours, told: number)
   if (told < TOLD_LEAST) return { tie: 'none', hours: 0 };
   const both = hours.forward + hours.reverse;
   if (place === PS || place === SS) {
-    if (temperatures[PS] && temperatures[SS] && hours.forward > 0) return { tie: 'supplies-agree', hours: hours.forward };
+    if (temperatures[PS] && temperatures[SS] && hours.forward > 0)
+      return { tie: 'supplies-agree', hours: hours.forward };
   } else if (place === PR || place === SR) {
-    if (temperatures[PR] && temperatures[SR] && hours.reverse > 0) return { tie: 'returns-agree', hours: hours.reverse };
+    if (temperatures[PR] && temperatures[SR] && hours.reverse > 0)
+      return { tie: 'returns-agree', hours: hours.reverse };
   } else if (place !== TB && flows[FB] && flows[FP] && flows[FS]) return { tie: 'flow-balance', hours: both };
   return { tie: 'energy-balance', hours: both };
 }
@@ -54,14 +62,16 @@ export function describeCalibration(
   const hours = clearHours(work);
   const findings: SensorFinding[] = [];
   const describe = (role: SensorRole, kind: 'offset' | 'gain', place: number, channel: number) => {
-    if (!(seen.noise[channel] as number >= 0)) return;
+    if (!((seen.noise[channel] as number) >= 0)) return;
     const unit = kind === 'offset' ? 1 : 100;
     const k = place * p + place;
     const classVariance = (prior[k] as number) * (kind === 'offset' ? work.classScale ** 2 : 1);
     const sigma = Math.sqrt(covariance[k] as number);
     const told = Math.min(1, Math.max(0, 1 - (covariance[k] as number) / classVariance));
     const checked = checks.some((check) => check.place === place);
-    const { tie, hours: evidenceHours } = checked ? { tie: 'spot-check' as const, hours: 0 } : tieOf(place, work, hours, told);
+    const { tie, hours: evidenceHours } = checked
+      ? { tie: 'spot-check' as const, hours: 0 }
+      : tieOf(place, work, hours, told);
     const value = unit * (parameters[place] as number);
     findings.push({
       role,
@@ -111,7 +121,8 @@ function limitsOf(work: CalibrationWork, hours: Hours, checks: readonly SpotTerm
   if (bins.count * bins.hoursEach < 1) limits.push('too-short');
   const flows = [FP, FS, FB].filter((flow) => loop.flows[flow]);
   if (flows.length === 0) limits.push('no-flow');
-  if (loop.temperatures.some((channel) => channel) && !checks.some((check) => check.place < TEMPERATURES)) limits.push('common-offset');
+  if (loop.temperatures.some((channel) => channel) && !checks.some((check) => check.place < TEMPERATURES))
+    limits.push('common-offset');
   if (flows.length > 0 && !checks.some((check) => check.place >= PRIMARY_GAIN)) limits.push('common-gain');
   const total = hours.forward + hours.reverse;
   if (total > 0 && Math.min(hours.forward, hours.reverse) < 0.02 * total) limits.push('one-way-only');

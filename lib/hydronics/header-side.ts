@@ -35,7 +35,11 @@ export interface HeaderStretch {
  * Units   deg F; `shareScale` is the mean share that crosses over in this record. Gaps: without a supply sensor of known place, without reverse flow, or too few stretches: unknown.
  * Source  odds of the two hypotheses; the blend is as likely anywhere between supply and return.
  */
-export function judgeHeader(measurements: Measurements, stretches: readonly HeaderStretch[], shareScale: number): Header {
+export function judgeHeader(
+  measurements: Measurements,
+  stretches: readonly HeaderStretch[],
+  shareScale: number,
+): Header {
   const { headerSupplyF, primarySupplyF, secondarySupplyF } = measurements;
   if (!headerSupplyF) return { side: 'absent', primaryProbability: Number.NaN };
   const beside = primarySupplyF ?? secondarySupplyF;

@@ -54,13 +54,7 @@ export function designPrimaryFlowGpm(plant: PlantModel): number {
 }
 
 /** Flow through one unit: its meter, else its rated flow while its pump runs; unknown where pumps vary their speed. */
-function unitFlow(
-  measurements: Measurements,
-  plant: PlantModel,
-  unit: UnitModel,
-  index: number,
-  slot: number,
-): number {
+function unitFlow(measurements: Measurements, plant: PlantModel, unit: UnitModel, index: number, slot: number): number {
   if (measurements.unitFlowGpm[index]) return at(measurements.unitFlowGpm[index], slot);
   if (plant.primarySpeed === 'variable' && pumpOn(measurements, unit, index, slot) !== 0) return Number.NaN;
   return pumpOn(measurements, unit, index, slot) * unit.flowGpm;
@@ -230,7 +224,9 @@ export function readLoop(
   ];
   // Without a calibration that names them, sets matter only where something hangs on them.
   const hang = sets !== undefined || primary.rated.includes(1) || mixed.includes(1);
-  const running = hang ? runningSets(measurements, plant, sets) : { set: new Int8Array(measurements.n).fill(-1), sets: [] };
+  const running = hang
+    ? runningSets(measurements, plant, sets)
+    : { set: new Int8Array(measurements.n).fill(-1), sets: [] };
   return {
     n: measurements.n,
     stepMinutes: measurements.stepMinutes,

@@ -73,8 +73,7 @@ export function normalQuantile(probability: number): number {
   }
   const tail = probability < 0.5 ? probability : 1 - probability;
   const t = Math.sqrt(-2 * Math.log(tail));
-  const start =
-    t - (2.515517 + t * (0.802853 + t * 0.010328)) / (1 + t * (1.432788 + t * (0.189269 + t * 0.001308)));
+  const start = t - (2.515517 + t * (0.802853 + t * 0.010328)) / (1 + t * (1.432788 + t * (0.189269 + t * 0.001308)));
   let z = -start;
   for (let step = 0; step < 2; step += 1) {
     const miss = (normalCdf(z) - tail) / normalDensity(z);

@@ -64,7 +64,14 @@ export function readValues(loop: LoopRecord, slot: number, out: SlotValues): voi
   }
 }
 
-function readTemperatures(slot: SlotValues, errors: SlotErrors, all: SensorErrors, setpoint: number, rise: number, out: SlotReading): void {
+function readTemperatures(
+  slot: SlotValues,
+  errors: SlotErrors,
+  all: SensorErrors,
+  setpoint: number,
+  rise: number,
+  out: SlotReading,
+): void {
   const { temperatures, measured, temperatureCovariance } = out;
   const lasting = errors.offsetOffset;
   const misfit = all.misfitF * all.misfitF;
@@ -91,7 +98,8 @@ function readTemperatures(slot: SlotValues, errors: SlotErrors, all: SensorError
     temperatureCovariance[k] = (temperatureCovariance[k] as number) + variance + (slot.moving[i] as number) + misfit;
   }
   if (!measured[PS]) guess(out, PS, setpoint, all.trustSetpoint ? GUESSED_SUPPLY_SIGMA_F : UNMEASURED_SIGMA_F);
-  if (!measured[SR]) guess(out, SR, measured[PR] ? (temperatures[PR] as number) : setpoint + rise, GUESSED_RETURN_SIGMA_F);
+  if (!measured[SR])
+    guess(out, SR, measured[PR] ? (temperatures[PR] as number) : setpoint + rise, GUESSED_RETURN_SIGMA_F);
   if (!measured[SS]) guess(out, SS, temperatures[PS] as number, UNMEASURED_SIGMA_F);
 }
 
@@ -112,12 +120,20 @@ function guess(out: SlotReading, i: number, value: number, sigmaF: number): void
   out.temperatureCovariance[i * TEMPERATURES + i] = sigmaF * sigmaF;
 }
 
-function readFlows(slot: SlotValues, flowErrors: SlotErrors, misfit: number, designPrimary: number, designSecondary: number, out: SlotReading): void {
+function readFlows(
+  slot: SlotValues,
+  flowErrors: SlotErrors,
+  misfit: number,
+  designPrimary: number,
+  designSecondary: number,
+  out: SlotReading,
+): void {
   const { flows, flowCovariance: w } = out;
   const { gain, zero, gainGain, gainZero, zeroZero, noise } = flowErrors;
   for (let i = 0; i < FLOWS; i += 1) {
     const design = i === FP ? designPrimary : designSecondary;
-    const corrected = ((slot.values[TEMPERATURES + i] as number) - (zero[i] as number) * design) / (1 + (gain[i] as number));
+    const corrected =
+      ((slot.values[TEMPERATURES + i] as number) - (zero[i] as number) * design) / (1 + (gain[i] as number));
     flows[i] = i === FB || corrected > 0 || corrected !== corrected ? corrected : 0;
   }
   for (let i = 0; i < FLOWS; i += 1) {
@@ -137,7 +153,8 @@ function readFlows(slot: SlotValues, flowErrors: SlotErrors, misfit: number, des
         di * dj * (zeroZero[ij] as number);
       value += fi * fj * flowNoise(slot, noise, i, j);
       if (i === j) value += fi * fi * misfit * misfit;
-      if (i === j && (slot.leanOn[TEMPERATURES + i] as number) >= 0) value += slot.leanVariance[TEMPERATURES + i] as number;
+      if (i === j && (slot.leanOn[TEMPERATURES + i] as number) >= 0)
+        value += slot.leanVariance[TEMPERATURES + i] as number;
       w[ij] = value;
       w[ji] = value;
     }
@@ -164,9 +181,7 @@ function readCross(flowErrors: SlotErrors, designPrimary: number, designSecondar
     const design = j === FP ? designPrimary : designSecondary;
     for (let i = 0; i < TEMPERATURES; i += 1) {
       const k = i * FLOWS + j;
-      crossCovariance[k] = measured[i]
-        ? flow * (offsetGain[k] as number) + design * (offsetZero[k] as number)
-        : 0;
+      crossCovariance[k] = measured[i] ? flow * (offsetGain[k] as number) + design * (offsetZero[k] as number) : 0;
     }
   }
 }
@@ -207,6 +222,9 @@ export function fillReading(
 function measuredInRange(reading: SlotReading): boolean {
   const pipe = reading.temperatures[TB] as number;
   const sigma = Math.sqrt(reading.temperatureCovariance[TB * TEMPERATURES + TB] as number);
-  const warm = Math.max(reading.temperatures[SR] as number, reading.temperatures[PR] === reading.temperatures[PR] ? (reading.temperatures[PR] as number) : -Infinity);
+  const warm = Math.max(
+    reading.temperatures[SR] as number,
+    reading.temperatures[PR] === reading.temperatures[PR] ? (reading.temperatures[PR] as number) : -Infinity,
+  );
   return !(pipe > warm + 4 * sigma + 2);
 }

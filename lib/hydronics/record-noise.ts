@@ -24,7 +24,9 @@ export function medianOf(values: Float64Array, count: number): number {
   if (count === 0) return Number.NaN;
   const sorted = values.subarray(0, count).sort();
   const middle = count >> 1;
-  return count % 2 === 1 ? (sorted[middle] as number) : ((sorted[middle - 1] as number) + (sorted[middle] as number)) / 2;
+  return count % 2 === 1
+    ? (sorted[middle] as number)
+    : ((sorted[middle - 1] as number) + (sorted[middle] as number)) / 2;
 }
 
 /** Least step between readings: the smallest change, when all of a sample of changes are multiples of it or most are none. */
@@ -81,7 +83,7 @@ export function recordNoise(loop: LoopRecord, use: Float64Array): RecordNoise {
     }
     if (count < MIN_TRIPLES) return;
     increment[index] = incrementOf(channel, stride);
-    const step = index < TEMPERATURES ? (increment[index] as number) : 0;
+    const step = index < TEMPERATURES ? (increment[index]) : 0;
     const seen = (MEDIAN_TO_SIGMA * medianOf(differences, count)) / SECOND_DIFFERENCE;
     noise[index] = Math.max(seen, step / Math.sqrt(12));
   });

@@ -47,8 +47,7 @@ function runningSums(channel: Float64Array, sigma: number, share: number, varian
 function runningChanges(loop: LoopRecord, state: Float64Array): Int32Array {
   const changes = new Int32Array(loop.n + 1);
   for (let slot = 0; slot < loop.n; slot += 1) {
-    const changed =
-      slot > 0 && (state[slot] !== state[slot - 1] || loop.set[slot] !== loop.set[slot - 1]);
+    const changed = slot > 0 && (state[slot] !== state[slot - 1] || loop.set[slot] !== loop.set[slot - 1]);
     changes[slot + 1] = (changes[slot] as number) + (changed ? 1 : 0);
   }
   return changes;
@@ -68,7 +67,9 @@ function halfWidths(stepMinutes: number, reachMinutes: number): number[] {
 }
 
 /** Widest half-width about a slot whose rings all join, over the series that have a value there; 0 for none. */
-function joinedWidth(series: readonly Sums[], widths: readonly number[],
+function joinedWidth(
+  series: readonly Sums[],
+  widths: readonly number[],
   changes: Int32Array,
   sigmas: number,
   slot: number,

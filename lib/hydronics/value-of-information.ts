@@ -146,7 +146,8 @@ export function furtherSensors(record: Measurements, plant: PlantModel, calibrat
       if (said.direction === 'unknown') sum.unknown += 1;
       const half = inGpm
         ? (said.bypassHiGpm - said.bypassLoGpm) / 2
-        : 1.645 * Math.sqrt(said.reverseProbability > 0.5 ? weighing.reverse.shareVariance : weighing.forward.shareVariance);
+        : 1.645 *
+          Math.sqrt(said.reverseProbability > 0.5 ? weighing.reverse.shareVariance : weighing.forward.shareVariance);
       if (!Number.isFinite(half)) continue;
       sum.halfWidth += half;
       sum.counted += 1;

@@ -4,7 +4,7 @@ import { FB, FLOWS, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-reco
 import { NINETY_PERCENT_Z, normalCdf, normalQuantile } from './normal';
 import type { SlotReading } from './slot-reading';
 import type { Arrangement, Direction, Reason } from './types';
-import type { WayFit } from './way-fit';
+import type { WayFit } from './contrasts';
 import type { WayState } from './way-state';
 
 /** A direction is named when its probability is at least this. */
@@ -125,7 +125,8 @@ function belowBand(mu: number, sigma: number, band: number): number {
 
 /** Probability that the bypass is within `band` of zero. */
 function stillProbability(band: number, pReverse: number, forward: WayState, reverse: WayState): number {
-  const ahead = pReverse < 1 - NEGLIGIBLE ? (1 - pReverse) * belowBand(forward.bypassGpm, forward.bypassSigma, band) : 0;
+  const ahead =
+    pReverse < 1 - NEGLIGIBLE ? (1 - pReverse) * belowBand(forward.bypassGpm, forward.bypassSigma, band) : 0;
   const back = pReverse > NEGLIGIBLE ? pReverse * belowBand(reverse.bypassGpm, reverse.bypassSigma, band) : 0;
   return ahead + back;
 }
@@ -149,7 +150,12 @@ function whyUnknown(reading: SlotReading): Reason {
   const span = (t[SR] as number) - (t[PS] as number);
   const v = reading.temperatureCovariance;
   const spanSigma = Math.sqrt(
-    Math.max(0, (v[PS * TEMPERATURES + PS] as number) + (v[SR * TEMPERATURES + SR] as number) - 2 * (v[PS * TEMPERATURES + SR] as number)),
+    Math.max(
+      0,
+      (v[PS * TEMPERATURES + PS] as number) +
+        (v[SR * TEMPERATURES + SR] as number) -
+        2 * (v[PS * TEMPERATURES + SR] as number),
+    ),
   );
   const place = ((t[TB] as number) - (t[PS] as number)) / span;
   const spanKnown = (measured[PS] || measured[SS]) && (measured[SR] || measured[PR]) && span > 2 * spanSigma;
@@ -201,7 +207,9 @@ function combine(reading: SlotReading, pReverse: number, forward: WayState, reve
     out.temperatures[i] = mean(forward.temperatures[i] as number, reverse.temperatures[i] as number, p);
   }
   const gap =
-    p > NEGLIGIBLE && p < 1 - NEGLIGIBLE ? (forward.temperatures[SS] as number) - (reverse.temperatures[SS] as number) : 0;
+    p > NEGLIGIBLE && p < 1 - NEGLIGIBLE
+      ? (forward.temperatures[SS] as number) - (reverse.temperatures[SS] as number)
+      : 0;
   const forwardVariance = p > 1 - NEGLIGIBLE ? 0 : (1 - p) * forward.blendVariance;
   const reverseVariance = p < NEGLIGIBLE ? 0 : p * reverse.blendVariance;
   out.blendSigma = Math.sqrt(forwardVariance + reverseVariance + p * (1 - p) * gap * gap);

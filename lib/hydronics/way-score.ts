@@ -1,8 +1,8 @@
 import { FB, FP, FS, PS, TB } from './loop-record';
 import { BYPASS_GAIN, BYPASS_ZERO, SECONDARY_GAIN, SECONDARY_ZERO } from './sensor-errors';
 import type { SlotReading } from './slot-reading';
-import { CONTRASTS, bypassThisWay, partsOf } from './way-fit';
-import type { WayFit } from './way-fit';
+import { CONTRASTS, partsOf } from './contrasts';
+import type { WayFit } from './contrasts';
 
 /** Lasting errors that bear on one slot: at most five offsets and a gain and a zero of each of three flows. */
 const TOUCHED = 11;

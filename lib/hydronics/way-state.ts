@@ -1,7 +1,7 @@
 import { FB, FLOWS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import type { SlotReading } from './slot-reading';
-import { bypassThisWay, CONTRASTS, partsOf } from './way-fit';
-import type { Parts, WayFit } from './way-fit';
+import { bypassThisWay, CONTRASTS, partsOf } from './contrasts';
+import type { Parts, WayFit } from './contrasts';
 import { truncationShift } from './normal';
 
 /** The loop's state on the supposition of one way: reconciled values, and the doubt of the two that are shown. */
@@ -147,8 +147,7 @@ function settleBypass(reading: SlotReading, parts: Parts, fit: WayFit, out: WayS
       const rest = 1 - share;
       mainGpm /= rest;
       const slope = mainGpm / rest;
-      mainVariance =
-        mainVariance / (rest * rest) + slope * slope * fit.shareVariance + (2 * slope * withShare) / rest;
+      mainVariance = mainVariance / (rest * rest) + slope * slope * fit.shareVariance + (2 * slope * withShare) / rest;
       withShare = withShare / rest + slope * fit.shareVariance;
     }
     out.mainGpm = mainGpm;
@@ -176,7 +175,13 @@ function settleBypass(reading: SlotReading, parts: Parts, fit: WayFit, out: WayS
  * Source  conditional mean and variance of errors with a free parameter (generalized least squares): x = y - g' C^-1 r,
  *         var = V - g' C^-1 g + (g' C^-1 s)^2 var(share).
  */
-export function stateOfWay(reading: SlotReading, fit: WayFit, stretch: number, shareScale: number, out: WayState): void {
+export function stateOfWay(
+  reading: SlotReading,
+  fit: WayFit,
+  stretch: number,
+  shareScale: number,
+  out: WayState,
+): void {
   const parts = partsOf(fit.way);
   const { temperatures, measured, temperatureCovariance } = reading;
   const known = fit.share === fit.share;
@@ -244,4 +249,3 @@ function holdSign(out: WayState, shareVariance: number, shareScale: number): voi
   out.heldGpm = out.bypassGpm + sigma * shift;
   out.heldVariance = sigma * sigma * Math.max(0, 1 - shift * (shift + z));
 }
-

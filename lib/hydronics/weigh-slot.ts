@@ -4,8 +4,9 @@ import type { SlotReading } from './slot-reading';
 import type { Arrangement } from './types';
 import { excessDisagreement, settle, stretchOf } from './verdict';
 import type { Verdict } from './verdict';
-import { emptyWayFit, fitWay, leastDisagreement, ruleOut } from './way-fit';
-import type { WayFit } from './way-fit';
+import { emptyWayFit } from './contrasts';
+import { fitWay, leastDisagreement, ruleOut } from './way-fit';
+import type { WayFit } from './contrasts';
 import { emptyWayState, stateOfWay } from './way-state';
 import type { WayState } from './way-state';
 
@@ -72,7 +73,17 @@ export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratc
   if (logOdds < NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, forward, stretch, shareScale, forwardState);
   if (logOdds > -NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, reverse, stretch, shareScale, reverseState);
   const bothWays = bothProbability(reading, forward, reverse, scratch.bothPrior, scratch.both);
-  settle(arrangement, reading, pReverse, forward, reverse, forwardState, reverseState, bothWays > 0.5 ? scratch.both : null, out);
+  settle(
+    arrangement,
+    reading,
+    pReverse,
+    forward,
+    reverse,
+    forwardState,
+    reverseState,
+    bothWays > 0.5 ? scratch.both : null,
+    out,
+  );
   return true;
 }
 
@@ -84,7 +95,8 @@ export function bothProbability(
   prior: number,
   both: BothWays,
 ): number {
-  if (!(Math.min(forward.chiSquare, reverse.chiSquare) > (prior > 0.1 ? ASK_SWINGING_CHI_SQUARE : ASK_BOTH_CHI_SQUARE))) return 0;
+  if (!(Math.min(forward.chiSquare, reverse.chiSquare) > (prior > 0.1 ? ASK_SWINGING_CHI_SQUARE : ASK_BOTH_CHI_SQUARE)))
+    return 0;
   weighBothWays(reading, both);
   const high = Math.max(forward.logEvidence, reverse.logEvidence);
   const low = Math.min(forward.logEvidence, reverse.logEvidence);

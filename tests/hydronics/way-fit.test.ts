@@ -3,7 +3,7 @@ import { choleskyInPlace, choleskyLogDeterminant, inverseQuadraticForm } from '@
 import { normalCdf } from '@/lib/hydronics/normal';
 import type { SlotReading } from '@/lib/hydronics/slot-reading';
 import { leastDisagreement } from '@/lib/hydronics/way-fit';
-import type { Way, WayFit } from '@/lib/hydronics/way-fit';
+import type { Way, WayFit } from '@/lib/hydronics/contrasts';
 import { randomSource } from '../support/simulation/random';
 import {
   COUNT,

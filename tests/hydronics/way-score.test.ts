@@ -9,8 +9,9 @@ import {
   SECONDARY_ZERO,
 } from '@/lib/hydronics/sensor-errors';
 import type { SlotReading } from '@/lib/hydronics/slot-reading';
-import { CONTRASTS, emptyWayFit, fitWay } from '@/lib/hydronics/way-fit';
-import type { Way, WayFit } from '@/lib/hydronics/way-fit';
+import { CONTRASTS, emptyWayFit } from '@/lib/hydronics/contrasts';
+import { fitWay } from '@/lib/hydronics/way-fit';
+import type { Way, WayFit } from '@/lib/hydronics/contrasts';
 import { errorDerivatives, profileScore } from '@/lib/hydronics/way-score';
 import { choleskyInPlace, inverseQuadraticForm } from '@/lib/hydronics/linear-algebra';
 import { randomSource } from '../support/simulation/random';

@@ -1,8 +1,13 @@
 import { FLOWS, PR, TB, TEMPERATURES } from '@/lib/hydronics/loop-record';
 import { emptySlotReading } from '@/lib/hydronics/slot-reading';
 import type { SlotReading } from '@/lib/hydronics/slot-reading';
-import { CONTRASTS, emptyWayFit, fitWay, partsOf } from '@/lib/hydronics/way-fit';
-import type { Way, WayFit } from '@/lib/hydronics/way-fit';
+import { CONTRASTS, emptyWayFit, partsOf } from '@/lib/hydronics/contrasts';
+import { fitWay } from '@/lib/hydronics/way-fit';
+import type { Way, WayFit } from '@/lib/hydronics/contrasts';
+import { emptyVerdict } from '@/lib/hydronics/verdict';
+import type { Verdict } from '@/lib/hydronics/verdict';
+import { emptyWeighing, usualBothPrior, weighSlot } from '@/lib/hydronics/weigh-slot';
+import type { Weighing } from '@/lib/hydronics/weigh-slot';
 import type { RandomSource } from '../../support/simulation/random';
 
 /** Order of everything one interval can measure: PS PR SS SR TB, FP FS FB. */
@@ -97,6 +102,17 @@ export function fitted(reading: SlotReading, way: Way, shareScale = Number.POSIT
   const fit = emptyWayFit(way);
   fitWay(reading, fit, shareScale);
   return fit;
+}
+
+/** What weighs one interval of five minutes, without a record's own spread of shares. */
+export const weighing = (shareScale = Number.POSITIVE_INFINITY, bothPrior = usualBothPrior(5)): Weighing =>
+  emptyWeighing(shareScale, bothPrior);
+
+/** The verdict on one reading of an ordinary decoupler. */
+export function verdictOf(reading: SlotReading, scratch: Weighing = weighing()): Verdict {
+  const verdict = emptyVerdict();
+  if (!weighSlot('primary-secondary', reading, scratch, verdict)) throw new Error('nothing bears on the direction');
+  return verdict;
 }
 
 /** Comparisons of a fit at a share. */
