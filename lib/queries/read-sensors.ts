@@ -79,6 +79,7 @@ export async function readSensors(
   const startMs = dayStartMs(stretch.fromDay);
   const slotAt = (epochMs: number) => Math.ceil((epochMs - startMs) / MINUTE_MS / plant.stepMinutes);
   const [firstSlot, endSlot] = [slotAt(period.fromMs), slotAt(period.toMs)];
+  const points = await pointValues(em, owner, blocks, stretch, plant.stepMinutes);
   const { stretches, suspicions } = inspectSensors(measurements, model);
   const inForce = await calibrationInForce(em, owner, fromDay, toDay);
   const calibration = inForce && calibrationOf(inForce.detail);
@@ -103,7 +104,7 @@ export async function readSensors(
         : null,
     sensors: sensorRows({
       arrangement,
-      points: await pointValues(em, owner, blocks, stretch, plant.stepMinutes),
+      points,
       measurements,
       stretches,
       calibration,
@@ -129,8 +130,8 @@ export async function readSensors(
     }),
     furtherSensors:
       // One of another kernel is shown, and worked out again when its month is; this kernel cannot reckon with it.
-      calibration && inForce?.kernel_version === KERNEL_VERSION && passed.n > 0
-        ? furtherSensors(passed, model, calibration).map(furtherRecord)
+      calibration && inForce.kernel_version === KERNEL_VERSION && passed.n > 0
+        ? furtherSensors(passed, model, calibration).map((each) => furtherRecord(each, points))
         : [],
     settingsRevision: inForce?.settings_revision ?? plant.settingsRevision,
     kernelVersion: inForce?.kernel_version ?? KERNEL_VERSION,
@@ -145,6 +146,7 @@ function recorded({ dataFrom, dataThrough, stepMinutes }: PlantOfSensors, period
   return { fromMs, toMs: Math.max(fromMs + 1, Math.min(period.toMs, end)) };
 }
 
+/** Of the calibrations in force within a stretch of days that of most of them; the later one of equals. */
 async function calibrationInForce(
   em: EntityManager,
   owner: { organizationId: string; plantId: string },
@@ -162,7 +164,8 @@ async function calibrationInForce(
   }>(
     em,
     `select id, valid_from, valid_to, settings_revision, kernel_version, created_at, detail from calibration
-     where organization_id = $1 and plant_id = $2 and valid_to >= $3 and valid_from <= $4 order by valid_from desc limit 1`,
+     where organization_id = $1 and plant_id = $2 and valid_to >= $3 and valid_from <= $4
+     order by least(valid_to, $4::date) - greatest(valid_from, $3::date) desc, valid_from desc limit 1`,
     [owner.organizationId, owner.plantId, fromDay, toDay],
   );
 }
@@ -202,8 +205,10 @@ function headerOf(calibration: Calibration | null): Sensors['header'] {
   return { side, primaryProbability, sentence: headerSentence({ side, primaryProbability }) };
 }
 
-function furtherRecord(further: Further): FurtherSensor {
-  const { role, kind, sigma, unit, nowHalfWidth, withHalfWidth, nowUnknownHours, withUnknownHours } = further;
+function furtherRecord(further: Further, points: readonly SensorPoint[]): FurtherSensor {
+  const { role, sigma, unit, nowHalfWidth, withHalfWidth, nowUnknownHours, withUnknownHours } = further;
+  // A meter that is there and silent for a while is not one to be bought: it is one to be looked after.
+  const kind = points.some((point) => point.role === role) ? 'better' : further.kind;
   const temperature = role.endsWith('Temp');
   const gpm = (value: number) => (unit === 'gpm' ? figure(value) : null);
   const share = (value: number) => (unit === 'share' ? figure(value) : null);

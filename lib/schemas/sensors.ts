@@ -82,7 +82,7 @@ export const Sensors = z.object({
   from: z.string(),
   to: z.string(),
   stepMinutes: z.number(),
-  /** The calibration in force at the end of the period; null: none has been fitted. */
+  /** The calibration in force on most days of the period; null: none has been fitted. */
   calibration: z
     .object({
       id: z.number().int(),
