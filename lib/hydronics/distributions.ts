@@ -1,4 +1,4 @@
-import { normalCdf, normalDensity } from './normal';
+import { normalQuantile } from './normal';
 
 /** Relative accuracy at which the expansions stop. */
 const ENOUGH = 1e-16;
@@ -105,25 +105,6 @@ function boundedRoot(low: number, high: number, start: number, miss: (x: number)
     x = moved;
   }
   return x;
-}
-
-/**
- * Quantile of the standard normal distribution.
- *
- * Throws  RangeError when p is not between 0 and 1. Relative error below 1e-12.
- * Source  start: Abramowitz & Stegun (1964), 26.2.22; then Newton's method on normalCdf.
- */
-export function normalQuantile(p: number): number {
-  checkProbability('normalQuantile', p, 1);
-  if (p > 0.5) return -normalQuantile(1 - p);
-  if (p === 0.5) return 0;
-  const t = Math.sqrt(-2 * Math.log(p));
-  const start = -(t - (2.30753 + 0.27061 * t) / (1 + 0.99229 * t + 0.04481 * t * t));
-  // On the logarithm the tail is nearly a parabola, so that the steps do not overshoot.
-  return boundedRoot(-40, 0, Math.min(start, -1e-12), (z) => {
-    const tail = normalCdf(z);
-    return { value: Math.log(tail / p), slope: normalDensity(z) / tail };
-  });
 }
 
 /** Probability that Student's t with so many degrees of freedom exceeds t >= 0. */
