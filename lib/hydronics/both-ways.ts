@@ -6,6 +6,9 @@ const LOG_TWO_PI = Math.log(2 * Math.PI);
 /** Largest mean share either way within one interval: the prior is even on 0 to here for both. */
 const LARGEST_SHARE = 0.5;
 
+/** A swing is about balance: its smaller share is at least this part of the larger, or it is one way with something else. */
+const LEAST_OF_LARGER = 0.25;
+
 /** A slot in which the pipe ran both ways: mean share each way (of the larger main), and how likely the readings are. */
 export interface BothWays {
   logEvidence: number;
@@ -32,7 +35,7 @@ function between(v: Float64Array, a: readonly number[], b: readonly number[]): n
  * Weighs the third possibility: within one interval the common pipe ran forward for a while and backward for a while, so
  * that the means show supply warmed by `back` and return diluted by `ahead` of the span at once:
  *   SS - PS = back (SR - PS),   SR - PR = ahead (SR - PS),   Fp - Fs = (ahead - back) main
- * Both shares even on 0 to one half, integrated over. Worked out only where supply and return are both measured on both
+ * Both shares even on 0 to one half, integrated over, the smaller at least a quarter of the larger. Worked out only where supply and return are both measured on both
  * sides: with less, a mixture cannot be told from one way.
  *
  * Units   mixing scale, gpm. Gaps: log evidence -Infinity where it cannot be told.
@@ -46,7 +49,7 @@ export function weighBothWays(reading: SlotReading, out: BothWays): void {
   const span = (t[SR] as number) - (t[PS] as number);
   const back = ((t[SS] as number) - (t[PS] as number)) / span;
   const ahead = ((t[SR] as number) - (t[PR] as number)) / span;
-  if (!(span > 0 && back > 0 && ahead > 0)) return;
+  if (!(span > 0 && Math.min(back, ahead) > LEAST_OF_LARGER * Math.max(back, ahead))) return;
   const rise = [-(1 - back), 0, 1, -back];
   const fall = [-ahead, -1, 0, 1 - ahead];
   const vBack = between(v, rise, rise) / (span * span);

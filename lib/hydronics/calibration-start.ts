@@ -53,7 +53,7 @@ function startsOf(work: CalibrationWork): Float64Array[] {
     if (count === 0) return;
     const low = apart.subarray(0, count).sort()[Math.floor(CORNER_QUANTILE * count)] as number;
     corner[warm] = Math.max(-1, Math.min(1, low / 2));
-    corner[cold] = -(corner[warm]);
+    corner[cold] = -corner[warm];
   };
   pair(PS, SS);
   pair(PR, SR);

@@ -83,7 +83,7 @@ export function recordNoise(loop: LoopRecord, use: Float64Array): RecordNoise {
     }
     if (count < MIN_TRIPLES) return;
     increment[index] = incrementOf(channel, stride);
-    const step = index < TEMPERATURES ? (increment[index]) : 0;
+    const step = index < TEMPERATURES ? increment[index] : 0;
     const seen = (MEDIAN_TO_SIGMA * medianOf(differences, count)) / SECOND_DIFFERENCE;
     noise[index] = Math.max(seen, step / Math.sqrt(12));
   });

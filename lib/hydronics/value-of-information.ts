@@ -4,6 +4,7 @@ import { FB, FLOWS, FP, FS, PR, PS, readLoop, SR, SS, TB, TEMPERATURES } from '.
 import { mixingScale } from './mixing-scale';
 import { emptySlotValues, fillReading } from './read-slot';
 import { errorsAtSlot, errorsOfCalibration } from './sensor-errors';
+import { copyReading } from './set-aside';
 import { slotAverager } from './slot-average';
 import { emptySlotReading } from './slot-reading';
 import type { SlotReading } from './slot-reading';
@@ -43,19 +44,6 @@ const CANDIDATES: readonly Candidate[] = [
   { role: 'secondaryFlow', index: FS, flow: true, sigma: NEW_FLOW_PERCENT },
   { role: 'bypassFlow', index: FB, flow: true, sigma: NEW_BYPASS_PERCENT },
 ];
-
-/** A copy of a reading, so that one sensor more does not disturb the next trial. */
-function copyReading(from: SlotReading, to: SlotReading): void {
-  to.temperatures.set(from.temperatures);
-  to.measured.set(from.measured);
-  to.temperatureCovariance.set(from.temperatureCovariance);
-  to.flows.set(from.flows);
-  to.flowCovariance.set(from.flowCovariance);
-  to.crossCovariance.set(from.crossCovariance);
-  to.bypassUnsigned = from.bypassUnsigned;
-  to.rated = from.rated;
-  to.shutSigma = from.shutSigma;
-}
 
 /** Puts a further sensor into a reading at the value the estimate expects there, independent of all others. */
 function addSensor(reading: SlotReading, candidate: Candidate, verdict: Verdict): boolean {

@@ -1,5 +1,9 @@
 import { emptyBothWays, weighBothWays } from './both-ways';
 import type { BothWays } from './both-ways';
+import { SENSOR_ROLES } from './calibration-types';
+import { FP, TEMPERATURES } from './loop-record';
+import { copyReading, oddReading, setAside } from './set-aside';
+import { emptySlotReading } from './slot-reading';
 import type { SlotReading } from './slot-reading';
 import type { Arrangement } from './types';
 import { excessDisagreement, settle, stretchOf } from './verdict';
@@ -36,6 +40,8 @@ export interface Weighing {
   /** Prior probability that the pipe ran both ways within one interval. */
   bothPrior: number;
   both: BothWays;
+  /** The reading without the odd one. */
+  trial: SlotReading;
 }
 
 export const emptyWeighing = (shareScale: number, bothPrior: number): Weighing => ({
@@ -46,6 +52,7 @@ export const emptyWeighing = (shareScale: number, bothPrior: number): Weighing =
   shareScale,
   bothPrior,
   both: emptyBothWays(),
+  trial: emptySlotReading(),
 });
 
 /**
@@ -54,7 +61,7 @@ export const emptyWeighing = (shareScale: number, bothPrior: number): Weighing =
  * Units   as SlotReading. A variable-primary plant's bypass runs forward or not at all.
  */
 export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratch: Weighing, out: Verdict): boolean {
-  const { forward, reverse, forwardState, reverseState, shareScale } = scratch;
+  const { forward, reverse, forwardState, shareScale } = scratch;
   const oneWay = arrangement === 'variable-primary';
   if (oneWay) {
     fitWay(reading, forward, shareScale);
@@ -63,6 +70,26 @@ export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratc
     settle(arrangement, reading, 0, forward, forward, forwardState, forwardState, null, out);
     return true;
   }
+  if (!weighBoth(arrangement, reading, scratch, out)) return false;
+  if (out.reason !== 'sensors contradict') return true;
+  const closest = excessDisagreement(forward) < excessDisagreement(reverse) ? forward : reverse;
+  const { chiSquare, redundancy } = closest;
+  const odd = oddReading(reading, closest, shareScale);
+  if (odd < 0) return true;
+  copyReading(reading, scratch.trial);
+  setAside(scratch.trial, odd);
+  weighBoth(arrangement, scratch.trial, scratch, out);
+  // The disagreement that was found stays on record, with the reading that made it.
+  out.chiSquare = chiSquare;
+  out.redundancy = redundancy;
+  out.atOdds = odd === TEMPERATURES + FP && reading.rated ? RATED_FLOW : odd;
+  return true;
+}
+const RATED_FLOW = SENSOR_ROLES.indexOf('ratedFlow');
+
+/** Weighs both ways on one reading; false when nothing measured bears on the direction. */
+function weighBoth(arrangement: Arrangement, reading: SlotReading, scratch: Weighing, out: Verdict): boolean {
+  const { forward, reverse, forwardState, reverseState, shareScale } = scratch;
   fitBoth(reading, forward, reverse, shareScale);
   if (!forward.informed && !reverse.informed) return false;
   const closest = excessDisagreement(forward) < excessDisagreement(reverse) ? forward : reverse;
@@ -73,17 +100,8 @@ export function weighSlot(arrangement: Arrangement, reading: SlotReading, scratc
   if (logOdds < NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, forward, stretch, shareScale, forwardState);
   if (logOdds > -NEGLIGIBLE_LOG_ODDS) stateOfWay(reading, reverse, stretch, shareScale, reverseState);
   const bothWays = bothProbability(reading, forward, reverse, scratch.bothPrior, scratch.both);
-  settle(
-    arrangement,
-    reading,
-    pReverse,
-    forward,
-    reverse,
-    forwardState,
-    reverseState,
-    bothWays > 0.5 ? scratch.both : null,
-    out,
-  );
+  const both = bothWays > 0.5 ? scratch.both : null;
+  settle(arrangement, reading, pReverse, forward, reverse, forwardState, reverseState, both, out);
   return true;
 }
 
