@@ -213,12 +213,19 @@ export function readLoop(
     ofUnits: readonly (Float64Array | undefined)[] = [],
     marks: Uint8Array = unmarked,
   ) => temperatureChannel(own, ofUnits, measurements, plant, scale, marks);
+  const secondarySupply = channel(measurements.secondarySupplyF);
+  // The sensor sits behind the distribution pumps: the tee sends out what it reads less their heat.
+  const rise = plant.distributionRiseF ?? 0;
+  if (secondarySupply && rise > 0) {
+    for (let slot = 0; slot < measurements.n; slot += 1)
+      secondarySupply[slot] = (secondarySupply[slot] as number) - rise;
+  }
   const primary = primaryFlow(measurements, plant);
   const signed = measurements.bypassFlowGpm;
   const temperatures = [
     channel(measurements.primarySupplyF, measurements.unitLeavingF, mixed),
     channel(measurements.primaryReturnF, measurements.unitEnteringF),
-    channel(measurements.secondarySupplyF),
+    secondarySupply,
     channel(measurements.secondaryReturnF),
     channel(measurements.bypassF),
   ];

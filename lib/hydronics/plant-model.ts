@@ -1,4 +1,6 @@
 import { deltaTFromTonsF, flowFromTonsGpm } from './design-flow';
+import { specificHeatBtuPerLbF } from './fluids';
+import { pumpRiseF } from './pumps';
 import type { Arrangement, DistributionPumpsModel, Fluid, PlantModel, SensorModel, UnitModel } from './types';
 
 /** The parts of a plant's settings that the kernel reads; what nobody has given is absent. */
@@ -146,6 +148,13 @@ export function plantModelFromSettings(
   const loadDeltaTF = assume(design.loadDeltaTF, 'design.loadDeltaTF', unitDeltaTF);
   const loadTons = assume(design.loadTons, 'design.loadTons', dutyTons(settings));
   const loadFlowGpm = flowFromTonsGpm(loadTons, loadDeltaTF, design.productionSupplyF, fluid);
+  // Pump heat is physics, not a sensor's offset, but only a head that someone gave is known.
+  const { headFt } = design.distributionPumps;
+  const pumps = pumpsModel(settings, loadFlowGpm, assume);
+  const riseF =
+    headFt === undefined
+      ? undefined
+      : pumpRiseF(headFt, pumps.efficiency, specificHeatBtuPerLbF(design.productionSupplyF, fluid));
   const model: PlantModel = {
     arrangement,
     fluid,
@@ -153,7 +162,8 @@ export function plantModelFromSettings(
     loadDeltaTF,
     loadTons,
     units,
-    distributionPumps: pumpsModel(settings, loadFlowGpm, assume),
+    distributionPumps: pumps,
+    ...(riseF === undefined ? {} : { distributionRiseF: riseF }),
     primarySpeed: assume(
       design.pumping.speed,
       'design.pumping.speed',

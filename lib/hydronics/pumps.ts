@@ -58,3 +58,20 @@ export function distributionPumpPowerKw(
 export function excessPumpPowerKw(flowGpm: number, neededGpm: number, pumps: DistributionPumpsModel): number {
   return Math.max(0, distributionPumpPowerKw(flowGpm, pumps) - distributionPumpPowerKw(neededGpm, pumps));
 }
+
+/** 1 Btu in ft lbf, the mechanical equivalent of heat. Source: 1055.05585262 J over 1.3558179483314004 J. */
+const FOOT_POUNDS_PER_BTU = 778.169262;
+
+/**
+ * Rise of the water through a pump: what the pump loses stays in it, (1 / efficiency - 1) * head / (J cp). The useful work
+ * turns to heat only along the pipes, beyond the sensor.
+ *
+ * Units   feet of the fluid pumped; Btu/(lb F); deg F. Gaps: NaN in, NaN out.
+ * Throws  RangeError when the efficiency is not above 0 and at most 1.
+ * Source  first law for an adiabatic pump.
+ */
+export function pumpRiseF(headFt: number, efficiency: number, btuPerLbF: number): number {
+  if (efficiency <= 0 || efficiency > 1)
+    throw new RangeError(`pumpRiseF: efficiency must be in (0, 1], got ${efficiency}`);
+  return ((1 / efficiency - 1) * headFt) / (FOOT_POUNDS_PER_BTU * btuPerLbF);
+}

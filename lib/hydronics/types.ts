@@ -48,6 +48,8 @@ export interface PlantModel {
   loadTons: number;
   units: readonly UnitModel[];
   distributionPumps: DistributionPumpsModel;
+  /** Rise through the distribution pumps, between supply tee and secondary supply sensor, F; absent: head not given. */
+  distributionRiseF?: number;
   /** How the production side is pumped; absent: variable for `variable-primary`, constant otherwise. */
   primarySpeed?: 'constant' | 'variable';
   /** Only for building bridges: the blend the bridge is designed to make. */

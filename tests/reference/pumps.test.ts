@@ -1,7 +1,13 @@
 // Pump power on a system curve with control head; values and their source in fixtures/reference/pumps.json.
 import { describe, expect, test } from 'vitest';
 import table from '@/fixtures/reference/pumps.json';
-import { distributionPumpPowerKw, excessPumpPowerKw, pumpPowerKw, systemHeadFt } from '@/lib/hydronics/pumps';
+import {
+  distributionPumpPowerKw,
+  excessPumpPowerKw,
+  pumpPowerKw,
+  pumpRiseF,
+  systemHeadFt,
+} from '@/lib/hydronics/pumps';
 
 const pumps = (
   flowGpm: number,
@@ -39,5 +45,15 @@ describe('pump power', () => {
     }
     expect(excessPumpPowerKw(excessKw.flowGpm, excessKw.neededGpm, model)).toBeCloseTo(excessKw.powerKw, 4);
     expect(excessPumpPowerKw(1000, 1200, model)).toBe(0);
+  });
+});
+
+describe('heat of a pump in the water', () => {
+  // First law: what the pump loses stays in the water. 80 ft at 78 % in water of 1.0032 Btu/lb F, computed by hand:
+  // (1 / 0.78 - 1) * 80 / (778.17 * 1.0032) = 0.0289 F. A pump without losses warms nothing at its own place.
+  test('is 0.029 F for 80 ft at 78 %, and none at 100 %', () => {
+    expect(pumpRiseF(80, 0.78, 1.0032)).toBeCloseTo(0.0289, 4);
+    expect(pumpRiseF(80, 1, 1.0032)).toBe(0);
+    expect(() => pumpRiseF(80, 0, 1)).toThrow(RangeError);
   });
 });
