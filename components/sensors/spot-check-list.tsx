@@ -47,19 +47,22 @@ export function SpotCheckList({ plantId, timeZone, checks, mayRemove, onRemoved 
             className="phone:grid phone:grid-cols-[minmax(0,1fr)_auto] phone:gap-x-4 phone:border-b phone:border-grid phone:py-2.5 phone:[&>*]:border-0! phone:[&>*]:p-0!"
           >
             <RowHead>{check.label}</RowHead>
-            <td className="whitespace-nowrap text-ink-2">{formatDayTime(Date.parse(check.at), timeZone)}</td>
-            <Cell numeric className="whitespace-nowrap">
+            <td className="whitespace-nowrap text-ink-2 phone:text-end">
+              {formatDayTime(Date.parse(check.at), timeZone)}
+            </td>
+            <Cell numeric className="whitespace-nowrap phone:text-start!">
               <span className="hidden text-ink-2 phone:inline">reference </span>
               {reading(check, 'reading', print)}
             </Cell>
             <Cell numeric className="whitespace-nowrap italic">
-              <span className="hidden not-italic phone:inline">own </span>
+              <span className="hidden text-ink-2 not-italic phone:inline">plant’s own </span>
               {reading(check, 'shown', print)}
             </Cell>
-            <Cell numeric className="font-semibold whitespace-nowrap">
+            <Cell numeric className="font-semibold whitespace-nowrap phone:text-start!">
+              <span className="hidden font-normal text-ink-2 phone:inline">reads </span>
               {difference(check, print)}
             </Cell>
-            <td className="text-small phone:col-span-2">
+            <td className="text-small phone:order-last phone:col-span-2">
               {check.instrument === '' ? null : <span className="block">{check.instrument}</span>}
               {check.note === '' ? null : <span className="block italic">{check.note}</span>}
               <span className="block text-ink-2">{check.createdBy ?? 'by a key'}</span>

@@ -1,6 +1,7 @@
 'use client';
 import { useQuery, useQueryClient } from '@tanstack/react-query';
 import { useEffect, useState } from 'react';
+import { useUnits } from '@/components/shell/units-context';
 import { Section } from '@/components/ui/section';
 import { EmptyState, ErrorState, LoadingWords, PartialNote } from '@/components/ui/states';
 import { NO_BREAK_SPACE } from '@/lib/client/format';
@@ -15,6 +16,7 @@ export function SpotChecks({ plant, sent, mayManage }: { plant: Plant; sent: rea
   const { data, error, refetch } = useQuery(spotChecksQuery(plant.id));
   const [analysisId, setAnalysisId] = useState<string | null>(null);
   const roles = checkableRoles(sent);
+  const { units } = useUnits();
   return (
     <div className="mt-7.5 grid grid-cols-[minmax(0,1fr)_480px] gap-12 max-[1100px]:grid-cols-1 phone:block">
       <Section title="Spot checks" sub="a reference read beside one of the plant’s sensors">
@@ -38,13 +40,22 @@ export function SpotChecks({ plant, sent, mayManage }: { plant: Plant; sent: rea
           />
         )}
       </Section>
-      {mayManage ? (
+      {mayManage && roles.length > 0 ? (
         <Section title="Enter a reading" className="phone:mt-7.5">
-          <SpotCheckFormFields plantId={plant.id} timeZone={plant.timeZone} roles={roles} onMade={setAnalysisId} />
+          {/* A figure half typed is of the unit it was begun in: another unit begins anew. */}
+          <SpotCheckFormFields
+            key={units}
+            plantId={plant.id}
+            timeZone={plant.timeZone}
+            roles={roles}
+            onMade={setAnalysisId}
+          />
         </Section>
       ) : (
         <p className="border-t border-ink pt-2.5 text-ink-2 phone:mt-7.5">
-          The owner or an engineer of this organization can enter a reading.
+          {mayManage
+            ? 'A reading can be entered once a sensor of the loop has been sent.'
+            : 'The owner or an engineer of this organization can enter a reading.'}
         </p>
       )}
     </div>

@@ -1,9 +1,11 @@
+import { QueryClient, QueryClientProvider } from '@tanstack/react-query';
 import { fireEvent, render, screen, within } from '@testing-library/react';
 import { expect, test, vi } from 'vitest';
 import { FurtherTable } from '@/components/sensors/further-table';
+import { SpotCheckList } from '@/components/sensors/spot-check-list';
 import { SensorsTable } from '@/components/sensors/sensors-table';
 import { UnitsProvider } from '@/components/shell/units-context';
-import type { FurtherSensor } from '@/lib/schemas/sensors';
+import type { FurtherSensor, SpotCheck } from '@/lib/schemas/sensors';
 import { sensor } from '../support/sensors';
 
 vi.mock('next/link', () => ({ default: 'a' }));
@@ -108,4 +110,56 @@ test('the next point to trend stands first with what it would do, in gpm or, whe
     />,
   );
   expect(text(screen.getAllByRole('row')[1] as HTMLElement)).toContain('±21.0±10.0');
+});
+
+const CHECK: SpotCheck = {
+  id: '4af37fef-c66c-405c-8b73-202b16eee5d8',
+  at: '2026-07-24T19:10:00Z',
+  role: 'secondarySupplyTemp',
+  unitIndex: 0,
+  label: 'Secondary supply',
+  readingF: 44.1,
+  readingGpm: null,
+  shownF: 44.5,
+  shownGpm: null,
+  shownFrom: 'record',
+  sigmaF: 0.1,
+  sigmaPercent: null,
+  instrument: 'dry block 3',
+  note: 'at the well',
+  createdBy: null,
+  createdAt: '2026-07-24T19:20:00Z',
+};
+const showChecks = (mayRemove: boolean) =>
+  render(
+    <QueryClientProvider client={new QueryClient()}>
+      <UnitsProvider initial="ip">
+        <SpotCheckList
+          plantId="p1"
+          timeZone="America/New_York"
+          checks={[
+            CHECK,
+            { ...CHECK, id: 'b', role: 'primaryFlow', readingF: null, readingGpm: 1000, shownF: null, shownGpm: 979 },
+          ]}
+          mayRemove={mayRemove}
+          onRemoved={() => undefined}
+        />
+      </UnitsProvider>
+    </QueryClientProvider>,
+  );
+
+test('a spot check says what the plant’s own sensor read too much, in degrees or in percent of the reading', () => {
+  showChecks(false);
+  const [, first, second] = screen.getAllByRole('row');
+  expect(text(first as HTMLElement)).toContain('+0.4 °F');
+  expect(text(second as HTMLElement)).toContain('−2.1 %');
+  expect(screen.queryByRole('button')).toBeNull();
+});
+
+test('taking a spot check out is asked once, and the question says what follows', () => {
+  showChecks(true);
+  fireEvent.click(screen.getByRole('button', { name: /^remove the check of Secondary supply, Fri\s24\sJul 15:10/ }));
+  expect(text(screen.getByRole('dialog'))).toContain('the record is worked out again without it');
+  fireEvent.click(screen.getByRole('button', { name: 'Keep it' }));
+  expect(screen.queryByRole('dialog')).toBeNull();
 });
