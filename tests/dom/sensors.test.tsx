@@ -139,7 +139,16 @@ const showChecks = (mayRemove: boolean) =>
           timeZone="America/New_York"
           checks={[
             CHECK,
-            { ...CHECK, id: 'b', role: 'primaryFlow', readingF: null, readingGpm: 1000, shownF: null, shownGpm: 979 },
+            {
+              ...CHECK,
+              id: 'b',
+              label: 'Primary flow',
+              role: 'primaryFlow',
+              readingF: null,
+              readingGpm: 1000,
+              shownF: null,
+              shownGpm: 979,
+            },
           ]}
           mayRemove={mayRemove}
           onRemoved={() => undefined}
