@@ -1,7 +1,7 @@
 import { calibrationBins } from './calibration-bins';
 import { describeCalibration } from './calibration-findings';
 import { MIN_BINS, rescaleClass, rescaleMisfit, spreadOfStretches } from './calibration-spread';
-import { search } from './calibration-start';
+import { objective, search } from './calibration-start';
 import type { Calibration, SpotCheck } from './calibration-types';
 import { HOURS_PER_COMPARISON, refit, weighBins } from './calibration-work';
 import type { CalibrationWork, SpotTerm } from './calibration-work';
@@ -108,16 +108,36 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
     return { work, checks };
   }
   search(work, checks);
-  for (const left of REFINE) {
-    weighBins(work, left);
-    refit(work, left, checks, 3);
-    rescaleClass(work);
-    rescaleMisfit(work);
-  }
+  refine(work, checks);
   weighBins(work, 0);
   spreadOfStretches(work, checks);
   return { work, checks };
 }
+
+/**
+ * Passes over all bins from the best start. Near a plant that hardly ever changes its way, passes can creep to where either way
+ * explains everything by turns: the pass whose errors explain the record best, at what a choice is worth, is kept.
+ */
+function refine(work: CalibrationWork, checks: readonly SpotTerm[]): void {
+  let best = objective(work, checks);
+  const kept = work.parameters.slice();
+  for (const left of REFINE) {
+    weighBins(work, left);
+    refit(work, left, checks, 3);
+    const reached = objective(work, checks);
+    if (reached > best || left > 0) {
+      best = Math.max(best, reached);
+      kept.set(work.parameters);
+    } else if (reached < best - WORSE) {
+      work.parameters.set(kept);
+    }
+    rescaleClass(work);
+    rescaleMisfit(work);
+  }
+  if (objective(work, checks) < best - WORSE) work.parameters.set(kept);
+}
+/** Log likelihood by which a pass has to fall short to be taken back. */
+const WORSE = 0.05;
 
 /** Spot checks as what they say of one error each. A flow reading says gain; its zero is left to the record. */
 function spotTerms(spotChecks: readonly SpotCheck[], loop: LoopRecord, scale: MixingScale): SpotTerm[] {

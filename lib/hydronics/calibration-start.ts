@@ -22,14 +22,14 @@ const ANNEAL = [2, 0.6, 0.2, 0.06, 0.02, 0] as const;
 /** The same from a start that already says something: near it is what is asked. */
 const NEAR = [0.02, 0, 0] as const;
 /** Bins that the search for a start looks at. */
-const SEARCH_BINS = 200;
+const SEARCH_BINS = 160;
 /** No bin speaks against a start with more than this (log likelihood): one bad stretch does not choose it. */
 const WORST_BIN = 12;
 /**
  * The same when one explanation is chosen over another: near balance either way fits by turns, which flatters it in every
  * comparison, and what the sensors' classes say must not be outvoted by that.
  */
-const HOURS_PER_CHOICE = 4;
+const HOURS_PER_CHOICE = 8;
 const values = emptySlotValues();
 
 /** Starting points: the sensors as they are, meters that disagree either way, supplies and returns that meet at the corner. */
@@ -60,7 +60,8 @@ function startsOf(work: CalibrationWork): Float64Array[] {
   starts.push(corner);
   if (!loop.flows[FP] || !loop.flows[FS]) return starts;
   for (const ratio of START_RATIOS) {
-    for (const offsets of [asRead, corner]) {
+    // The corner is tried where the meters disagree much as well as where they do not.
+    for (const offsets of Math.abs(ratio) < FAR_RATIO ? [asRead] : [asRead, corner]) {
       const start = offsets.slice();
       start[SECONDARY_GAIN] = -ratio / 2;
       start[PRIMARY_GAIN] = ratio / 2;
@@ -71,10 +72,11 @@ function startsOf(work: CalibrationWork): Float64Array[] {
   return starts;
 }
 const START_RATIOS = [-0.07, -0.035, 0.035, 0.07] as const;
+const FAR_RATIO = 0.05;
 const CORNER_QUANTILE = 0.15;
 
 /** Log likelihood of the bins as they are weighed now, each held at WORST_BIN below the best it could be, less the prior. */
-function objective(work: CalibrationWork, checks: readonly SpotTerm[]): number {
+export function objective(work: CalibrationWork, checks: readonly SpotTerm[]): number {
   const p = work.parameters.length;
   const errors = errorsAt(work, work.parameters, 0);
   let total = 0;

@@ -38,9 +38,13 @@ export const emptySlotValues = (): SlotValues => ({
   moving: new Float64Array(TEMPERATURES),
 });
 
+/** Slots to either side over which a slope is taken. */
+const slopeReach = (stepMinutes: number): number =>
+  stepMinutes >= SLOPE_MINUTES ? 1 : Math.round(SLOPE_MINUTES / stepMinutes);
+
 /** Squared doubt of a temperature that moves past sensors at different places. A missing neighbour says nothing. */
 export function movingVariance(channel: Float64Array, slot: number, stepMinutes: number): number {
-  const reach = stepMinutes >= SLOPE_MINUTES ? 1 : Math.round(SLOPE_MINUTES / stepMinutes);
+  const reach = slopeReach(stepMinutes);
   if (slot < reach || slot + reach >= channel.length) return 0;
   const rise = (channel[slot + reach] as number) - (channel[slot - reach] as number);
   if (rise !== rise) return 0;
@@ -51,11 +55,19 @@ export function movingVariance(channel: Float64Array, slot: number, stepMinutes:
 /** Reads the bare values of one slot. */
 export function readValues(loop: LoopRecord, slot: number, out: SlotValues): void {
   for (let i = 0; i < TEMPERATURES + FLOWS; i += 1) out.leanOn[i] = -1;
+  const reach = slopeReach(loop.stepMinutes);
+  const perRise = TRANSPORT_LAG_MINUTES / (2 * reach * loop.stepMinutes);
+  const inside = slot >= reach && slot + reach < loop.n;
   for (let i = 0; i < TEMPERATURES; i += 1) {
     const channel = loop.temperatures[i];
     out.values[i] = channel ? (channel[slot] as number) : Number.NaN;
     out.counts[i] = 1;
-    out.moving[i] = channel ? movingVariance(channel, slot, loop.stepMinutes) : 0;
+    let moving = 0;
+    if (channel && inside) {
+      const doubtF = perRise * ((channel[slot + reach] as number) - (channel[slot - reach] as number));
+      if (doubtF === doubtF) moving = doubtF * doubtF;
+    }
+    out.moving[i] = moving;
   }
   for (let i = 0; i < FLOWS; i += 1) {
     const channel = loop.flows[i];
@@ -136,6 +148,9 @@ function readFlows(
       ((slot.values[TEMPERATURES + i] as number) - (zero[i] as number) * design) / (1 + (gain[i] as number));
     flows[i] = i === FB || corrected > 0 || corrected !== corrected ? corrected : 0;
   }
+  // A secondary flow that leans on the primary one shares its noise.
+  const ofPrimary = noise[FP] as number;
+  const shared = (ofPrimary * ofPrimary) / (slot.counts[TEMPERATURES + FP] as number);
   for (let i = 0; i < FLOWS; i += 1) {
     const fi = flows[i] as number;
     if (fi !== fi) continue;
@@ -151,25 +166,16 @@ function readFlows(
         fi * dj * (gainZero[ij] as number) +
         fj * di * (gainZero[ji] as number) +
         di * dj * (zeroZero[ij] as number);
-      value += fi * fj * flowNoise(slot, noise, i, j);
-      if (i === j) value += fi * fi * misfit * misfit;
-      if (i === j && (slot.leanOn[TEMPERATURES + i] as number) >= 0)
-        value += slot.leanVariance[TEMPERATURES + i] as number;
+      const leans = (slot.leanOn[TEMPERATURES + i] as number) >= 0;
+      if (i === j) {
+        const own = (noise[i] as number) * (noise[i] as number);
+        value += fi * fi * (misfit * misfit + (leans ? shared : own / (slot.counts[TEMPERATURES + i] as number)));
+        if (leans) value += slot.leanVariance[TEMPERATURES + i] as number;
+      } else if (leans && j === FP) value += fi * fj * shared;
       w[ij] = value;
       w[ji] = value;
     }
   }
-}
-
-/** Relative noise covariance of two flows; a flow that leans on the primary one shares its noise. */
-function flowNoise(slot: SlotValues, noise: Float64Array, i: number, j: number): number {
-  const base = slot.leanOn[TEMPERATURES + i] as number;
-  const own = (noise[i] as number) * (noise[i] as number);
-  if (base < 0) return i === j ? own / (slot.counts[TEMPERATURES + i] as number) : 0;
-  const ofBase = (noise[FP] as number) * (noise[FP] as number);
-  const shared = ofBase / (slot.counts[TEMPERATURES + FP] as number);
-  if (i !== j) return j === FP || (slot.leanOn[TEMPERATURES + j] as number) >= 0 ? shared : 0;
-  return shared;
 }
 
 function readCross(flowErrors: SlotErrors, designPrimary: number, designSecondary: number, out: SlotReading): void {

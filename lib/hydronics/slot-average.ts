@@ -9,6 +9,8 @@ const REACH_MINUTES = 20;
 const PROPORTION_REACH_MINUTES = 45;
 /** Up to here neighbours join one by one. */
 const FINE_MINUTES = 20;
+/** Slots this close share one window. */
+const GROUP_MINUTES = 4;
 /** A ring of neighbours joins while no channel's mean departs from the inner one by more than this many sigmas of both. */
 const JOIN_SIGMAS = 2;
 /** The same for proportions, whose rings are many. */
@@ -19,28 +21,52 @@ const LEAST_SPAN_SIGMAS = 8;
 /** Reads one slot's values, averaged with neighbours where the record shows that nothing moves. */
 export type SlotAverager = (slot: number, out: SlotValues) => void;
 
-/** Running sums of one series: values and how many there were. */
+/** Running sums of one series: values, and how many there were (null: one a slot). */
 interface Sums {
   channel: Float64Array;
   value: Float64Array;
-  count: Int32Array;
-  /** Noise of one value: constant, a share of the value, or a variance for each slot. */
-  sigma: number;
+  count: Int32Array | null;
+  /** Variance of one value: constant, a share of its square, or `spread` over the square of the span to another channel. */
+  constant: number;
   share: number;
-  variance: Float64Array | null;
+  spread: number;
+  from: Float64Array | null;
+  to: Float64Array | null;
 }
 
-function runningSums(channel: Float64Array, sigma: number, share: number, variance: Float64Array | null): Sums {
+function runningSums(channel: Float64Array, noise: Partial<Omit<Sums, 'channel' | 'value' | 'count'>>): Sums {
   const n = channel.length;
   const value = new Float64Array(n + 1);
-  const count = new Int32Array(n + 1);
+  let [sum, gaps] = [0, 0];
   for (let slot = 0; slot < n; slot += 1) {
     const reading = channel[slot] as number;
-    const there = reading === reading;
-    value[slot + 1] = (value[slot] as number) + (there ? reading : 0);
-    count[slot + 1] = (count[slot] as number) + (there ? 1 : 0);
+    if (reading === reading) sum += reading;
+    else gaps += 1;
+    value[slot + 1] = sum;
   }
-  return { channel, value, count, sigma, share, variance };
+  let count: Int32Array | null = null;
+  if (gaps > 0) {
+    count = new Int32Array(n + 1);
+    for (let slot = 0; slot < n; slot += 1) {
+      count[slot + 1] = (count[slot] as number) + (channel[slot] === channel[slot] ? 1 : 0);
+    }
+  }
+  return { channel, value, count, constant: 0, share: 0, spread: 0, from: null, to: null, ...noise };
+}
+
+/** Readings from a slot (counted in) to another (counted out). */
+function countOf(sums: Sums, start: number, end: number): number {
+  return sums.count ? (sums.count[end] as number) - (sums.count[start] as number) : end - start;
+}
+
+/** Variance of one value at a slot. */
+function varianceAt(sums: Sums, slot: number): number {
+  if (sums.from && sums.to) {
+    const span = (sums.to[slot] as number) - (sums.from[slot] as number);
+    return sums.spread / (span * span);
+  }
+  const value = sums.channel[slot] as number;
+  return sums.constant + sums.share * value * value;
 }
 
 /** Running count of slots at which the plant's state or its source of primary flow changes. */
@@ -83,26 +109,23 @@ function joinedWidth(
     for (let i = 0; i < series.length; i += 1) {
       const sums = series[i] as Sums;
       if (!((sums.channel[slot] as number) < Infinity)) continue;
-      if (!ringJoins(sums, slot, joined, width, sigmas)) return joined;
+      if (!ringJoins(sums, slot, joined, width, sigmas * sigmas * varianceAt(sums, slot))) return joined;
     }
     joined = width;
   }
   return joined;
 }
 
-/** True when the ring from `inner` to `outer` agrees with what is inside. */
-function ringJoins(sums: Sums, slot: number, inner: number, outer: number, sigmas: number): boolean {
-  const { value, count } = sums;
-  const insideCount = (count[slot + inner + 1] as number) - (count[slot - inner] as number);
+/** True when the ring from `inner` to `outer` agrees with what is inside, each value of the given variance. */
+function ringJoins(sums: Sums, slot: number, inner: number, outer: number, variance: number): boolean {
+  const { value } = sums;
+  const insideCount = countOf(sums, slot - inner, slot + inner + 1);
   const insideSum = (value[slot + inner + 1] as number) - (value[slot - inner] as number);
-  const ringCount = (count[slot + outer + 1] as number) - (count[slot - outer] as number) - insideCount;
+  const ringCount = countOf(sums, slot - outer, slot + outer + 1) - insideCount;
   if (ringCount === 0) return true;
   const ringSum = (value[slot + outer + 1] as number) - (value[slot - outer] as number) - insideSum;
-  const inside = insideSum / insideCount;
-  const away = ringSum / ringCount - inside;
-  const shared = sums.share * inside;
-  const variance = sums.variance ? (sums.variance[slot] as number) : sums.sigma * sums.sigma + shared * shared;
-  return away * away <= sigmas * sigmas * variance * (1 / insideCount + 1 / ringCount);
+  const away = ringSum / ringCount - insideSum / insideCount;
+  return away * away <= variance * (1 / insideCount + 1 / ringCount);
 }
 
 /** A temperature's place between the streams, or a flow's share of the primary flow: what moves only with the bypass. */
@@ -111,16 +134,14 @@ interface Proportion {
   target: number;
   base: number;
   sums: Sums;
-  /** Variance of one proportion. */
-  variance: Float64Array;
+  /** Noise variance of target and base together: F^2, or share of reading squared. */
+  both: number;
 }
 
 /** Place of `target` between `base` and `far`, from base to far, and secondary flow as a share of primary flow. */
 function proportions(loop: LoopRecord, noise: Float64Array, flowNoise: Float64Array): Proportion[] {
   const [ps, pr, ss, sr, tb] = loop.temperatures;
   const found: Proportion[] = [];
-  const keep = (target: number, base: number, series: Float64Array, variance: Float64Array) =>
-    found.push({ target, base, variance, sums: runningSums(series, 0, 0, variance) });
   const place = (target: number, base: number, far: number) => {
     const own = loop.temperatures[target];
     const from = loop.temperatures[base];
@@ -129,13 +150,11 @@ function proportions(loop: LoopRecord, noise: Float64Array, flowNoise: Float64Ar
     const both = (noise[target] as number) ** 2 + (noise[base] as number) ** 2;
     const least = LEAST_SPAN_SIGMAS * Math.hypot(noise[base] as number, noise[far] as number);
     const series = new Float64Array(loop.n);
-    const variance = new Float64Array(loop.n);
     for (let slot = 0; slot < loop.n; slot += 1) {
       const span = (to[slot] as number) - (from[slot] as number);
       series[slot] = Math.abs(span) > least ? ((own[slot] as number) - (from[slot] as number)) / span : Number.NaN;
-      variance[slot] = both / (span * span);
     }
-    keep(target, base, series, variance);
+    found.push({ target, base, both, sums: runningSums(series, { spread: both, from, to }) });
   };
   const warm = sr ? SR : PR;
   const cold = ps ? PS : SS;
@@ -147,14 +166,17 @@ function proportions(loop: LoopRecord, noise: Float64Array, flowNoise: Float64Ar
     const own = loop.flows[flow];
     if (!own || !primary) return;
     const series = new Float64Array(loop.n);
-    const variance = new Float64Array(loop.n);
     const both = (flowNoise[flow] as number) ** 2 + (flowNoise[FP] as number) ** 2;
     for (let slot = 0; slot < loop.n; slot += 1) {
       const ratio = (own[slot] as number) / (primary[slot] as number);
       series[slot] = Math.abs(ratio) < 100 ? ratio : Number.NaN;
-      variance[slot] = both * ratio * ratio;
     }
-    keep(TEMPERATURES + flow, TEMPERATURES + FP, series, variance);
+    found.push({
+      target: TEMPERATURES + flow,
+      base: TEMPERATURES + FP,
+      both,
+      sums: runningSums(series, { share: both }),
+    });
   };
   share(FS);
   return found;
@@ -186,26 +208,44 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
   [...loop.temperatures, ...loop.flows].forEach((channel, index) => {
     if (!channel || leaning.some((each) => each.target === index)) return;
     const sigma = index < TEMPERATURES ? (errors.noise[index] as number) : (flowNoise[index - TEMPERATURES] as number);
-    const sums = index < TEMPERATURES ? runningSums(channel, sigma, 0, null) : runningSums(channel, 0, sigma, null);
+    const variance = sigma * sigma;
+    const sums = runningSums(channel, index < TEMPERATURES ? { constant: variance } : { share: variance });
     own.push({ index, sums });
   });
   const ownSums = own.map((each) => each.sums);
   const wide = halfWidths(loop.stepMinutes, PROPORTION_REACH_MINUTES);
+  // Neighbours a few minutes apart have nearly the same window: it is sought once for all slots of such a group.
+  const group = Math.max(1, Math.round(GROUP_MINUTES / loop.stepMinutes));
+  const sought = { slot: -1, joined: 0, leant: 0 };
+  const seek = (slot: number): void => {
+    const middle = Math.min(loop.n - 1, slot - (slot % group) + (group >> 1));
+    if (middle === sought.slot) return;
+    sought.slot = middle;
+    sought.joined = joinedWidth(ownSums, widths, changes, JOIN_SIGMAS, middle);
+    sought.leant = joinedWidth(leaningSums, wide, changes, PROPORTION_JOIN_SIGMAS, middle);
+  };
   return (slot, out) => {
     readValues(loop, slot, out);
-    const joined = joinedWidth(ownSums, widths, changes, JOIN_SIGMAS, slot);
+    seek(slot);
+    const joined = within(sought.joined, changes, slot);
     if (joined > 0) {
       for (let i = 0; i < own.length; i += 1) {
         const { index, sums } = own[i] as (typeof own)[number];
         if (!((sums.channel[slot] as number) < Infinity)) continue;
-        const count = (sums.count[slot + joined + 1] as number) - (sums.count[slot - joined] as number);
+        const count = countOf(sums, slot - joined, slot + joined + 1);
         out.values[index] = ((sums.value[slot + joined + 1] as number) - (sums.value[slot - joined] as number)) / count;
         out.counts[index] = count;
       }
     }
-    const leant = joinedWidth(leaningSums, wide, changes, PROPORTION_JOIN_SIGMAS, slot);
+    const leant = within(sought.leant, changes, slot);
     if (leant > 0) lean(leaning, slot, leant, out);
   };
+}
+
+/** A window about its own slot: none where it would reach over the record's end or a change of the running set. */
+function within(width: number, changes: Int32Array, slot: number): number {
+  if (width === 0 || slot < width || slot + width >= changes.length - 1) return 0;
+  return changes[slot + width + 1] === changes[slot - width + 1] ? width : 0;
 }
 
 /** Puts the readings that lean on another at their mean proportion over the wider window. */
@@ -214,14 +254,15 @@ function lean(leaning: readonly Proportion[], slot: number, width: number, out: 
   const cold = values[PS] === values[PS] ? (values[PS] as number) : (values[SS] as number);
   const warm = values[SR] === values[SR] ? (values[SR] as number) : (values[PR] as number);
   for (let index = 0; index < leaning.length; index += 1) {
-    const { target, base, sums, variance } = leaning[index] as Proportion;
+    const { target, base, sums, both } = leaning[index] as Proportion;
     if (!((sums.channel[slot] as number) < Infinity)) continue;
-    const count = (sums.count[slot + width + 1] as number) - (sums.count[slot - width] as number);
+    const count = countOf(sums, slot - width, slot + width + 1);
     const mean = ((sums.value[slot + width + 1] as number) - (sums.value[slot - width] as number)) / count;
     const from = values[base] as number;
-    const scale = target >= TEMPERATURES ? from : target === PR ? cold - from : warm - from;
-    values[target] = target >= TEMPERATURES ? mean * from : from + mean * scale;
+    const flow = target >= TEMPERATURES;
+    const value = flow ? mean * from : from + mean * (target === PR ? cold - from : warm - from);
+    values[target] = value;
     out.leanOn[target] = base;
-    out.leanVariance[target] = ((variance[slot] as number) * scale * scale) / count;
+    out.leanVariance[target] = (flow ? both * value * value : both) / count;
   }
 }

@@ -10,14 +10,16 @@ const MAX_FLOW_CHANGE_SHARE = 0.1;
 /** With records coarser than the window the limits are those of this many minutes, or every slot would be unsteady. */
 const MAX_COUNTED_MINUTES = 10;
 
-function changed(channel: Float64Array | undefined, slot: number, window: number, limit: number): boolean {
-  if (!channel) return false;
-  const here = channel[slot] as number;
-  // NaN (missing, or over the edge) compares false: an unknown neighbour says nothing.
-  return (
-    Math.abs((channel[slot - window] ?? Number.NaN) - here) > limit ||
-    Math.abs((channel[slot + window] ?? Number.NaN) - here) > limit
-  );
+/** Marks the slots from or to which a channel changes by more than a limit over the window. */
+function markChanges(channel: Float64Array | undefined, window: number, limit: number, steady: Float64Array): void {
+  if (!channel) return;
+  for (let slot = window; slot < channel.length; slot += 1) {
+    // NaN (missing) compares false: an unknown neighbour says nothing.
+    if (Math.abs((channel[slot] as number) - (channel[slot - window] as number)) > limit) {
+      steady[slot] = 0;
+      steady[slot - window] = 0;
+    }
+  }
 }
 
 /**
@@ -47,15 +49,12 @@ export function markSteady(measurements: Measurements, plant: PlantModel, steady
       quietSince = slot;
     }
     if (count === count) previous = count;
-    const sinceStaging = quietSince > 0 && slot - quietSince < window;
-    const moving =
-      sinceStaging ||
-      changed(measurements.primarySupplyF, slot, window, rampF) ||
-      changed(measurements.secondarySupplyF, slot, window, rampF) ||
-      changed(measurements.primaryReturnF, slot, window, rampF) ||
-      changed(measurements.secondaryReturnF, slot, window, rampF) ||
-      changed(measurements.primaryFlowGpm, slot, window, flowGpm) ||
-      changed(measurements.secondaryFlowGpm, slot, window, flowGpm);
-    steady[slot] = moving ? 0 : 1;
+    steady[slot] = quietSince > 0 && slot - quietSince < window ? 0 : 1;
   }
+  markChanges(measurements.primarySupplyF, window, rampF, steady);
+  markChanges(measurements.secondarySupplyF, window, rampF, steady);
+  markChanges(measurements.primaryReturnF, window, rampF, steady);
+  markChanges(measurements.secondaryReturnF, window, rampF, steady);
+  markChanges(measurements.primaryFlowGpm, window, flowGpm, steady);
+  markChanges(measurements.secondaryFlowGpm, window, flowGpm, steady);
 }

@@ -19,6 +19,8 @@ const SIGMA_FREEDOM = 4;
 /** A common-pipe temperature this far from both ends says that the pipe ran both ways, or that the water hunts. */
 const BETWEEN_LOW = 0.25;
 const BETWEEN_HIGH = 0.75;
+/** So many sigmas off a band, nothing lies in it (3 in 100,000). */
+const FAR_SIGMAS = 4;
 /** The same for a way that does not know how much crosses over. */
 const UNSIZED_PROBABILITY = 0.05;
 /** A way less probable than this is left out. */
@@ -118,7 +120,7 @@ export function bypassQuantile(level: number, pReverse: number, forward: WayStat
 /** Probability that a normal cut off at zero lies below `band`. */
 function belowBand(mu: number, sigma: number, band: number): number {
   if (!(sigma > 0)) return mu < band ? 1 : 0;
-  if (mu > band + 8 * sigma) return 0;
+  if (mu > band + FAR_SIGMAS * sigma) return 0;
   const below = normalCdf(-mu / sigma);
   return (normalCdf((band - mu) / sigma) - below) / Math.max(1e-300, 1 - below);
 }
@@ -173,8 +175,27 @@ function unsignedSawBoth(reading: SlotReading): boolean {
   return Math.abs(reading.flows[FB] as number) > netGpm + 3 * Math.sqrt(variance);
 }
 
+/** The same where one way is all there is: its state as it stands. */
+function takeDecided(reading: SlotReading, state: WayState, forward: boolean, out: Verdict): void {
+  const reach = NINETY_PERCENT_Z * state.bypassSigma;
+  out.bypassGpm = forward ? state.heldGpm : -state.heldGpm;
+  out.bypassLoGpm = out.bypassGpm - reach;
+  out.bypassHiGpm = out.bypassGpm + reach;
+  const primary = forward ? state.mainGpm : state.mainGpm - state.heldGpm;
+  out.primaryFlowGpm = primary > 0 ? primary : 0;
+  out.secondaryFlowGpm = primary >= out.bypassGpm ? out.primaryFlowGpm - out.bypassGpm : (reading.flows[FS] as number);
+  for (let i = PS; i <= SR; i += 1) out.temperatures[i] = state.temperatures[i] as number;
+  out.blendSigma = Math.sqrt(state.blendVariance);
+  blank(reading, out);
+}
+
 /** Bypass, flows, temperatures and the interval of the bypass from both ways' states. */
 function combine(reading: SlotReading, pReverse: number, forward: WayState, reverse: WayState, out: Verdict): void {
+  const decided = pReverse < NEGLIGIBLE ? forward : pReverse > 1 - NEGLIGIBLE ? reverse : null;
+  if (decided && known(decided.heldGpm) && decided.bypassGpm > 4 * decided.bypassSigma && known(decided.mainGpm)) {
+    takeDecided(reading, decided, decided === forward, out);
+    return;
+  }
   // A way that does not know its size is left out where it is improbable, and leaves the bypass unknown where it is not.
   let pSized = pReverse;
   if (!known(forward.heldGpm) && pReverse > 1 - UNSIZED_PROBABILITY) pSized = 1;

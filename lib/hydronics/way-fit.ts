@@ -77,6 +77,8 @@ function firstGuess(fit: WayFit): number {
 
 const SAME_SHARE = 0.02;
 const HOPELESS_Z = -5;
+/** Beyond this the share's whole mass is inside (3 in 100,000). */
+const CLEAR_Z = 4;
 /** A share this uncertain is not known at all. */
 const NO_SHARE_VARIANCE = 1;
 
@@ -131,11 +133,11 @@ export function fitWay(reading: SlotReading, fit: WayFit, shareScale: number): v
   if (lowZ < HOPELESS_Z) {
     // Leading term of the tail: beyond this the way is ruled out whatever the rest.
     logEvidence += -0.5 * lowZ * lowZ - Math.log(-lowZ) - HALF_LOG_TWO_PI;
-  } else if (lowZ < 6 || highZ < 6) {
+  } else if (lowZ < CLEAR_Z || highZ < CLEAR_Z) {
     logEvidence +=
-      highZ < 6 && lowZ >= 6
+      highZ < CLEAR_Z && lowZ >= CLEAR_Z
         ? logNormalCdf(highZ)
-        : logNormalCdf(lowZ) + (highZ < 6 ? Math.log1p(-tailShare(lowZ, highZ)) : 0);
+        : logNormalCdf(lowZ) + (highZ < CLEAR_Z ? Math.log1p(-tailShare(lowZ, highZ)) : 0);
   }
   const beyond = share < 0 ? share : share > 1 ? share - 1 : 0;
   fit.share = share;

@@ -33,6 +33,9 @@ export const emptyWayState = (): WayState => ({
   blendVariance: Number.NaN,
 });
 
+/** So many sigmas off zero, cutting off there changes nothing (3 in 100,000). */
+const CLEAR_SIGMAS = 4;
+
 /** C^-1 (residual at the held share) and C^-1 slope of the current way. */
 const pull = new Float64Array(CONTRASTS);
 const lean = new Float64Array(CONTRASTS);
@@ -188,7 +191,7 @@ export function stateOfWay(
   const sigma = Math.sqrt(fit.shareVariance * stretch);
   const peak = known ? fit.share - (fit.shareVariance * stretch) / shareScale : Number.NaN;
   const z = peak / sigma;
-  let share = known ? (z < 6 ? peak + sigma * truncationShift(z) : peak) : Number.NaN;
+  let share = known ? (z < CLEAR_SIGMAS ? peak + sigma * truncationShift(z) : peak) : Number.NaN;
   if (share > 1) share = 1;
   out.share = share;
   for (let row = 0; row < fit.count; row += 1) {
@@ -240,7 +243,7 @@ function holdSign(out: WayState, shareVariance: number, shareScale: number): voi
   }
   if (out.mainGpm > 0 && shareVariance > 0) out.bypassGpm -= (out.mainGpm * shareVariance) / shareScale;
   const z = out.bypassGpm / sigma;
-  if (z > 6) {
+  if (z > CLEAR_SIGMAS) {
     out.heldGpm = out.bypassGpm;
     out.heldVariance = sigma * sigma;
     return;
