@@ -2,6 +2,7 @@ import { MISFIT_F, MISFIT_FLOW } from './sensor-errors';
 import type { CalibrationWork, SpotTerm } from './calibration-work';
 import type { Calibration, CalibrationLimit, SensorFinding, SensorRole, SensorTie } from './calibration-types';
 import { FB, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
+import type { LoopRecord } from './loop-record';
 import { NINETY_PERCENT_Z } from './normal';
 import { medianOf } from './record-noise';
 import { BYPASS_GAIN, PRIMARY_GAIN, SECONDARY_GAIN, SET_GAINS, setOffset } from './sensor-errors';
@@ -51,6 +52,23 @@ function tieOf(place: number, work: CalibrationWork, hours: Hours, told: number)
   return { tie: 'energy-balance', hours: both };
 }
 
+/** Slots from which a meter counts as there. */
+const METERED_SLOTS = 20;
+
+/** Whether a meter gives primary flow, if only now and then; and whether units' sensors make the primary supply, mostly. */
+function sourcesOf(loop: LoopRecord): { metered: boolean; mixed: boolean } {
+  const [flow, supply] = [loop.flows[FP], loop.temperatures[PS]];
+  let [meterSlots, mixedSlots, supplySlots] = [0, 0, 0];
+  for (let slot = 0; slot < loop.n; slot += 1) {
+    if (flow && (flow[slot] as number) > 0 && loop.rated[slot] === 0) meterSlots += 1;
+    if (supply && supply[slot] === supply[slot]) {
+      supplySlots += 1;
+      mixedSlots += loop.mixed[slot] as number;
+    }
+  }
+  return { metered: meterSlots >= METERED_SLOTS, mixed: 2 * mixedSlots > supplySlots };
+}
+
 /** What a calibration says, sensor by sensor, with what no record of its kind can tell. */
 export function describeCalibration(
   work: CalibrationWork,
@@ -89,10 +107,10 @@ export function describeCalibration(
   };
   TEMPERATURE_ROLES.forEach((role, place) => {
     // Where units' leaving sensors stand in, the most frequent set speaks for the supply.
-    const own = place !== PS || !loop.mixed.includes(1) || loop.sets.length === 0;
+    const own = place !== PS || !mixed || loop.sets.length === 0;
     if (loop.temperatures[place]) describe(role, 'offset', own ? place : setOffset(loop.sets.length, 0), place);
   });
-  const metered = loop.rated.includes(0) && !loop.rated.includes(1);
+  const { metered, mixed } = sourcesOf(loop);
   if (loop.flows[FP] && metered) describe('primaryFlow', 'gain', PRIMARY_GAIN, TEMPERATURES + FP);
   if (loop.flows[FS]) describe('secondaryFlow', 'gain', SECONDARY_GAIN, TEMPERATURES + FS);
   if (loop.flows[FB]) describe('bypassFlow', 'gain', BYPASS_GAIN, TEMPERATURES + FB);

@@ -206,6 +206,8 @@ export function scoreBin(
 interface PriorTerms {
   information: Float64Array;
   pull: Float64Array;
+  /** Cost at no error at all: what the spot checks disagree with it. */
+  constant: number;
 }
 
 export function addPrior(
@@ -215,7 +217,7 @@ export function addPrior(
   gradient: Float64Array,
 ): number {
   const p = parameters.length;
-  let cost = 0;
+  let cost = terms.constant;
   for (let i = 0; i < p; i += 1) {
     let slope = -(terms.pull[i] as number);
     for (let j = 0; j < p; j += 1) {
@@ -249,13 +251,15 @@ export function priorTerms(work: CalibrationWork, checks: readonly SpotTerm[]): 
   }
   const information = invert(scaled, p);
   const pull = new Float64Array(p);
+  let constant = 0;
   for (const check of checks) {
     const weight = 1 / check.variance;
+    constant += 0.5 * weight * check.value * check.value;
     const k = check.place * p + check.place;
     information[k] = (information[k] as number) + weight;
     pull[check.place] = (pull[check.place] as number) + weight * check.value;
   }
-  return { information, pull };
+  return { information, pull, constant };
 }
 
 /** A spot check as a direct reading of one lasting error. */

