@@ -105,12 +105,12 @@ export function describeCalibration(
       increment: seen.increment[channel] as number,
     });
   };
+  const { metered, mixed } = sourcesOf(loop);
   TEMPERATURE_ROLES.forEach((role, place) => {
     // Where units' leaving sensors stand in, the most frequent set speaks for the supply.
     const own = place !== PS || !mixed || loop.sets.length === 0;
     if (loop.temperatures[place]) describe(role, 'offset', own ? place : setOffset(loop.sets.length, 0), place);
   });
-  const { metered, mixed } = sourcesOf(loop);
   if (loop.flows[FP] && metered) describe('primaryFlow', 'gain', PRIMARY_GAIN, TEMPERATURES + FP);
   if (loop.flows[FS]) describe('secondaryFlow', 'gain', SECONDARY_GAIN, TEMPERATURES + FS);
   if (loop.flows[FB]) describe('bypassFlow', 'gain', BYPASS_GAIN, TEMPERATURES + FB);
