@@ -1,5 +1,9 @@
+import Link from 'next/link';
 import { Fragment, type ReactNode } from 'react';
 import { CAUTION } from '@/lib/client/words';
+
+/** The page that explains the method; open to everyone. */
+const METHOD_PATH = '/method';
 
 export interface FootProps {
   settingsRevision?: number;
@@ -11,7 +15,7 @@ export interface FootProps {
   right?: ReactNode;
 }
 
-/** The foot of every page: the caution, and what its numbers rest on. */
+/** The foot of every page: the caution, how numbers are worked out, and what these rest on. */
 export function Foot({ settingsRevision, calibrationId, kernelVersion, timeZone, right }: FootProps) {
   const parts = [
     settingsRevision === undefined ? null : `Settings revision ${settingsRevision}`,
@@ -22,7 +26,12 @@ export function Foot({ settingsRevision, calibrationId, kernelVersion, timeZone,
   return (
     <footer className="page pt-12 pb-8 phone:pt-10">
       <div className="flex justify-between gap-11 border-t border-ink pt-2.5 text-small text-ink-2 phone:block">
-        <p className="max-w-[880px]">{CAUTION}</p>
+        <p className="max-w-[880px]">
+          {CAUTION}{' '}
+          <Link href={METHOD_PATH} className="link whitespace-nowrap">
+            How it is worked out
+          </Link>
+        </p>
         <p className="shrink-0 text-end phone:mt-2 phone:text-start">
           {right ??
             parts.map((part, index) => (

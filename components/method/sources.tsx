@@ -1,0 +1,131 @@
+import { P, Part } from './parts';
+
+/** How far a source stands behind what is done here. */
+type Mark = 'values' | 'named' | 'memory';
+const MARKS: Readonly<Record<Mark, string>> = {
+  values: 'its published values are reproduced by a test',
+  named:
+    'the method is known by this work; limits and constants are the project’s own, its arithmetic is tested on its own',
+  memory: 'from memory, the text was not at hand',
+};
+
+interface Source {
+  what: string;
+  work: string;
+  mark: Mark;
+}
+const SOURCES: readonly Source[] = [
+  {
+    what: 'water',
+    work: 'IAPWS R7-97(2012), Revised Release on the IAPWS Industrial Formulation 1997 for the Thermodynamic Properties of Water and Steam',
+    mark: 'values',
+  },
+  {
+    what: 'glycols',
+    work: 'A. Melinder, Properties of Secondary Working Fluids for Indirect Systems, IIR, 2010',
+    mark: 'values',
+  },
+  {
+    what: 'uncertainty',
+    work: 'JCGM 100:2008, Guide to the Expression of Uncertainty in Measurement (clause numbers from memory)',
+    mark: 'values',
+  },
+  {
+    what: 'reconciliation',
+    work: 'S. Narasimhan, C. Jordache, Data Reconciliation and Gross Error Detection, Gulf, 2000',
+    mark: 'values',
+  },
+  { what: 'reconciliation of acceptance tests', work: 'VDI 2048 Blatt 1, 2000, Annex A', mark: 'values' },
+  {
+    what: 'regression problems',
+    work: 'NIST Statistical Reference Datasets: Norris, Misra1a, DanWood, Rat42',
+    mark: 'values',
+  },
+  {
+    what: 'unmeasured streams by projection',
+    work: 'C. M. Crowe, Y. A. Garcia Campos, A. Hrymak, Reconciliation of process flow rates by matrix projection, AIChE J. 29 (1983) 881',
+    mark: 'named',
+  },
+  {
+    what: 'the measurement most at odds',
+    work: 'R. S. H. Mah, A. C. Tamhane, Detection of gross errors in process data, AIChE J. 28 (1982) 828',
+    mark: 'named',
+  },
+  {
+    what: 'one odd reading set aside',
+    work: 'R. W. Serth, W. A. Heenan, Gross error detection and data reconciliation in steam-metering systems, AIChE J. 32 (1986) 733',
+    mark: 'named',
+  },
+  {
+    what: 'ways and errors by turns',
+    work: 'A. P. Dempster, N. M. Laird, D. B. Rubin, Maximum likelihood from incomplete data via the EM algorithm, J. R. Stat. Soc. B 39 (1977) 1',
+    mark: 'named',
+  },
+  {
+    what: 'covariance by stretches',
+    work: 'K.-Y. Liang, S. L. Zeger, Longitudinal data analysis using generalized linear models, Biometrika 73 (1986) 13',
+    mark: 'named',
+  },
+  {
+    what: 'least squares',
+    work: 'D. W. Marquardt, An algorithm for least-squares estimation of nonlinear parameters, J. SIAM 11 (1963) 431',
+    mark: 'named',
+  },
+  {
+    what: 'windows that agree',
+    work: 'A. Goldenshluger, A. Nemirovski, On spatially adaptive estimation of nonparametric regression, Math. Methods Stat. 6 (1997) 135',
+    mark: 'named',
+  },
+  {
+    what: 'noise from medians',
+    work: 'P. J. Rousseeuw, C. Croux, Alternatives to the median absolute deviation, J. Am. Stat. Assoc. 88 (1993) 1273',
+    mark: 'named',
+  },
+  {
+    what: 'which sensor next',
+    work: 'D. V. Lindley, On a measure of the information provided by an experiment, Ann. Math. Stat. 27 (1956) 986',
+    mark: 'named',
+  },
+  {
+    what: 'quantiles of chi-square',
+    work: 'E. B. Wilson, M. M. Hilferty, The distribution of chi-square, Proc. Nat. Acad. Sci. 17 (1931) 684',
+    mark: 'named',
+  },
+  {
+    what: 'normal distribution',
+    work: 'M. Abramowitz, I. A. Stegun, Handbook of Mathematical Functions, 1964, 26.2',
+    mark: 'named',
+  },
+  { what: 'class of a resistance thermometer', work: 'IEC 60751', mark: 'memory' },
+  {
+    what: 'a measured plant',
+    work: 'NIST Intelligent Building Agents Laboratory, one-minute data, doi 10.18434/mds2-3058',
+    mark: 'values',
+  },
+  {
+    what: 'a simulated decoupler',
+    work: 'Modelica Buildings library, reference trajectories of its decoupler examples',
+    mark: 'values',
+  },
+];
+
+/** Where the method comes from, and how far each source was at hand. */
+export function Sources() {
+  return (
+    <Part id="sources" number={7} title="Sources" sub="and how far each stands behind what is done">
+      <P>
+        The balances are the first law for a steady, adiabatic junction, in any text on thermodynamics; the weighing is
+        generalized least squares and Bayes’ rule, in any text on statistics. Their combination for a decoupler is the
+        project’s own. Limits of time, temperature and share without a source in this list are common practice of the
+        trade; in the code each says so beside itself.
+      </P>
+      <ol className="list-outside list-decimal ps-6 text-base">
+        {SOURCES.map(({ what, work, mark }) => (
+          <li key={work} className="border-b border-grid py-1.5 ps-1 text-pretty">
+            <b>{what}:</b> {work}. <span className="text-ink-2">{MARKS[mark]}.</span>
+          </li>
+        ))}
+      </ol>
+    </Part>
+  );
+}
