@@ -167,12 +167,19 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
     calibration?.swingShare ?? usualBothPrior(measurements.stepMinutes),
   );
   const verdict = emptyVerdict();
+  // Slot whose values the verdict is of: neighbours that share them share it.
+  let weighed = -1;
   for (let slot = 0; slot < measurements.n; slot += 1) {
     if (out.state[slot] === OFF) {
       writeOff(out, slot, loop, scale);
       continue;
     }
-    average(slot, values);
+    const from = average(slot, values);
+    if (from !== slot && from === weighed) {
+      writeSlot(out, slot, verdict, scale, heat);
+      continue;
+    }
+    weighed = from;
     const setpointF = at(measurements.supplySetpointF, slot);
     const supply = toMixing(setpointF > 20 && setpointF < 80 ? setpointF : plant.productionSupplyF, scale);
     const slotErrors = errorsAtSlot(loop, errors, slot);

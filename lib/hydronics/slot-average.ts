@@ -18,8 +18,11 @@ const PROPORTION_JOIN_SIGMAS = 1.7;
 /** Proportions between temperatures are formed where supply and return are this many sigmas apart. */
 const LEAST_SPAN_SIGMAS = 8;
 
-/** Reads one slot's values, averaged with neighbours where the record shows that nothing moves. */
-export type SlotAverager = (slot: number, out: SlotValues) => void;
+/**
+ * Reads one slot's values, averaged with neighbours where the record shows that nothing moves. Returns the slot whose values
+ * they are: its own, or that of the few minutes it shares them with.
+ */
+export type SlotAverager = (slot: number, out: SlotValues) => number;
 
 /** Running sums of one series: values, and how many there were (null: one a slot). */
 interface Sums {
@@ -198,7 +201,12 @@ function proportions(loop: LoopRecord, noise: Float64Array, flowNoise: Float64Ar
 export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Float64Array): SlotAverager {
   const widths = halfWidths(loop.stepMinutes, REACH_MINUTES);
   const seen = errors.noise.some((sigma) => sigma > 0);
-  if (!seen) return (slot, out) => readValues(loop, slot, out);
+  if (!seen) {
+    return (slot, out) => {
+      readValues(loop, slot, out);
+      return slot;
+    };
+  }
   const { flowNoise } = errors;
   const changes = runningChanges(loop, state);
   const leaning = proportions(loop, errors.noise, flowNoise);
@@ -224,9 +232,9 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
     sought.joined = joinedWidth(ownSums, widths, changes, JOIN_SIGMAS, middle);
     sought.leant = joinedWidth(leaningSums, wide, changes, PROPORTION_JOIN_SIGMAS, middle);
   };
-  return (slot, out) => {
+  const channels = [...loop.temperatures, ...loop.flows].filter((channel) => channel !== null);
+  const average = (slot: number, out: SlotValues): void => {
     readValues(loop, slot, out);
-    seek(slot);
     const joined = within(sought.joined, changes, slot);
     if (joined > 0) {
       for (let i = 0; i < own.length; i += 1) {
@@ -240,6 +248,29 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
     const leant = within(sought.leant, changes, slot);
     if (leant > 0) lean(leaning, slot, leant, out);
   };
+  return (slot, out) => {
+    seek(slot);
+    const { slot: middle, joined, leant } = sought;
+    // Wide windows of neighbours are nearly the same mean: the group is read once, where the same sensors speak.
+    const shares =
+      group > 1 &&
+      Math.min(joined, leaningSums.length > 0 ? leant : joined) >= group &&
+      changes[slot + 1] === changes[middle + 1] &&
+      within(joined, changes, middle) > 0 &&
+      sameGaps(channels, slot, middle);
+    average(shares ? middle : slot, out);
+    return shares ? middle : slot;
+  };
+}
+
+/** True when the same channels have a reading at both slots. */
+function sameGaps(channels: readonly Float64Array[], slot: number, other: number): boolean {
+  for (let i = 0; i < channels.length; i += 1) {
+    const channel = channels[i] as Float64Array;
+    const [here, there] = [channel[slot] as number, channel[other] as number];
+    if ((here === here) !== (there === there)) return false;
+  }
+  return true;
 }
 
 /** A window about its own slot: none where it would reach over the record's end or a change of the running set. */

@@ -1,5 +1,6 @@
 /**
- * Estimates a year of one-minute intervals, sums its hours, days and episodes, and prints seconds and peak memory.
+ * Estimates a year of one-minute intervals with its whole-record calibration beside the plain textbook formula on the same
+ * arrays, sums its hours, days and episodes, and prints seconds, intervals a second and peak memory.
  *
  *   node --import tsx tests/bench/estimate-year.bench.ts
  */
@@ -11,6 +12,7 @@ import { summariseHours } from '../../lib/hydronics/hours';
 import { decouplerBalance } from '../../lib/hydronics/tees';
 import type { Measurements } from '../../lib/hydronics/types';
 import { plantOf, WATER } from '../hydronics/support/plants';
+import { textbookBypass } from '../support/simulation/textbook';
 
 const MINUTES = 525_600;
 const ROUNDS = 3;
@@ -75,13 +77,17 @@ function timed<Result>(label: string, work: () => Result): Result {
   const cpu = process.cpuUsage(before);
   const seconds = (performance.now() - wall) / 1000;
   const processor = (cpu.user + cpu.system) / 1e6;
-  process.stdout.write(`${label.padEnd(28)} ${seconds.toFixed(2)} s wall, ${processor.toFixed(2)} s processor\n`);
+  const rate = MINUTES / processor / 1e6;
+  process.stdout.write(
+    `${label.padEnd(28)} ${seconds.toFixed(2)} s wall, ${processor.toFixed(2)} s processor, ${rate.toFixed(2)} million intervals a second\n`,
+  );
   return result;
 }
 
 const year = yearOfMinutes();
 const starts = Array.from({ length: MINUTES / 60 }, (_, hour) => hour * 3_600_000);
 for (let round = 1; round <= ROUNDS; round += 1) {
+  timed(`${round}: textbook formula`, () => textbookBypass(year, plant));
   const calibration = timed(`${round}: calibration`, () => calibrateRecord(year, plant));
   const estimates = timed(`${round}: ${MINUTES} intervals`, () => estimateIntervals(year, plant, calibration));
   const hours = timed(`${round}: ${starts.length} hours`, () =>
