@@ -1,5 +1,7 @@
 import { MISFIT_F, MISFIT_FLOW } from './sensor-errors';
 import type { CalibrationWork, SpotTerm } from './calibration-work';
+import { CONTRASTS } from './contrasts';
+import { chiSquareQuantile } from './distributions';
 import type { Calibration, CalibrationLimit, SensorFinding, SensorRole, SensorTie } from './calibration-types';
 import { FB, FP, FS, PR, PS, SR, SS, TB, TEMPERATURES } from './loop-record';
 import type { LoopRecord } from './loop-record';
@@ -8,8 +10,10 @@ import { medianOf } from './record-noise';
 import { BYPASS_GAIN, PRIMARY_GAIN, SECONDARY_GAIN, SET_GAINS, setOffset } from './sensor-errors';
 import { KERNEL_VERSION } from './types';
 
-/** 0.95 points of chi-square for 1 to 5 degrees of freedom. Source: any table; computed. */
-const CHI_SQUARE_95 = [3.8415, 3.8415, 5.9915, 7.8147, 9.4877, 11.0705] as const;
+/** 0.95 points of chi-square by degrees of freedom, for 0 (as for 1) to the most comparisons that one interval holds. */
+const CHI_SQUARE_95 = Array.from({ length: CONTRASTS + 1 }, (_, freedom) =>
+  chiSquareQuantile(0.95, Math.max(1, freedom)),
+);
 /** Below this share of prior variance taken away, a record has not told a sensor's error. */
 const TOLD_LEAST = 0.1;
 const TEMPERATURE_ROLES = [
@@ -153,13 +157,13 @@ function fitOf(work: CalibrationWork): Calibration['chiSquare'] {
   if (bins.count === 0) return { median: Number.NaN, limit: Number.NaN, shareWithin: Number.NaN };
   let within = 0;
   for (let bin = 0; bin < bins.count; bin += 1) {
-    const limit = CHI_SQUARE_95[Math.min(5, redundancy[bin] as number)] as number;
+    const limit = CHI_SQUARE_95[Math.min(CONTRASTS, redundancy[bin] as number)] as number;
     if ((chiSquare[bin] as number) <= limit) within += 1;
   }
   const usual = medianOf(redundancy.slice(), bins.count);
   return {
     median: medianOf(chiSquare.slice(), bins.count),
-    limit: CHI_SQUARE_95[Math.min(5, Math.round(usual))] as number,
+    limit: CHI_SQUARE_95[Math.min(CONTRASTS, Math.round(usual))] as number,
     shareWithin: within / bins.count,
   };
 }
