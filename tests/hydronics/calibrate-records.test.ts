@@ -132,6 +132,7 @@ describe('a plant with pumps of rated flow', () => {
     balance: 'varied',
     days: 4,
     units: 2,
+    ratedFlowPercent: 10,
     nightOff: false,
     bypassTemp: false,
     missing: false,
@@ -187,6 +188,7 @@ describe('a plant with pumps of rated flow', () => {
     const estimates = estimateIntervals(day, sim.plant, calibration);
     const place = calibration.sets.indexOf(1);
     const gain = calibration.values[SET_GAINS + place]!;
+    expect(Math.abs(gain)).toBeGreaterThan(0.02);
     const ratedGpm = sim.plant.units[0]!.flowGpm;
     expect(estimates.primary_flow_gpm[10]! / (ratedGpm / (1 + gain))).toBeCloseTo(1, 2);
   });

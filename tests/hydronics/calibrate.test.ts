@@ -104,6 +104,25 @@ describe('a record that goes both ways, with planted errors', () => {
     expect(held / all).toBeGreaterThan(0.8);
   });
 
+  test('says how unsure it is of what sensors with 1 F of noise tell', () => {
+    const scores: number[] = [];
+    for (let seed = 1; seed <= 24; seed += 1) {
+      const errors = planted(seed);
+      const share = (slot: number) => 0.25 + 0.05 * Math.sin(slot / 5);
+      const options = { seed, errors, share, days: 1.5, noiseF: 1, channels: LOOP_TEMPERATURES };
+      const calibration = calibrated(options);
+      const p = parameterCount(0);
+      const at = (i: number, j: number) => calibration.covariance[i * p + j]!;
+      // Forward flow: both supplies, first and third, are one stream.
+      const sigma = Math.sqrt(at(0, 0) + at(2, 2) - 2 * at(0, 2));
+      const apart = calibration.values[0]! - calibration.values[2]!;
+      scores.push((apart - (errors.primarySupplyF - errors.secondarySupplyF)) / sigma);
+    }
+    const rms = Math.sqrt(scores.reduce((sum, z) => sum + z * z, 0) / scores.length);
+    expect(rms).toBeGreaterThan(0.4);
+    expect(rms).toBeLessThan(1.25);
+  });
+
   test('is not led astray by an hour in which one sensor is 8 F off', () => {
     const errors = planted(2);
     const { record } = exactLoop({ seed: 2, days: DAYS, errors });
