@@ -245,7 +245,7 @@ describe('a spot check', () => {
     expect(findingOf(after, 'secondaryReturnF')?.tie).toBe('spot-check');
     for (const name of LOOP_TEMPERATURES) {
       expect(Math.abs(foundOf(before, name) - errors[name])).toBeGreaterThan(0.2);
-      expect(Math.abs(foundOf(after, name) - errors[name])).toBeLessThan(0.17);
+      expect(Math.abs(foundOf(after, name) - errors[name])).toBeLessThan(0.1);
       const place = LOOP_TEMPERATURES.indexOf(name);
       expect(sigmaOf(after, place)).toBeLessThan(sigmaOf(before, place));
     }
@@ -276,13 +276,12 @@ describe('a spot check', () => {
     for (const spot of [outside, certain, rated]) expect(calibrateRecord(record, plant, [spot])).toEqual(plain);
   });
 
-  test('in a record too short to tell anything else moves no other sensor, and its own never past what was read', () => {
+  test('stands even where the record is too short to tell anything else', () => {
     const short = exactLoop({ days: 0.03, errors });
     const spot = { ...check('secondaryReturnF', 0.05, 1), reading: short.truth.secondaryReturnF[1]! };
     const after = calibrateRecord(short.record, plant, [spot]);
     expect(after.limits).toContain('too-short');
-    expect(after.values[3]).toBeGreaterThanOrEqual(0);
-    expect(after.values[3]).toBeLessThan(0.45);
+    expect(Math.abs(after.values[3]! - 0.35)).toBeLessThan(0.1);
     expect(after.values[0]).toBeCloseTo(0, 6);
   });
 });
