@@ -1,8 +1,7 @@
 import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
 import { EN_DASH, formatNumber } from '@/lib/client/format';
-import { ACCURACY, groupOf, keepsGoal, measureOf, type Measure } from './accuracy';
+import { ACCURACY, groupOf, keepsGoal, measureOf, RIGHT_BEYOND_5, type Measure } from './accuracy';
 
-const RIGHT5 = 'direction right, |b| > 5 %';
 const RATIO = 'RMSE of b / textbook';
 const WORST = ': worst plant';
 
@@ -18,16 +17,16 @@ interface Row {
 }
 const ROWS: readonly Row[] = [
   { measure: 'direction right', words: 'direction right' },
-  { measure: RIGHT5, words: 'where over 5 % of secondary flow crosses over', inset: true },
-  { measure: RIGHT5 + WORST, words: 'in the worst plant', inset: true },
-  { measure: 'direction right, |b| > 10 %', words: 'where over 10 % crosses over', inset: true },
-  { measure: 'right of running, |b| > 5 %', words: 'over 5 %, unknown counted as wrong', inset: true },
+  { measure: RIGHT_BEYOND_5, words: 'where over 5\u00a0% of secondary flow crosses over', inset: true },
+  { measure: RIGHT_BEYOND_5 + WORST, words: 'in the worst plant', inset: true },
+  { measure: 'direction right, |b| > 10 %', words: 'where over 10\u00a0% crosses over', inset: true },
+  { measure: 'right of running, |b| > 5 %', words: 'over 5\u00a0%, unknown counted as wrong', inset: true },
   { measure: 'sign right where forward or reverse', words: 'sign right where forward or reverse is said' },
-  { measure: 'within 5 % where still', words: 'truth within 5 % where still is said' },
+  { measure: 'within 5 % where still', words: 'truth within 5\u00a0% where still is said' },
   { measure: 'answered', words: 'answered' },
   { measure: 'given a direction', words: 'given a direction' },
   { measure: 'false reverse', words: 'false reverse, of what is not reverse' },
-  { measure: 'missed reverse', words: 'missed reverse, of reverse over 2 %' },
+  { measure: 'missed reverse', words: 'missed reverse, of reverse over 2\u00a0%' },
   { measure: 'Brier score', words: 'Brier score of the probability of reverse' },
   { measure: 'expected calibration error', words: 'expected calibration error, 10 bins' },
   { measure: RATIO, words: 'bypass error over the textbook’s', decimals: 2 },
@@ -40,13 +39,13 @@ const ROWS: readonly Row[] = [
     unit: '%',
   },
   { measure: 'RMSE of blended supply, F', words: 'blended supply error', decimals: 2, unit: '°F' },
-  { measure: 'coverage of b', words: '90 % interval holds the true bypass' },
-  { measure: 'coverage of blended supply', words: '90 % interval holds the true blended supply' },
+  { measure: 'coverage of b', words: '90\u00a0% interval holds the true bypass' },
+  { measure: 'coverage of blended supply', words: '90\u00a0% interval holds the true blended supply' },
   { measure: 'sensor offsets, F', words: 'error of sensor offsets, common mean off', decimals: 2, unit: '°F' },
   { measure: 'ratio of meter gains, %', words: 'error of the ratio of meter gains', decimals: 1, unit: '%' },
 ];
 
-function figure({ value }: Measure, { decimals = 3, percent = false }: Pick<Row, 'decimals' | 'percent'> = {}): string {
+function figure({ value }: Measure, { decimals = 4, percent = false }: Pick<Row, 'decimals' | 'percent'> = {}): string {
   return formatNumber(percent ? 100 * value : value, { decimals });
 }
 
@@ -76,9 +75,15 @@ export function AccuracyTable() {
         <tr>
           <HeadCell>measure</HeadCell>
           <HeadCell numeric>all {all.plants}</HeadCell>
-          <HeadCell numeric>goal</HeadCell>
-          <HeadCell numeric>near balance, {near.plants}</HeadCell>
-          <HeadCell numeric>goal</HeadCell>
+          <HeadCell numeric className="phone:hidden">
+            goal
+          </HeadCell>
+          <HeadCell numeric className="phone:whitespace-normal!">
+            near balance, {near.plants}
+          </HeadCell>
+          <HeadCell numeric className="phone:hidden">
+            goal
+          </HeadCell>
           <HeadCell numeric>away, {away.plants}</HeadCell>
         </tr>
       </thead>
@@ -89,18 +94,8 @@ export function AccuracyTable() {
               {row.words}
               {row.unit === undefined ? null : <span className="text-micro text-ink-3"> {row.unit}</span>}
             </RowHead>
-            <Cell numeric>
-              <Figure measure={measureOf(all, row.measure)} row={row} />
-            </Cell>
-            <Cell numeric className="text-small text-ink-2">
-              {goalWords(measureOf(all, row.measure))}
-            </Cell>
-            <Cell numeric>
-              <Figure measure={measureOf(near, row.measure)} row={row} />
-            </Cell>
-            <Cell numeric className="text-small text-ink-2">
-              {goalWords(measureOf(near, row.measure))}
-            </Cell>
+            <WithGoal measure={measureOf(all, row.measure)} row={row} />
+            <WithGoal measure={measureOf(near, row.measure)} row={row} />
             <Cell numeric>
               <Figure measure={measureOf(away, row.measure)} row={row} />
             </Cell>
@@ -111,6 +106,22 @@ export function AccuracyTable() {
   );
 }
 
+/** A figure and its goal: two cells, on a phone one under the other. */
+function WithGoal({ measure, row }: { measure: Measure; row: Row }) {
+  const goal = goalWords(measure);
+  return (
+    <>
+      <Cell numeric>
+        <Figure measure={measure} row={row} />
+        {goal === '' ? null : <span className="hidden text-micro text-ink-2 phone:block">{goal}</span>}
+      </Cell>
+      <Cell numeric className="text-small text-ink-2 phone:hidden">
+        {goal}
+      </Cell>
+    </>
+  );
+}
+
 interface Column {
   measure: string;
   head: string;
@@ -118,11 +129,11 @@ interface Column {
   percent?: boolean;
 }
 const COLUMNS: readonly Column[] = [
-  { measure: RIGHT5, head: 'right over 5 %' },
-  { measure: 'given a direction', head: 'given' },
-  { measure: 'Brier score', head: 'Brier' },
+  { measure: RIGHT_BEYOND_5, head: 'right over 5\u00a0%', decimals: 3 },
+  { measure: 'given a direction', head: 'given', decimals: 3 },
+  { measure: 'Brier score', head: 'Brier', decimals: 3 },
   { measure: RATIO, head: 'over textbook', decimals: 2 },
-  { measure: 'RMSE of b, share of design', head: 'bypass, % of design', decimals: 1, percent: true },
+  { measure: 'RMSE of b, share of design', head: 'bypass, %\u00a0of design', decimals: 1, percent: true },
   { measure: 'RMSE of blended supply, F', head: 'blend, °F', decimals: 2 },
   { measure: 'coverage of b', head: 'holds bypass', decimals: 2 },
   { measure: 'coverage of blended supply', head: 'holds blend', decimals: 2 },
@@ -173,6 +184,7 @@ const PLANT_HEADS = ['>5 %', 'given', 'Brier', 'ratio', 'rmse b', 'blend F', 'co
 export function WeakTable() {
   const rows = WEAK.map(([plant, words]) => ({
     words,
+    name: plant,
     cells: PLANT_HEADS.map((head) => ({ value: ACCURACY.fleets[0]?.plants[plant]?.[head] ?? Number.NaN })),
   }));
   return <Grid caption="Single plants where it is weak" first="plant" rows={rows} />;
@@ -181,7 +193,8 @@ export function WeakTable() {
 interface GridProps {
   caption: string;
   first: string;
-  rows: readonly { words: string; cells: readonly Measure[] }[];
+  /** `name`: as the bench prints it. */
+  rows: readonly { words: string; name?: string; cells: readonly Measure[] }[];
 }
 
 /** One line a group, the same nine measures in each. */
@@ -199,9 +212,14 @@ function Grid({ caption, first, rows }: GridProps) {
         </tr>
       </thead>
       <tbody>
-        {rows.map(({ words, cells }, index) => (
+        {rows.map(({ words, name, cells }, index) => (
           <tr key={`${index}/${words}`}>
-            <RowHead>{words}</RowHead>
+            <RowHead className="w-[190px] text-pretty phone:min-w-[112px]">
+              {words}
+              {name === undefined ? null : (
+                <span className="block text-small whitespace-nowrap text-ink-2 phone:whitespace-normal">{name}</span>
+              )}
+            </RowHead>
             {cells.map((measure, place) => (
               <Cell key={COLUMNS[place]?.head} numeric>
                 <Figure measure={measure} row={COLUMNS[place]} />

@@ -19,6 +19,9 @@ interface Run {
 /** What tests/bench/write-accuracy.ts kept of the bench: fleets 0 to 3, and fleet 0 with sensors that have no lasting error. */
 export const ACCURACY: { kernelVersion: string; fleets: readonly Run[]; perfect: Run } = printed;
 
+/** The measure that says most: still and trickles apart. */
+export const RIGHT_BEYOND_5 = 'direction right, |b| > 5 %';
+
 const NOBODY: PlantGroup = { plants: 0, intervals: 0, measures: {} };
 
 /** A group of a fleet; one that the bench does not print has no plants. */

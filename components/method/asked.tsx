@@ -9,15 +9,15 @@ import { Exhibit, P, Part } from './parts';
 const WHEN: Readonly<Record<Direction, string>> = {
   forward: `probability of reverse at most ${formatNumber(1 - DECIDED_PROBABILITY, { decimals: 2 })}`,
   reverse: `probability of reverse at least ${formatNumber(DECIDED_PROBABILITY, { decimals: 2 })}`,
-  still: `more likely than not within ${formatPercent(STILL_SHARE)} % of secondary flow of zero`,
+  still: `more likely than not within ${formatPercent(STILL_SHARE)}\u00a0% of secondary flow of zero`,
   unknown: 'neither; the reason is given',
 };
 
 const ANSWERS = [
   ['direction', 'forward, reverse, still or unknown; never forced'],
   ['probability of reverse', '0 to 1, also where the direction is unknown'],
-  ['bypass flow', 'gpm, positive from supply to return, with its central 90 % interval'],
-  ['blended supply', '°F at the supply tee, with its central 90 % interval'],
+  ['bypass flow', 'gpm, positive from supply to return, with its central 90\u00a0% interval'],
+  ['blended supply', '°F at the supply tee, with its central 90\u00a0% interval'],
   ['both mains, four temperatures', 'reconciled: moved by what the balances say of their errors'],
   ['load and both delta-T', 'from the reconciled values'],
   ['fit', 'squared disagreement, comparisons left over, the measurement most at odds'],
@@ -87,9 +87,9 @@ export function Asked() {
         and leaving temperatures. None in particular is required.
       </P>
       <P>
-        Every number comes with how sure it is. A central 90 % interval leaves 5 % of the probability below it and 5 %
-        above. It holds the sensors’ noise, their lasting errors as far as the record has not told them, and what a real
-        plant departs from two ideal tees by.
+        Every number comes with how sure it is. A central 90&nbsp;% interval leaves 5&nbsp;% of the probability below it
+        and 5&nbsp;% above. It holds the sensors’ noise, their lasting errors as far as the record has not told them,
+        and what a real plant departs from two ideal tees by.
       </P>
       <P>
         Without any flow the direction is still found, from temperatures; gpm are then not given. While the plant is off

@@ -3,7 +3,7 @@ import { Command, Head, P, Part } from './parts';
 /** How a sceptical reader gets at the numbers and at what made them. */
 export function CheckYourself() {
   return (
-    <Part id="check" number={8} title="How to check it yourself" sub="nothing needs to be taken on trust">
+    <Part id="check" number={9} title="How to check it yourself" sub="nothing needs to be taken on trust">
       <Head>The intervals</Head>
       <P>
         <Command>{'GET /api/v1/plants/{plant}/intervals?from=…&to=…&format=csv'}</Command> gives a row an interval: the

@@ -2,11 +2,12 @@ import { Page } from '@/components/shell/app-shell';
 import { PageHead } from '@/components/ui/page-head';
 import { formatNumber, formatPercent } from '@/lib/client/format';
 import { KERNEL_VERSION } from '@/lib/hydronics/types';
-import { ACCURACY, groupOf, measureOf } from './accuracy';
+import { ACCURACY, groupOf, measureOf, RIGHT_BEYOND_5 } from './accuracy';
 import { Asked } from './asked';
 import { CheckYourself } from './check-yourself';
 import { HowWell } from './how-well';
 import { OneInterval } from './one-interval';
+import { Outside } from './outside';
 import { Screening } from './screening';
 import { Sources } from './sources';
 import { TwoTees } from './two-tees';
@@ -19,6 +20,7 @@ const PARTS = [
   ['record', 'The whole record'],
   ['screening', 'Before any of it'],
   ['accuracy', 'How well it does'],
+  ['outside', 'Held against the outside'],
   ['sources', 'Sources'],
   ['check', 'How to check it yourself'],
 ] as const;
@@ -26,7 +28,7 @@ const PARTS = [
 /** The method of estimation for a reader who doubts it: what is asked, how it is worked out, how well it does, from where. */
 export function MethodPage() {
   const [all, near] = [groupOf('all'), groupOf('near balance')];
-  const right5 = (group: typeof all) => formatPercent(measureOf(group, 'direction right, |b| > 5 %').value, 1);
+  const right5 = (group: typeof all) => formatPercent(measureOf(group, RIGHT_BEYOND_5).value, 1);
   return (
     <Page foot={{ kernelVersion: KERNEL_VERSION }}>
       <PageHead
@@ -34,11 +36,11 @@ export function MethodPage() {
         title="How it is worked out"
         lead={
           <>
-            Direction with a probability, bypass and blended supply with a 90 % interval, from whatever the plant
-            trends. On {all.plants} simulated plants whose truth is known the direction was right in {right5(all)} % of
-            the intervals in which over 5 % of the flow crossed over, and the error of the bypass was{' '}
+            Direction with a probability, bypass and blended supply with a 90&nbsp;% interval, from whatever the plant
+            trends. On {all.plants} simulated plants whose truth is known the direction was right in {right5(all)}
+            &nbsp;% of the intervals in which over 5&nbsp;% of the flow crossed over, and the error of the bypass was{' '}
             {formatNumber(measureOf(all, 'RMSE of b / textbook').value, { decimals: 2 })} times the textbook formula’s.
-            On those near balance it was right in {right5(near)} %.
+            On those near balance it was right in {right5(near)}&nbsp;%.
           </>
         }
         block={[
@@ -65,6 +67,7 @@ export function MethodPage() {
       <WholeRecord />
       <Screening />
       <HowWell />
+      <Outside />
       <Sources />
       <CheckYourself />
     </Page>

@@ -12,7 +12,8 @@ const REVERSE: WayState = { ...emptyWayState(), bypassGpm: 20, bypassSigma: 45 }
 const LEFT_GPM = -160;
 const RIGHT_GPM = 220;
 const STEP_GPM = 4;
-const WIDTH = 560;
+/** As wide as a phone has room for, so that its words never shrink. */
+const WIDTH = 344;
 const BASE = 120;
 const HEIGHT = 158;
 const HIGHEST = 108;
@@ -46,7 +47,7 @@ export function NearZero() {
   return (
     <svg
       role="img"
-      aria-label={`Probability over the bypass of an invented interval: reverse 0.30, forward 0.70, 90 % between ${loText} and ${hiText} gpm`}
+      aria-label={`Probability over the bypass of an invented interval: reverse 0.30, forward 0.70, 90\u00a0% between ${loText} and ${hiText}\u00a0gpm`}
       viewBox={`0 0 ${WIDTH} ${HEIGHT}`}
       width={WIDTH}
       height={HEIGHT}
@@ -70,7 +71,7 @@ export function NearZero() {
           0
         </text>
         <text x={xOf(hi)} y={BASE + 32}>
-          {hiText} gpm
+          {hiText}&nbsp;gpm
         </text>
       </g>
       <g fill="var(--ink2)" fontSize="11">

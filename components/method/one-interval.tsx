@@ -25,9 +25,9 @@ export function OneInterval() {
         The readings are corrected by what the whole record told of their lasting errors (part 4). Generalized least
         squares finds the share that the comparisons agree on best, with the full covariance of their errors: the noise
         of the readings; what is left of every offset, gain and zero, with what they have in common; what a plant
-        departs from two ideal tees by, at least 0.04 °F and 0.6 % of flow; and, while a temperature moves, two minutes
-        of its slope, for the water takes time between the sensors. The common pipe’s own temperature counts for little
-        while hardly anything flows in it, for then it drifts towards the room.
+        departs from two ideal tees by, at least 0.04&nbsp;°F and 0.6&nbsp;% of flow; and, while a temperature moves,
+        two minutes of its slope, for the water takes time between the sensors. The common pipe’s own temperature counts
+        for little while hardly anything flows in it, for then it drifts towards the room.
       </P>
       <Head>The direction</Head>
       <P>
@@ -41,16 +41,16 @@ export function OneInterval() {
         <span>P(reverse) = probability that a normal of mean b and standard uncertainty u(b) lies below zero</span>
       </Formulas>
       <P>
-        <b>Still</b> is said when the bypass is more likely than not within {formatPercent(STILL_SHARE)} % of secondary
-        flow of zero; <b>reverse</b> or <b>forward</b> when its probability is at least{' '}
+        <b>Still</b> is said when the bypass is more likely than not within {formatPercent(STILL_SHARE)}&nbsp;% of
+        secondary flow of zero; <b>reverse</b> or <b>forward</b> when its probability is at least{' '}
         {formatNumber(DECIDED_PROBABILITY, { decimals: 2 })}; else <b>unknown</b>, with the reason.
       </P>
       <Head>The interval near zero</Head>
       <P>
         Each way gives a bypass with its uncertainty, a normal cut off at zero, since forward water does not run
         backward. The answer is both, joined at zero with their probabilities, and its interval runs from the point with
-        5 % below it to the point with 5 % above. Far from zero that is plus and minus 1.645 standard uncertainties;
-        near zero it reaches to both sides, and the sign stays open.
+        5&nbsp;% below it to the point with 5&nbsp;% above. Far from zero that is plus and minus 1.645 standard
+        uncertainties; near zero it reaches to both sides, and the sign stays open.
       </P>
       <Head>When measurements disagree</Head>
       <P>
@@ -69,24 +69,24 @@ export function OneInterval() {
       <P>
         A pipe that hunts shows supply warmed and return diluted at once, which no single way explains. Where all four
         temperatures are there and neither way fits, this third possibility is weighed too, with a share each way, the
-        smaller at least a quarter of the larger. Its prior grows with the length of the interval (0.4 % for a minute)
-        until the record shows how often this plant does it. If it is the likelier, the direction is unknown, the net is
-        given with its interval and the supply as measured.
+        smaller at least a quarter of the larger. Its prior grows with the length of the interval (0.4&nbsp;% for a
+        minute) until the record shows how often this plant does it. If it is the likelier, the direction is unknown,
+        the net is given with its interval and the supply as measured.
       </P>
       <Head>What is averaged</Head>
       <P>
         Neighbouring readings are averaged in only as far as the record shows that nothing moves: evenly to both sides,
-        up to 20 minutes, while no channel’s mean departs from the inner one by more than its noise explains, and never
-        over a change of state or of running units. What moves only with the bypass (where a mixed temperature lies
-        between supply and return, secondary over primary flow) may be averaged up to 45 minutes. Only noise shrinks so;
-        lasting errors do not.
+        up to 20&nbsp;minutes, while no channel’s mean departs from the inner one by more than its noise explains, and
+        never over a change of state or of running units. What moves only with the bypass (where a mixed temperature
+        lies between supply and return, secondary over primary flow) may be averaged up to 45&nbsp;minutes. Only noise
+        shrinks so; lasting errors do not.
       </P>
       <Head>Other arrangements</Head>
       <P>
         In a variable-primary plant the bypass runs forward or not at all: a direction is given when flow is clear of
-        zero, and readings that speak for reverse are a contradiction, not a direction. A bypass valve less than 2 %
-        open holds the share at zero within 1 %. In a building bridge that blends by design the estimate is the same;
-        only supply warmer than the designed blend is a fault.
+        zero, and readings that speak for reverse are a contradiction, not a direction. A bypass valve less than
+        2&nbsp;% open holds the share at zero within 1&nbsp;%. In a building bridge that blends by design the estimate
+        is the same; only supply warmer than the designed blend is a fault.
       </P>
     </Part>
   );
@@ -157,8 +157,8 @@ function Beside() {
         </Table>
       </Exhibit>
       <Exhibit
-        name="A bypass near zero: where it may lie, and the central 90 % interval"
-        source="An invented interval. Forward 70 ± 55 gpm and reverse 20 ± 45 gpm, each cut off at zero, joined with their probabilities."
+        name="A bypass near zero: where it may lie, and the central 90&nbsp;% interval"
+        source="An invented interval. Forward 70 ± 55&nbsp;gpm and reverse 20 ± 45&nbsp;gpm, each cut off at zero, joined with their probabilities."
       >
         <NearZero />
       </Exhibit>

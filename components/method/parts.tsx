@@ -1,5 +1,4 @@
 import type { ReactNode } from 'react';
-import { Section } from '@/components/ui/section';
 
 export interface PartProps {
   id: string;
@@ -15,12 +14,18 @@ export interface PartProps {
 /** One numbered part of the page: words at the left, numbers at the right. */
 export function Part({ id, number, title, sub, children, beside }: PartProps) {
   return (
-    <Section id={id} title={`${number}. ${title}`} sub={sub} className="mt-7.5 scroll-mt-4">
+    <section id={id} aria-labelledby={`${id}-title`} className="mt-10 scroll-mt-4 border-t border-ink pt-2.5">
+      <div className="mb-3 flex flex-wrap items-baseline gap-x-3.5">
+        <h2 id={`${id}-title`} className="font-serif text-lead font-medium">
+          {number}. {title}
+        </h2>
+        {sub === undefined ? null : <p className="text-ink-2">{sub}</p>}
+      </div>
       <div className="grid grid-cols-[minmax(0,560px)_minmax(0,1fr)] gap-x-13 narrow:block">
         <div className="text-figure leading-[1.45]">{children}</div>
         {beside === undefined ? null : <div className="min-w-0 narrow:mt-5">{beside}</div>}
       </div>
-    </Section>
+    </section>
   );
 }
 

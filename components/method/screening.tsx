@@ -4,7 +4,7 @@ import { Exhibit, Head, P, Part } from './parts';
 const SCREENS = [
   [
     'out of range',
-    'colder than 2 °F below the fluid’s freezing point, warmer than 110 °F; a flow above 2.5 times design, or below −5 % of it',
+    'colder than 2\u00a0°F below the fluid’s freezing point, warmer than 110\u00a0°F; a flow above 2.5 times design, or below −5\u00a0% of it',
   ],
   [
     'stuck',
@@ -12,7 +12,7 @@ const SCREENS = [
   ],
   [
     'spike',
-    'one or two readings beyond both neighbours by 4 °F, or a fifth of design flow (0.3 in the common pipe), and eight times the noise nearby, while no unit comes or goes and no other sensor moves',
+    'one or two readings beyond both neighbours by 4\u00a0°F, or a fifth of design flow (0.3 in the common pipe), and eight times the noise nearby, while no unit comes or goes and no other sensor moves',
   ],
 ] as const;
 
@@ -20,7 +20,7 @@ const STATES = [
   ['off', 'no unit on, distribution not pumped: nothing is concluded'],
   [
     'starting',
-    'the first 15 minutes after the first unit comes on; up to 60 while supply is over 6 °F above set-point',
+    'the first 15\u00a0minutes after the first unit comes on; up to 60 while supply is over 6\u00a0°F above set-point',
   ],
   ['running', 'the only state that makes low hours, causes, cost and mails'],
   ['coasting', 'no unit on, distribution pumped: the whole flow runs backward, and no fault'],
@@ -62,9 +62,10 @@ export function Screening() {
       </P>
       <Head>Steady or not</Head>
       <P>
-        An interval counts as unsteady within five minutes of staging, in a ramp of over 0.2 °F a minute, or while a
-        flow changes by a tenth of design. The calibration takes stretches that are steady for at least 60 % of their
-        readings. Unsteady intervals are estimated all the same, with the wider uncertainty of moving temperatures.
+        An interval counts as unsteady within five minutes of staging, in a ramp of over 0.2&nbsp;°F a minute, or while
+        a flow changes by a tenth of design. The calibration takes stretches that are steady for at least 60&nbsp;% of
+        their readings. Unsteady intervals are estimated all the same, with the wider uncertainty of moving
+        temperatures.
       </P>
     </Part>
   );

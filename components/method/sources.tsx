@@ -1,12 +1,12 @@
+import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
 import { P, Part } from './parts';
 
 /** How far a source stands behind what is done here. */
 type Mark = 'values' | 'named' | 'memory';
 const MARKS: Readonly<Record<Mark, string>> = {
-  values: 'its published values are reproduced by a test',
-  named:
-    'the method is known by this work; limits and constants are the project’s own, its arithmetic is tested on its own',
-  memory: 'from memory, the text was not at hand',
+  values: 'values reproduced',
+  named: 'method named',
+  memory: 'from memory',
 };
 
 interface Source {
@@ -112,20 +112,55 @@ const SOURCES: readonly Source[] = [
 /** Where the method comes from, and how far each source was at hand. */
 export function Sources() {
   return (
-    <Part id="sources" number={7} title="Sources" sub="and how far each stands behind what is done">
+    <Part
+      id="sources"
+      number={8}
+      title="Sources"
+      sub="and how far each stands behind what is done"
+      beside={
+        <Table caption="Sources" dense className="phone:block phone:[&_tbody]:block">
+          <thead className="phone:sr-only">
+            <tr>
+              <HeadCell>for</HeadCell>
+              <HeadCell>work</HeadCell>
+              <HeadCell>stands behind it</HeadCell>
+            </tr>
+          </thead>
+          <tbody>
+            {SOURCES.map(({ what, work, mark }) => (
+              <tr
+                key={work}
+                className="phone:block phone:border-b phone:border-grid phone:py-1.5 phone:[&>*]:block phone:[&>*]:border-0! phone:[&>*]:p-0!"
+              >
+                <RowHead className="w-[27%] font-semibold! text-pretty phone:w-auto">{what}</RowHead>
+                <Cell className="text-pretty">{work}</Cell>
+                <Cell className="text-small whitespace-nowrap text-ink-2">{MARKS[mark]}</Cell>
+              </tr>
+            ))}
+          </tbody>
+        </Table>
+      }
+    >
       <P>
         The balances are the first law for a steady, adiabatic junction, in any text on thermodynamics; the weighing is
         generalized least squares and Bayes’ rule, in any text on statistics. Their combination for a decoupler is the
-        project’s own. Limits of time, temperature and share without a source in this list are common practice of the
-        trade; in the code each says so beside itself.
+        project’s own.
       </P>
-      <ol className="list-outside list-decimal ps-6 text-base">
-        {SOURCES.map(({ what, work, mark }) => (
-          <li key={work} className="border-b border-grid py-1.5 ps-1 text-pretty">
-            <b>{what}:</b> {work}. <span className="text-ink-2">{MARKS[mark]}.</span>
-          </li>
-        ))}
-      </ol>
+      <P>
+        <b>Values reproduced:</b> numbers that the source prints come out of a test of the project. The text itself was
+        not always at hand: where its numbers were read in a second place, the table in fixtures/reference names it.
+      </P>
+      <P>
+        <b>Method named:</b> the method is known by this work. It was written down without the text at hand; its
+        arithmetic is tested on its own, and its limits and constants are the project’s.
+      </P>
+      <P>
+        <b>From memory:</b> a number that nobody has looked up.
+      </P>
+      <P>
+        Limits of time, temperature and share without a source in this list are common practice of the trade, no source;
+        in the code each says so beside itself.
+      </P>
     </Part>
   );
 }

@@ -79,9 +79,9 @@ export function TwoTees() {
         ). The two ways meet at b = 0, where neither tee mixes.
       </P>
       <P>
-        Mixing is counted in enthalpy, on a scale of temperature that follows the fluid’s specific heat (within 0.003
-        °F, 15 °F from its middle). Flows are taken at one density: their volume differs by less than 0.07 % between the
-        tees.
+        Mixing is counted in enthalpy, on a scale of temperature that follows the fluid’s specific heat (within
+        0.003&nbsp;°F, 15&nbsp;°F from its middle). Flows are taken at one density: their volume differs by less than
+        0.07&nbsp;% between the tees.
       </P>
       <Head>The textbook formula</Head>
       <P>
@@ -101,17 +101,17 @@ export function TwoTees() {
       </Formulas>
       <P>
         An error that all sensors share cancels in it; one that they do not share does not. With{' '}
-        {formatNumber(EXAMPLE_SIGMA_F, { decimals: 2 })} °F on each sensor, 44, 46 and 56 °F make a share of{' '}
-        {formatPercent(example, 1)} ± {formatPercent(exampleSigma, 1)} %.
+        {formatNumber(EXAMPLE_SIGMA_F, { decimals: 2 })}&nbsp;°F on each sensor, 44, 46 and 56&nbsp;°F make a share of{' '}
+        {formatPercent(example, 1)} ± {formatPercent(exampleSigma, 1)}&nbsp;%.
       </P>
       <Head>Why a second look is needed</Head>
       <P>
         The formula always has a sign. The larger of two noisy shares is one or the other in every interval, also when
         the pipe stands still. An error of one sensor is taken for flow, all day and every day, and no average takes it
-        away: half a degree between two supply sensors is 4 % of the flow at a delta-T of 12 °F. Meters fare no better:
-        1,000 and 1,020 gpm, each good to 2 %, differ by {formatNumber(meterSigmas, { decimals: 1 })} standard
-        uncertainties. And a mean over an interval in which water ran one way and then the other is a mean of two
-        streams that were never there together.
+        away: half a degree between two supply sensors is 4&nbsp;% of the flow at a delta-T of 12&nbsp;°F. Meters fare
+        no better: 1,000 and 1,020&nbsp;gpm, each good to 2&nbsp;%, differ by{' '}
+        {formatNumber(meterSigmas, { decimals: 1 })} standard uncertainties. And a mean over an interval in which water
+        ran one way and then the other is a mean of two streams that were never there together.
       </P>
     </Part>
   );
@@ -127,13 +127,13 @@ function Beside() {
             flows={FORWARD}
             scale={scale}
             title="Forward"
-            words="2,000 gpm made at 44 °F, 1,500 sent out: 500 cross over to the return; 56 °F becomes 53."
+            words="2,000&nbsp;gpm made at 44&nbsp;°F, 1,500 sent out: 500 cross over to the return; 56&nbsp;°F becomes 53."
           />
           <Drawn
             flows={REVERSE}
             scale={scale}
             title="Reverse"
-            words="1,000 gpm made at 44 °F, 1,200 sent out: 200 come back into the supply; 44 °F becomes 46."
+            words="1,000&nbsp;gpm made at 44&nbsp;°F, 1,200 sent out: 200 come back into the supply; 44&nbsp;°F becomes 46."
           />
         </div>
       </Exhibit>
@@ -149,10 +149,10 @@ function Beside() {
         <Table caption="Smallest share that temperatures tell from zero" className="max-w-[620px]" bare>
           <thead>
             <tr>
-              <HeadCell>u of each sensor</HeadCell>
+              <HeadCell>u of each sensor, by D</HeadCell>
               {SPANS_F.map((spanF) => (
                 <HeadCell key={spanF} numeric>
-                  D = {spanF} °F
+                  {spanF}&nbsp;°F
                 </HeadCell>
               ))}
             </tr>
@@ -160,7 +160,7 @@ function Beside() {
           <tbody>
             {SIGMAS_F.map((sigmaF) => (
               <tr key={sigmaF}>
-                <RowHead>{formatNumber(sigmaF, { decimals: 2 })} °F</RowHead>
+                <RowHead>{formatNumber(sigmaF, { decimals: 2 })}&nbsp;°F</RowHead>
                 {SPANS_F.map((spanF) => (
                   <Cell key={spanF} numeric>
                     {formatPercent(leastShare(sigmaF, spanF), 1)}

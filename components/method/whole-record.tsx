@@ -60,15 +60,15 @@ export function WholeRecord() {
       <P>
         Two explanations often fit nearly alike: these sensors and that flow, or those and this. So the search begins
         from several starts (sensors as they are; supplies and returns that meet where they come closest; meters that
-        disagree by 3.5 and 7 % either way) and takes the one of the highest likelihood, with the sensors’ classes
+        disagree by 3.5 and 7&nbsp;% either way) and takes the one of the highest likelihood, with the sensors’ classes
         weighing in and no single stretch deciding.
       </P>
       <Head>How sure it is</Head>
       <P>
         The sensors’ classes are the prior: what nobody has said of a sensor is taken from the table. Where the offsets
         that the record does tell are larger than their class, the class of all of them is widened, up to twice; where
-        they are smaller, it is narrowed to 0.7 at the least. A loop that is further from two ideal tees than 0.04 °F
-        and 0.6 % widens that allowance for itself, up to eightfold.
+        they are smaller, it is narrowed to 0.7 at the least. A loop that is further from two ideal tees than
+        0.04&nbsp;°F and 0.6&nbsp;% widens that allowance for itself, up to eightfold.
       </P>
       <P>
         Neighbouring readings err together, so an hour counts as one comparison at the most, and the covariance is
@@ -80,7 +80,7 @@ export function WholeRecord() {
       <P>
         Without a primary meter the rated flow of the pumps that run stands in, where pumps have one speed. It gets a
         gain for each set of units that runs together, since two pumps on one system do not make twice the flow of one:
-        seven sets at the most, and one for all others. Of the doubt of a rated flow 70 % is taken as common to all
+        seven sets at the most, and one for all others. Of the doubt of a rated flow 70&nbsp;% is taken as common to all
         sets. Units’ leaving temperatures that stand in for the supply get an offset for each set likewise.
       </P>
       <Head>The header sensor</Head>
@@ -94,17 +94,17 @@ export function WholeRecord() {
       <P>
         A secondary supply sensor usually sits behind the distribution pumps, whose losses warm the water. Where someone
         has given the pumps’ head, that rise is taken off before anything is compared: (1 / efficiency − 1) times head,{' '}
-        {formatNumber(plant.distributionRiseF, { decimals: 2 })} °F at {HEAD_FT} ft and{' '}
-        {formatPercent(plant.distributionPumps.efficiency)} %. It is taken as constant, at the design head and
+        {formatNumber(plant.distributionRiseF, { decimals: 2 })}&nbsp;°F at {HEAD_FT}&nbsp;ft and{' '}
+        {formatPercent(plant.distributionPumps.efficiency)}&nbsp;%. It is taken as constant, at the design head and
         efficiency. Without a head it is not modelled apart: it is then part of the offset between the two supply
         sensors.
       </P>
       <Head>Which sensor next</Head>
       <P>
         To say what a further sensor would do, intervals spread over the running record are weighed again as if it had
-        been there, reading what the estimate expects, with its usual uncertainty (0.17 °F, or 1.5 % for a meter; in the
-        common pipe 0.3 °F and 3 %). What is listed is by how much the bypass interval narrows and how many hours cease
-        to be unknown.
+        been there, reading what the estimate expects, with its usual uncertainty (0.17&nbsp;°F, or 1.5&nbsp;% for a
+        meter; in the common pipe 0.3&nbsp;°F and 3&nbsp;%). What is listed is by how much the bypass interval narrows
+        and how many hours cease to be unknown.
       </P>
     </Part>
   );
@@ -159,7 +159,7 @@ function Beside() {
       </Exhibit>
       <Exhibit
         name="What a sensor is taken for until someone gives its own (k = 1)"
-        source="Installed, not as catalogued. Resistance thermometer of class B at 45 °F from memory of IEC 60751; the others are common practice, no source."
+        source="Installed, not as catalogued. Resistance thermometer of class B at 45&nbsp;°F from memory of IEC 60751; the others are common practice, no source."
       >
         <Table caption="What a sensor is taken for until someone gives its own" className="max-w-[520px]" bare>
           <thead className="sr-only">
@@ -169,17 +169,23 @@ function Beside() {
             </tr>
           </thead>
           <tbody>
-            <ClassRow name="loop temperature" value={`${formatNumber(temperatureSigmaF.primarySupplyTemp, TWO)} °F`} />
+            <ClassRow
+              name="loop temperature"
+              value={`${formatNumber(temperatureSigmaF.primarySupplyTemp, TWO)}\u00a0°F`}
+            />
             <ClassRow
               name="temperature in the common pipe"
-              value={`${formatNumber(temperatureSigmaF.bypassTemp, TWO)} °F`}
+              value={`${formatNumber(temperatureSigmaF.bypassTemp, TWO)}\u00a0°F`}
             />
-            <ClassRow name="flow meter, gain" value={`${formatNumber(flowSigmaPercent.primaryFlow)} % of reading`} />
-            <ClassRow name="flow meter in a main, zero" value="0.5 % of design flow" />
-            <ClassRow name="flow meter in the common pipe, zero" value="1 % of design flow" />
+            <ClassRow
+              name="flow meter, gain"
+              value={`${formatNumber(flowSigmaPercent.primaryFlow)}\u00a0% of reading`}
+            />
+            <ClassRow name="flow meter in a main, zero" value="0.5&nbsp;% of design flow" />
+            <ClassRow name="flow meter in the common pipe, zero" value="1&nbsp;% of design flow" />
             <ClassRow
               name="rated flow of running pumps"
-              value={`${formatNumber(flowSigmaPercent.ratedFlow)} % of reading`}
+              value={`${formatNumber(flowSigmaPercent.ratedFlow)}\u00a0% of reading`}
             />
           </tbody>
         </Table>

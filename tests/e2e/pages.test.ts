@@ -22,6 +22,9 @@ for (const colorScheme of ['light', 'dark'] as const) {
       };
       await page.goto('/sign-in');
       await look('page-sign-in');
+      await page.goto('/method');
+      await expect(page.getByRole('heading', { name: 'How it is worked out', level: 1 })).toBeVisible();
+      await look('page-method');
       await signIn(page, 'operator');
       await look('page-plants');
       await openPlant(page, 'Assay Row laboratories');
@@ -43,6 +46,20 @@ for (const colorScheme of ['light', 'dark'] as const) {
     });
   });
 }
+
+test('how a number is worked out is one click from any page, signed in or not', async ({ page }) => {
+  await signIn(page, 'operator');
+  await openPlant(page, 'Quadrangle loop');
+  await page.getByRole('contentinfo').getByRole('link', { name: 'How it is worked out' }).click();
+  await expect(page.getByRole('heading', { name: 'How it is worked out', level: 1 })).toBeVisible();
+  const person = page.getByRole('banner').getByRole('button', { name: /Signed in as operator@demo\.example/ });
+  await expect(person.filter({ visible: true })).toBeVisible();
+  await page.getByRole('link', { name: 'Sources' }).click();
+  await expect(page.getByRole('heading', { name: /Sources/ })).toBeInViewport();
+  await page.context().clearCookies();
+  await page.reload();
+  await expect(page.getByRole('banner').getByRole('link', { name: 'Sign in' })).toBeVisible();
+});
 
 test('a page that needs sign-in comes back to itself after it', async ({ page }) => {
   await signIn(page, 'operator');
