@@ -70,8 +70,9 @@ export function OneInterval() {
         A pipe that hunts shows supply warmed and return diluted at once, which no single way explains. Where all four
         temperatures are there and neither way fits, this third possibility is weighed too, with a share each way, the
         smaller at least a quarter of the larger. Its prior grows with the length of the interval (0.4&nbsp;% for a
-        minute) until the record shows how often this plant does it. If it is the likelier, the direction is unknown,
-        the net is given with its interval and the supply as measured.
+        minute) until the record shows how often this plant does it; meters that contradict it by three standard
+        uncertainties rule it out. If it is the likelier, the direction is unknown, the net is given with its interval
+        and the supply as measured.
       </P>
       <Head>What is averaged</Head>
       <P>
@@ -79,7 +80,8 @@ export function OneInterval() {
         up to 20&nbsp;minutes, while no channel’s mean departs from the inner one by more than its noise explains, and
         never over a change of state or of running units. What moves only with the bypass (where a mixed temperature
         lies between supply and return, secondary over primary flow) may be averaged up to 45&nbsp;minutes. Only noise
-        shrinks so; lasting errors do not.
+        shrinks so; lasting errors do not. One-minute intervals that share a wide window with their neighbours of the
+        same four minutes share one answer.
       </P>
       <Head>Other arrangements</Head>
       <P>

@@ -4,6 +4,7 @@ import Link from 'next/link';
 import { PeriodPicker } from '@/components/plant/period-picker';
 import { usePeriod } from '@/components/plant/use-period';
 import { Page } from '@/components/shell/app-shell';
+import { METHOD_PATH } from '@/components/shell/foot';
 import { plantPath } from '@/components/shell/tabs';
 import { useFormat } from '@/components/shell/units-context';
 import { PageHead } from '@/components/ui/page-head';
@@ -81,7 +82,15 @@ function Told({ plant, data, period }: ToldProps) {
   return (
     <>
       {data.suspicions.length === 0 ? null : <Suspicions plantId={plant.id} suspicions={data.suspicions} />}
-      <Section title="Likely offset" sub="point and central 90 % interval; filled and heavy where zero lies outside">
+      <Section
+        title="Likely offset"
+        sub="point and central 90 % interval; filled and heavy where zero lies outside"
+        aside={
+          <Link href={`${METHOD_PATH}#record`} className="link">
+            how a record tells
+          </Link>
+        }
+      >
         <SensorsTable plantId={plant.id} timeZone={plant.timeZone} sensors={data.sensors} period={period} />
       </Section>
       {data.limits.length === 0 && data.header.sentence === null ? null : (

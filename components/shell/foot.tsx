@@ -3,7 +3,7 @@ import { Fragment, type ReactNode } from 'react';
 import { CAUTION } from '@/lib/client/words';
 
 /** The page that explains the method; open to everyone. */
-const METHOD_PATH = '/method';
+export const METHOD_PATH = '/method';
 
 export interface FootProps {
   settingsRevision?: number;
