@@ -1,6 +1,6 @@
 import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
 import { EN_DASH, formatNumber } from '@/lib/client/format';
-import { ACCURACY, groupOf, keepsGoal, measureOf, RIGHT_BEYOND_5, type Measure } from './accuracy';
+import { ACCURACY, groupOf, HUNTING, keepsGoal, measureOf, RIGHT_BEYOND_5, type Measure } from './accuracy';
 
 const RATIO = 'RMSE of b / textbook';
 const WORST = ': worst plant';
@@ -171,18 +171,26 @@ export function FleetTable() {
   return <Grid caption="Accuracy on fleets of other plants" first="plants" rows={rows} />;
 }
 
-/** Plants that show a weakness each, by their name in the bench. */
-const WEAK = [
-  ['both-meters near-balance 1007', 'hunts within the interval, both meters'],
-  ['temperatures near-balance 4005', 'near balance, temperatures only'],
-  ['temperatures near-balance 4007', 'near balance, temperatures only'],
-  ['one-meter near-balance 3006', 'near balance, one meter'],
-  ['pump-status mostly-forward 2008', 'forward all along, pump status for a meter'],
-] as const;
 const PLANT_HEADS = ['>5 %', 'given', 'Brier', 'ratio', 'rmse b', 'blend F', 'cover b', 'cover F', 'offset'] as const;
 
+/** The plant of fleet 0 that hunts, and those that come last in what counts, each once. */
+function weakPlants(): { plant: string; words: string }[] {
+  const named = [{ plant: HUNTING, words: 'hunts within the interval' }];
+  const plants = Object.entries(ACCURACY.fleets[0]?.plants ?? {});
+  const last = (head: (typeof PLANT_HEADS)[number], sign: 1 | -1, count: number, words: string) => {
+    const ranked = plants
+      .filter(([plant, of]) => of?.[head] !== undefined && !named.some((each) => each.plant === plant))
+      .sort(([, one], [, other]) => sign * ((one?.[head] ?? 0) - (other?.[head] ?? 0)));
+    for (const [plant] of ranked.slice(0, count)) named.push({ plant, words });
+  };
+  last('>5 %', 1, 3, 'least often right over 5\u00a0%');
+  last('ratio', -1, 2, 'most error over the textbook’s');
+  last('cover F', 1, 2, 'blended supply least often held');
+  return named;
+}
+
 export function WeakTable() {
-  const rows = WEAK.map(([plant, words]) => ({
+  const rows = weakPlants().map(({ plant, words }) => ({
     words,
     name: plant,
     cells: PLANT_HEADS.map((head) => ({ value: ACCURACY.fleets[0]?.plants[plant]?.[head] ?? Number.NaN })),

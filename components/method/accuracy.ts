@@ -22,6 +22,9 @@ export const ACCURACY: { kernelVersion: string; fleets: readonly Run[]; perfect:
 /** The measure that says most: still and trickles apart. */
 export const RIGHT_BEYOND_5 = 'direction right, |b| > 5 %';
 
+/** The plant of fleet 0 whose primary flow swings about balance every few minutes. */
+export const HUNTING = 'both-meters near-balance 1007';
+
 const NOBODY: PlantGroup = { plants: 0, intervals: 0, measures: {} };
 
 /** A group of a fleet; one that the bench does not print has no plants. */
@@ -30,6 +33,13 @@ export const groupOf = (group: string, fleet = 0): PlantGroup => ACCURACY.fleets
 /** A measure of a group; NaN where the bench prints none. */
 export const measureOf = (group: PlantGroup, measure: string): Measure =>
   group.measures[measure] ?? { value: Number.NaN };
+
+/** Least and most of a column of fleet 0, over the plants whose name holds a text; Infinity where there are none. */
+export function extremes(name: string, head: string): { least: number; most: number } {
+  const plants = Object.entries(ACCURACY.fleets[0]?.plants ?? {}).filter(([plant]) => plant.includes(name));
+  const values = plants.flatMap(([, of]) => of?.[head] ?? []);
+  return { least: Math.min(...values), most: Math.max(...values) };
+}
 
 /** Whether a measure keeps its goal; one without a goal keeps it. */
 export const keepsGoal = ({ value, atLeast = -Infinity, atMost = Infinity }: Measure): boolean =>

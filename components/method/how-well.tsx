@@ -1,16 +1,17 @@
 import { formatNumber, formatPercent } from '@/lib/client/format';
 import { AccuracyTable, FleetTable, SensingTable, WeakTable } from './accuracy-tables';
-import { ACCURACY, groupOf, measureOf, RIGHT_BEYOND_5 } from './accuracy';
+import { ACCURACY, extremes, groupOf, HUNTING, measureOf, RIGHT_BEYOND_5 } from './accuracy';
 import { Command, Exhibit, Head, P, Part } from './parts';
 
 /** What the method reaches where the truth is known, where it is weak, and what it was held against. */
 export function HowWell() {
   const all = groupOf('all');
   const near = groupOf('near balance');
-  const plants = ACCURACY.fleets[0]?.plants;
-  const hunting = plants?.['both-meters near-balance 1007'];
-  const oneWay = plants?.['pump-status mostly-forward 2008'];
+  const hunting = ACCURACY.fleets[0]?.plants[HUNTING];
+  const oneWay = extremes('mostly-forward', 'ratio');
+  const bareNear = 'temperatures near-balance';
   const perfect = ACCURACY.perfect.groups;
+  const times = (value: number) => formatNumber(value, { decimals: 2 });
   const share = (value: number | undefined) => formatPercent(value, 1);
   return (
     <Part
@@ -54,8 +55,9 @@ export function HowWell() {
         calibration.
       </P>
       <P>
-        <b>Temperatures only.</b> With noisy sensors, no flow and a plant near balance, as much as a fifth of the
-        intervals stays unknown, and of those that are given a direction more are wrong than anywhere else.
+        <b>Temperatures only.</b> With noisy sensors, no flow and a plant near balance, as much as{' '}
+        {share(1 - extremes(bareNear, 'given').least)}&nbsp;% of the intervals stays unknown, and of those beyond
+        5&nbsp;% that are given a direction as little as {share(extremes(bareNear, '>5 %').least)}&nbsp;% are right.
       </P>
       <P>
         <b>Hunting.</b> A pipe that swings within the interval is not two steady tees. In the plant that hunts, the
@@ -63,9 +65,10 @@ export function HowWell() {
         supply in {share(hunting?.['cover F'])}&nbsp;%: both are far too sure.
       </P>
       <P>
-        <b>One way all along.</b> In a plant that never ran backward the direction is beyond doubt, but its two returns
-        were never one stream, and their offset is not tied. How much crosses over may then be further off than the
-        plain formula has it: {formatNumber(oneWay?.ratio, { decimals: 2 })} times in one plant below.
+        <b>One way all along.</b> In a plant that never runs backward the direction is beyond doubt, but its two returns
+        are never one stream, and their offset is not tied. How much crosses over is then hardly better known than by
+        the plain formula: the bypass error of such plants is {times(oneWay.least)} to {times(oneWay.most)} times the
+        formula’s, against {times(measureOf(all, 'RMSE of b / textbook').value)} over all.
       </P>
       <P>
         <b>Blended supply.</b> Its interval is too narrow in some plants, most of all near balance: an offset that the
