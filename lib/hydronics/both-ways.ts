@@ -22,6 +22,14 @@ export const emptyBothWays = (): BothWays => ({
   bypassSigma: Number.NaN,
 });
 
+/** Squared sigmas at which the flows contradict a swing: it is no explanation then, however badly one way alone fits. */
+const CONTRADICTED = 16;
+
+function ruleOut(out: BothWays): void {
+  out.logEvidence = Number.NEGATIVE_INFINITY;
+  out.bypassGpm = out.bypassSigma = Number.NaN;
+}
+
 /** Covariance of a combination of temperatures (coefficients in the order PS PR SS SR) with another. */
 function between(v: Float64Array, a: readonly number[], b: readonly number[]): number {
   let sum = 0;
@@ -64,13 +72,18 @@ export function weighBothWays(reading: SlotReading, out: BothWays): void {
   const primary = flows[FP] as number;
   const secondary = flows[FS] as number;
   const main = Math.max(primary, secondary);
-  if (!(main > 0)) return;
+  if (!(main > 0)) {
+    // One way alone is held against the bypass meter then, and a swing cannot be: it is not set beside it.
+    if (!Number.isNaN(flows[FB])) out.logEvidence = Number.NEGATIVE_INFINITY;
+    return;
+  }
   const byTemperature = (ahead - back) * main;
   const ofTemperature = main * main * Math.max(0, vBack + vAhead - 2 * vBoth);
   const byFlow = primary - secondary;
   const ofFlow = (w[FP * FLOWS + FP] as number) + (w[FS * FLOWS + FS] as number) - 2 * (w[FP * FLOWS + FS] as number);
   const apart = byFlow - byTemperature;
   const variance = ofTemperature + ofFlow;
+  if (apart * apart > CONTRADICTED * variance) return ruleOut(out);
   // Density of the secondary reading given the rest, as the one-way fits have it.
   out.logEvidence -= 0.5 * ((apart * apart) / variance + Math.log(variance) + LOG_TWO_PI);
   const share = ofTemperature / variance;
@@ -81,5 +94,6 @@ export function weighBothWays(reading: SlotReading, out: BothWays): void {
   const expected = reading.bypassUnsigned ? (ahead + back) * main : out.bypassGpm;
   const off = (reading.bypassUnsigned ? Math.abs(meter) : meter) - expected;
   const doubt = (w[FB * FLOWS + FB] as number) + (reading.bypassUnsigned ? ofTemperature : out.bypassSigma ** 2);
+  if (off * off > CONTRADICTED * doubt) return ruleOut(out);
   out.logEvidence -= 0.5 * ((off * off) / doubt + Math.log(doubt) + LOG_TWO_PI);
 }

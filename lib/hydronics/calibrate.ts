@@ -61,9 +61,7 @@ function stretchesOf(work: CalibrationWork): HeaderStretch[] {
   const { bins } = work;
   const worth = Math.min(1, bins.hoursEach / HOURS_PER_COMPARISON);
   return Array.from({ length: bins.count }, (_, bin) => {
-    const [forward, reverse] = [work.forward[bin] as number, work.reverse[bin] as number];
-    const told = forward + reverse > 0 ? reverse / (forward + reverse) : 0.5;
-    return { slot: bins.slots[bin] as number, slots: bins.width, reverse: told, worth };
+    return { slot: bins.slots[bin] as number, slots: bins.width, reverse: work.backward[bin] as number, worth };
   });
 }
 
@@ -95,6 +93,7 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
     covariance: prior.slice(),
     forward: new Float64Array(bins.count),
     reverse: new Float64Array(bins.count),
+    backward: new Float64Array(bins.count).fill(0.5),
     chiSquare: new Float64Array(bins.count),
     redundancy: new Float64Array(bins.count),
     shareScale: 0.3,
@@ -152,7 +151,7 @@ function spotTerms(spotChecks: readonly SpotCheck[], loop: LoopRecord, scale: Mi
       : temperature >= 0
         ? fromMixing(recorded, scale)
         : recorded;
-    if (!Number.isFinite(shown) || !(check.sigma > 0)) continue;
+    if (!Number.isFinite(shown) || !Number.isFinite(check.reading) || !(check.sigma > 0)) continue;
     if (temperature >= 0) terms.push({ place: temperature, value: shown - check.reading, variance: check.sigma ** 2 });
     else if (flow >= 0 && check.reading > 0) {
       terms.push({

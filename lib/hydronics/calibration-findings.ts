@@ -1,4 +1,5 @@
 import { MISFIT_F, MISFIT_FLOW } from './sensor-errors';
+import { MIN_BINS } from './calibration-spread';
 import type { CalibrationWork, SpotTerm } from './calibration-work';
 import { CONTRASTS } from './contrasts';
 import { chiSquareQuantile } from './distributions';
@@ -34,10 +35,9 @@ function clearHours(work: CalibrationWork): Hours {
   let forward = 0;
   let reverse = 0;
   for (let bin = 0; bin < work.bins.count; bin += 1) {
-    const f = work.forward[bin] as number;
-    const r = work.reverse[bin] as number;
-    if (f > 9 * r) forward += work.bins.hoursEach;
-    else if (r > 9 * f) reverse += work.bins.hoursEach;
+    const backward = work.backward[bin] as number;
+    if (backward < 0.1) forward += work.bins.hoursEach;
+    else if (backward > 0.9) reverse += work.bins.hoursEach;
   }
   return { forward, reverse };
 }
@@ -140,7 +140,7 @@ export function describeCalibration(
 function limitsOf(work: CalibrationWork, hours: Hours, checks: readonly SpotTerm[]): CalibrationLimit[] {
   const { loop, bins } = work;
   const limits: CalibrationLimit[] = [];
-  if (bins.count * bins.hoursEach < 1) limits.push('too-short');
+  if (bins.count < MIN_BINS) limits.push('too-short');
   const flows = [FP, FS, FB].filter((flow) => loop.flows[flow]);
   if (flows.length === 0) limits.push('no-flow');
   if (loop.temperatures.some((channel) => channel) && !checks.some((check) => check.place < TEMPERATURES))

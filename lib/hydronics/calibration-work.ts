@@ -19,7 +19,8 @@ import {
 } from './sensor-errors';
 import { emptySlotReading } from './slot-reading';
 import type { PlantModel } from './types';
-import { emptyWayFit } from './contrasts';
+import { emptyWayFit, partsOf } from './contrasts';
+import type { WayFit } from './contrasts';
 import { fitWay } from './way-fit';
 import { profileScore } from './way-score';
 import type { PrimaryPlaces } from './way-score';
@@ -49,6 +50,8 @@ export interface CalibrationWork {
   /** By bin: weight of forward and of reverse, robust and normalised. */
   forward: Float64Array;
   reverse: Float64Array;
+  /** By bin: probability of reverse. */
+  backward: Float64Array;
   /** By bin: chi-square of the likelier way and comparisons beyond the unknowns. */
   chiSquare: Float64Array;
   redundancy: Float64Array;
@@ -106,6 +109,19 @@ const weightOf = (probability: number): number =>
   probability < IMPROBABLE ? 0 : probability > 1 - IMPROBABLE ? 1 : probability;
 const IMPROBABLE = 0.1;
 
+/** Comparisons of the shared reading beyond the unknowns, a temperature that nothing measures counted as one of these. */
+function comparisonsLeft(fit: WayFit): number {
+  const { pure, mate, far, mix } = partsOf(fit.way);
+  const { rows } = fit;
+  const guessed = (index: number, row: number) => (row >= 0 && !reading.measured[index] ? 1 : 0);
+  const guesses =
+    guessed(pure, Math.max(rows.mate, rows.mix)) +
+    guessed(mate, rows.mate) +
+    guessed(far, rows.mix) +
+    guessed(mix, rows.mix);
+  return fit.count - guesses - (Number.isNaN(fit.share) ? 0 : 1);
+}
+
 /** What the usual prior of a swing is worth, in bins. */
 const SWING_WORTH = 20;
 const bothWays = emptyBothWays();
@@ -123,10 +139,12 @@ export function weighBins(work: CalibrationWork, left: number): void {
     fitWay(reading, reverseFit, OPEN_SHARE);
     const pReverse = oneWay ? 0 : 1 / (1 + Math.exp(forwardFit.logEvidence - reverseFit.logEvidence));
     const worth = Math.min(1, work.bins.hoursEach / HOURS_PER_COMPARISON);
+    // A way that nothing checks says nothing of the sensors, also where its share is held at zero.
     const trust = (fit: typeof forwardFit) =>
-      fit.chiSquare > OUTLIER_CHI_SQUARE
+      comparisonsLeft(fit) < 1 || fit.chiSquare > OUTLIER_CHI_SQUARE
         ? 0
         : (worth * (LOSS_FREEDOM + fit.redundancy)) / (LOSS_FREEDOM + fit.chiSquare);
+    work.backward[bin] = pReverse;
     work.forward[bin] = weightOf(1 - pReverse) * trust(forwardFit);
     work.reverse[bin] = weightOf(pReverse) * trust(reverseFit);
     const closest = pReverse > 0.5 ? reverseFit : forwardFit;

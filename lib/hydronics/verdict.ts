@@ -108,11 +108,14 @@ export function bypassQuantile(level: number, pReverse: number, forward: WayStat
     const { bypassGpm: mu, bypassSigma: sigma } = reverse;
     if (!(sigma > 0)) return -Math.max(0, mu);
     const mass = normalCdf(mu / sigma);
+    // So far on the other side that nothing is left of it: all of it lies at zero.
+    if (!(mass > 0)) return 0;
     return -Math.max(0, mu - sigma * normalQuantile((level / pReverse) * mass));
   }
   const { bypassGpm: mu, bypassSigma: sigma } = forward;
   if (!(sigma > 0)) return Math.max(0, mu);
   const mass = normalCdf(mu / sigma);
+  if (!(mass > 0)) return 0;
   const above = ((1 - level) / (1 - pReverse)) * mass;
   return Math.max(0, mu - sigma * normalQuantile(above));
 }

@@ -199,7 +199,10 @@ describe('the likelihood of a swing', () => {
     [0.25, 0.1],
   ])('is the integral over both shares by brute force: %d ahead, %d back', (ahead, back) => {
     const covariance = independent();
-    const values = { ...without(huntingValues(ahead, back), ...BARE), fp: 1490, fs: 1530 };
+    // Meters 20 gpm off the net that the temperatures make: far from it, a swing is ruled out and has no likelihood.
+    const netGpm = (ahead - back) * 1530 + 20;
+    const flows = netGpm > 0 ? { fp: 1530, fs: 1530 - netGpm } : { fp: 1530 + netGpm, fs: 1530 };
+    const values = { ...without(huntingValues(ahead, back), ...BARE), ...flows };
     const both = emptyBothWays();
     weighBothWays(readingOf(values, covariance), both);
     const steps = 500;

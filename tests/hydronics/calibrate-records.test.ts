@@ -193,3 +193,16 @@ describe('a plant with pumps of rated flow', () => {
     expect(estimates.primary_flow_gpm[10]! / (ratedGpm / (1 + gain))).toBeCloseTo(1, 2);
   });
 });
+
+test('two meters that nothing else checks are left as their class says, though they disagree', () => {
+  const { record } = exactLoop({
+    days: 3,
+    channels: ['primaryFlowGpm', 'secondaryFlowGpm'],
+    errors: { primaryFlowGpm: 0.03, secondaryFlowGpm: -0.02 },
+  });
+  const { findings } = calibrateRecord(record, plantOf());
+  expect(findings.map(({ role, value, told, tie }) => ({ role, value, told, tie }))).toEqual([
+    { role: 'primaryFlow', value: 0, told: 0, tie: 'none' },
+    { role: 'secondaryFlow', value: 0, told: 0, tie: 'none' },
+  ]);
+});
