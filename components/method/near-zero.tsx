@@ -14,8 +14,8 @@ const RIGHT_GPM = 220;
 const STEP_GPM = 4;
 /** As wide as a phone has room for, so that its words never shrink. */
 const WIDTH = 344;
-const BASE = 120;
-const HEIGHT = 158;
+const BASE = 132;
+const HEIGHT = 170;
 const HIGHEST = 108;
 
 const xOf = (gpm: number): number => ((gpm - LEFT_GPM) / (RIGHT_GPM - LEFT_GPM)) * WIDTH;
@@ -75,10 +75,10 @@ export function NearZero() {
         </text>
       </g>
       <g fill="var(--ink2)" fontSize="11">
-        <text x={xOf(0) - 8} y="14" textAnchor="end">
+        <text x={xOf(0) - 8} y="13" textAnchor="end">
           reverse, 0.30
         </text>
-        <text x={xOf(0) + 8} y="14">
+        <text x={xOf(0) + 8} y="13">
           forward, 0.70
         </text>
       </g>
