@@ -177,6 +177,9 @@ function placesOf(loop: LoopRecord, slot: number): PrimaryPlaces {
   return places;
 }
 
+/** A way that weighs less than this in a bin is not scored. */
+const NEGLIGIBLE_WEIGHT = 1e-6;
+
 /** Adds one bin's score under both ways at the given errors. */
 export function scoreBin(
   work: CalibrationWork,
@@ -189,33 +192,11 @@ export function scoreBin(
   readInto(work, errors, bin);
   const where = placesOf(loop, work.bins.slots[bin] as number);
   let cost = 0;
-  const forward = work.forward[bin] as number;
-  if (forward > 1e-6) {
-    fitWay(reading, forwardFit, OPEN_SHARE);
-    cost += profileScore(
-      reading,
-      forwardFit,
-      where,
-      loop.designPrimaryGpm,
-      loop.designSecondaryGpm,
-      forward,
-      normal,
-      gradient,
-    );
-  }
-  const reverse = work.reverse[bin] as number;
-  if (reverse > 1e-6) {
-    fitWay(reading, reverseFit, OPEN_SHARE);
-    cost += profileScore(
-      reading,
-      reverseFit,
-      where,
-      loop.designPrimaryGpm,
-      loop.designSecondaryGpm,
-      reverse,
-      normal,
-      gradient,
-    );
+  for (const fit of [forwardFit, reverseFit]) {
+    const weight = (fit === forwardFit ? work.forward : work.reverse)[bin] as number;
+    if (weight < NEGLIGIBLE_WEIGHT) continue;
+    fitWay(reading, fit, OPEN_SHARE);
+    cost += profileScore(reading, fit, where, loop.designPrimaryGpm, loop.designSecondaryGpm, weight, normal, gradient);
   }
   return cost;
 }
@@ -228,6 +209,7 @@ interface PriorTerms {
   constant: number;
 }
 
+/** Adds the quadratic terms at the given errors to the normal equations; returns their cost, half the sum of squares. */
 export function addPrior(
   terms: PriorTerms,
   parameters: Float64Array,
@@ -249,6 +231,11 @@ export function addPrior(
   return cost;
 }
 
+/**
+ * Inverse of a covariance or information matrix of the errors, p x p row-major.
+ *
+ * Throws  RangeError when it is not positive definite.
+ */
 export function invert(matrix: Float64Array, p: number): Float64Array {
   const factor = matrix.slice();
   const inverse = new Float64Array(p * p);

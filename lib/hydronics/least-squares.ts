@@ -124,8 +124,8 @@ function covarianceOf(normal: Float64Array, p: number): Float64Array {
  * Shapes  start: p values, left as they are.
  * Gaps    A start where the cost is not finite: returned as it is, not converged.
  * Throws  RangeError when there is no parameter or one of the start is not finite.
- * Source  D. W. Marquardt, J. SIAM 11 (1963) 431; scaling by the largest diagonal met: J. J. More, Lecture Notes in
- *         Mathematics 630 (1978) 105; damping by the gain ratio: K. Madsen, H. B. Nielsen, O. Tingleff, Methods for
+ * Source  D. W. Marquardt, J. SIAM 11 (1963) 431; scaling by the largest diagonal met: J. J. More, in G. A. Watson
+ *         (ed.), Numerical Analysis, Springer 1978, 105; damping by the gain ratio: K. Madsen, H. B. Nielsen, O. Tingleff, Methods for
  *         Non-linear Least Squares Problems, 2nd ed. 2004, section 3.2.
  */
 export function minimise(
