@@ -26,7 +26,14 @@ const { model: plant } = plantModelFromSettings(
 );
 const { temperatureSigmaF, flowSigmaPercent } = plant.sensors;
 
-const LIMITS: readonly CalibrationLimit[] = ['common-offset', 'common-gain', 'one-way-only', 'no-flow', 'too-short'];
+const LIMITS: readonly CalibrationLimit[] = [
+  'common-offset',
+  'common-gain',
+  'span',
+  'one-way-only',
+  'no-flow',
+  'too-short',
+];
 
 /** How the record as a whole tells the lasting errors of its sensors. */
 export function WholeRecord() {

@@ -168,6 +168,8 @@ export function limitSentence(limit: Sensors['limits'][number]['limit']): string
       return 'An offset that all temperatures share. A reference thermometer at one of them, entered as a spot check, settles it.';
     case 'common-gain':
       return 'A gain that all flow meters share. A reference meter on one main, entered as a spot check, settles it.';
+    case 'span':
+      return 'An error of the supplies against the returns: with fewer than two flows, nothing but the temperatures themselves says how much crosses over. A second flow, or spot checks of one supply and one return, settles it.';
     case 'one-way-only':
       return 'The common pipe ran one way all along, so the other pair of temperatures was never one stream. A spot check of both settles it.';
     case 'no-flow':

@@ -50,18 +50,21 @@ export function calibrateRecord(
   if (!headerSupplyF) return describe(solved, { side: 'absent', primaryProbability: Number.NaN });
   // Without any flow, nothing but the supplies tells how much crosses over: staying together then says nothing.
   const sized = solved.work.loop.flows.some((flow) => flow !== null);
-  const header = judgeHeader(measurements, stretchesOf(solved.work), sized ? solved.work.shareScale : 0);
+  const header = judgeHeader(measurements, stretchesOf(solved.work, sized));
   const placed = placeHeader(measurements, header);
   const joins = placed.primarySupplyF !== known.primarySupplyF || placed.secondarySupplyF !== known.secondarySupplyF;
   return describe(joins ? solve(placed, plant, spotChecks) : solved, header);
 }
 
 /** What the bins say of the way, for judging where the header sensor sits. */
-function stretchesOf(work: CalibrationWork): HeaderStretch[] {
+function stretchesOf(work: CalibrationWork, sized: boolean): HeaderStretch[] {
   const { bins } = work;
   const worth = Math.min(1, bins.hoursEach / HOURS_PER_COMPARISON);
   return Array.from({ length: bins.count }, (_, bin) => {
-    return { slot: bins.slots[bin] as number, slots: bins.width, reverse: work.backward[bin] as number, worth };
+    const own = work.backwardShare[bin] as number;
+    // Where nothing sizes this stretch's blend, the record's usual one stands for it.
+    const share = sized ? (Number.isNaN(own) ? work.shareScale : own) : 0;
+    return { slot: bins.slots[bin] as number, slots: bins.width, reverse: work.backward[bin] as number, share, worth };
   });
 }
 
@@ -94,6 +97,7 @@ function solve(measurements: Measurements, plant: PlantModel, spotChecks: readon
     forward: new Float64Array(bins.count),
     reverse: new Float64Array(bins.count),
     backward: new Float64Array(bins.count).fill(0.5),
+    backwardShare: new Float64Array(bins.count).fill(Number.NaN),
     chiSquare: new Float64Array(bins.count),
     redundancy: new Float64Array(bins.count),
     shareScale: 0.3,

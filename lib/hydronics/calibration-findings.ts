@@ -146,6 +146,9 @@ function limitsOf(work: CalibrationWork, hours: Hours, checks: readonly SpotTerm
   if (loop.temperatures.some((channel) => channel) && !checks.some((check) => check.place < TEMPERATURES))
     limits.push('common-offset');
   if (flows.length > 0 && !checks.some((check) => check.place >= PRIMARY_GAIN)) limits.push('common-gain');
+  const checked = (...places: number[]) => checks.some((check) => places.includes(check.place));
+  const mixes = (loop.temperatures[PS] ?? loop.temperatures[SS]) && (loop.temperatures[PR] ?? loop.temperatures[SR]);
+  if (mixes && flows.length < 2 && !(checked(PS, SS) && checked(PR, SR))) limits.push('span');
   const total = hours.forward + hours.reverse;
   if (total > 0 && Math.min(hours.forward, hours.reverse) < 0.02 * total) limits.push('one-way-only');
   return limits;

@@ -61,6 +61,7 @@ export interface SpotCheck {
 export type CalibrationLimit =
   | 'common-offset' // an offset that all temperatures share
   | 'common-gain' // a gain that all flow meters share
+  | 'span' // supplies against returns: fewer than two flows, so nothing but temperatures sizes what crosses over
   | 'one-way-only' // the common pipe ran one way all along: the other pair of temperatures is not tied
   | 'no-flow' // no flow at all: gpm cannot be told, only shares
   | 'too-short'; // too little running record: sensors are taken as their class says

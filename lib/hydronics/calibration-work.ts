@@ -50,8 +50,9 @@ export interface CalibrationWork {
   /** By bin: weight of forward and of reverse, robust and normalised. */
   forward: Float64Array;
   reverse: Float64Array;
-  /** By bin: probability of reverse. */
+  /** By bin: probability of reverse, and the share of secondary flow that then comes back; NaN where nothing sizes it. */
   backward: Float64Array;
+  backwardShare: Float64Array;
   /** By bin: chi-square of the likelier way and comparisons beyond the unknowns. */
   chiSquare: Float64Array;
   redundancy: Float64Array;
@@ -145,6 +146,7 @@ export function weighBins(work: CalibrationWork, left: number): void {
         ? 0
         : (worth * (LOSS_FREEDOM + fit.redundancy)) / (LOSS_FREEDOM + fit.chiSquare);
     work.backward[bin] = pReverse;
+    work.backwardShare[bin] = Math.min(1, Math.max(0, reverseFit.share));
     work.forward[bin] = weightOf(1 - pReverse) * trust(forwardFit);
     work.reverse[bin] = weightOf(pReverse) * trust(reverseFit);
     const closest = pReverse > 0.5 ? reverseFit : forwardFit;

@@ -175,7 +175,7 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
       continue;
     }
     const from = average(slot, values);
-    if (from !== slot && from === weighed) {
+    if (from === weighed) {
       writeSlot(out, slot, verdict, scale, heat);
       continue;
     }

@@ -14,16 +14,20 @@ const MAX_STRETCH = 8;
 const SAME_STREAM_SIGMA_F = 0.2;
 /** No stretch is surer than this to have run forward: without the header the record may have missed it. */
 const LEAST_REVERSE = 0.01;
-/** A usual blend of this much hardly shows beside a second sensor, F. */
+/** A blend of this much hardly shows beside a second sensor, F. */
 const HARDLY_F = 0.5;
 /** Fewer stretches than this say nothing. */
 const MIN_STRETCHES = 8;
 
-/** A steady stretch: its first slot and number of slots, how probably it ran backward by everything but the header, and its worth in hours. */
+/**
+ * A steady stretch: its first slot and number of slots, how probably it ran backward by everything but the header,
+ * the share of secondary flow that then came back, and its worth in hours.
+ */
 export interface HeaderStretch {
   slot: number;
   slots: number;
   reverse: number;
+  share: number;
   worth: number;
 }
 
@@ -32,14 +36,11 @@ export interface HeaderStretch {
  * from it (same side of the tee), or departs from it by the blend whenever the pipe runs backward (other side); whether it
  * runs backward is taken from everything but the header.
  *
- * Units   deg F; `shareScale` is the mean share that crosses over in this record. Gaps: without a supply sensor of known place, without reverse flow, or too few stretches: unknown.
+ * Units   deg F. Gaps: without a supply sensor of known place, without reverse flow that would show, or too few stretches:
+ *         unknown.
  * Source  odds of the two hypotheses; the blend is as likely anywhere between supply and return.
  */
-export function judgeHeader(
-  measurements: Measurements,
-  stretches: readonly HeaderStretch[],
-  shareScale: number,
-): Header {
+export function judgeHeader(measurements: Measurements, stretches: readonly HeaderStretch[]): Header {
   const { headerSupplyF, primarySupplyF, secondarySupplyF } = measurements;
   if (!headerSupplyF) return { side: 'absent', primaryProbability: Number.NaN };
   const beside = primarySupplyF ?? secondarySupplyF;
@@ -60,7 +61,7 @@ export function judgeHeader(
   const usualF = medianOf(Float64Array.from(resting), resting.length);
   let logOdds = 0;
   for (const stretch of stretches) {
-    const { slot, reverse: told, worth } = stretch;
+    const { slot, reverse: told, share, worth } = stretch;
     const reverse = Math.max(LEAST_REVERSE, told - LEAST_REVERSE);
     const off = apartAt(stretch) - usualF;
     if (Number.isNaN(off)) continue;
@@ -70,7 +71,7 @@ export function judgeHeader(
     const other = (1 - reverse) * same + (reverse * (Math.abs(off) < spanF ? 1 : 0)) / spanF;
     const says = Math.log((same + floor) / (other + floor));
     // Staying together says little where the blend would hardly show.
-    const shows = Math.max(0, Math.min(1, (shareScale * spanF - HARDLY_F) / HARDLY_F));
+    const shows = Math.max(0, Math.min(1, (share * spanF - HARDLY_F) / HARDLY_F));
     logOdds += worth * Math.max(-MAX_STRETCH, Math.min(MAX_STRETCH, says > 0 ? says * shows : says));
   }
   const held = Math.max(-MAX_LOG_ODDS, Math.min(MAX_LOG_ODDS, logOdds));

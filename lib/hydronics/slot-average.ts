@@ -15,12 +15,15 @@ const GROUP_MINUTES = 4;
 const JOIN_SIGMAS = 2;
 /** The same for proportions, whose rings are many. */
 const PROPORTION_JOIN_SIGMAS = 1.7;
+/** And for the first ring about one slot of a finer record, which only tells whether anything happens just there. */
+const FIRST_JOIN_SIGMAS = 3;
 /** Proportions between temperatures are formed where supply and return are this many sigmas apart. */
 const LEAST_SPAN_SIGMAS = 8;
 
 /**
  * Reads one slot's values, averaged with neighbours where the record shows that nothing moves. Returns the slot whose values
- * they are: its own, or that of the few minutes it shares them with.
+ * they are: its own, or that of the few minutes it shares them with; what the call before already filled in is left as it is,
+ * so that one averager fills one `out`.
  */
 export type SlotAverager = (slot: number, out: SlotValues) => number;
 
@@ -101,6 +104,7 @@ function joinedWidth(
   widths: readonly number[],
   changes: Int32Array,
   sigmas: number,
+  single: number,
   slot: number,
 ): number {
   const n = changes.length - 1;
@@ -112,7 +116,8 @@ function joinedWidth(
     for (let i = 0; i < series.length; i += 1) {
       const sums = series[i] as Sums;
       if (!((sums.channel[slot] as number) < Infinity)) continue;
-      if (!ringJoins(sums, slot, joined, width, sigmas * sigmas * varianceAt(sums, slot))) return joined;
+      const most = joined === 0 && single > 1 ? FIRST_JOIN_SIGMAS : sigmas;
+      if (!ringJoins(sums, slot, joined, width, most * most * varianceAt(sums, slot))) return joined;
     }
     joined = width;
   }
@@ -229,8 +234,8 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
     const middle = Math.min(loop.n - 1, slot - (slot % group) + (group >> 1));
     if (middle === sought.slot) return;
     sought.slot = middle;
-    sought.joined = joinedWidth(ownSums, widths, changes, JOIN_SIGMAS, middle);
-    sought.leant = joinedWidth(leaningSums, wide, changes, PROPORTION_JOIN_SIGMAS, middle);
+    sought.joined = joinedWidth(ownSums, widths, changes, JOIN_SIGMAS, group, middle);
+    sought.leant = joinedWidth(leaningSums, wide, changes, PROPORTION_JOIN_SIGMAS, group, middle);
   };
   const channels = [...loop.temperatures, ...loop.flows].filter((channel) => channel !== null);
   const average = (slot: number, out: SlotValues): void => {
@@ -248,6 +253,7 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
     const leant = within(sought.leant, changes, slot);
     if (leant > 0) lean(leaning, slot, leant, out);
   };
+  let last = -1;
   return (slot, out) => {
     seek(slot);
     const { slot: middle, joined, leant } = sought;
@@ -258,8 +264,10 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
       changes[slot + 1] === changes[middle + 1] &&
       within(joined, changes, middle) > 0 &&
       sameGaps(channels, slot, middle);
-    average(shares ? middle : slot, out);
-    return shares ? middle : slot;
+    const from = shares ? middle : slot;
+    if (from !== last) average(from, out);
+    last = from;
+    return from;
   };
 }
 

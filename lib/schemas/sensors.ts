@@ -17,7 +17,14 @@ export const SENSOR_TIES = [
   'spot-check',
   'none',
 ] as const;
-export const CALIBRATION_LIMITS = ['common-offset', 'common-gain', 'one-way-only', 'no-flow', 'too-short'] as const;
+export const CALIBRATION_LIMITS = [
+  'common-offset',
+  'common-gain',
+  'span',
+  'one-way-only',
+  'no-flow',
+  'too-short',
+] as const;
 
 /** A stretch in which a sensor must not be believed, or said nothing; half-open. */
 export const SensorStretch = z.object({ kind: z.enum(STRETCH_KINDS), from: z.string(), to: z.string() });

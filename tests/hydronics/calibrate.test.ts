@@ -195,9 +195,17 @@ describe('what no record of its kind can tell', () => {
     const calibration = calibrated({ channels: LOOP_TEMPERATURES });
     expect(calibration.limits).toContain('no-flow');
     expect(calibration.limits).not.toContain('common-gain');
+    expect(calibration.limits).toContain('span');
     expect(calibration.findings.some(({ kind }) => kind === 'gain')).toBe(false);
     for (const place of [PRIMARY_GAIN, SECONDARY_GAIN, BYPASS_GAIN])
       expect(calibration.values[place]).toBeCloseTo(0, 9);
+  });
+
+  test('supplies against returns, with one meter, until both are checked; and never with two', () => {
+    const one = [...LOOP_TEMPERATURES, 'secondaryFlowGpm'] as const;
+    expect(calibrated({ channels: one }).limits).toContain('span');
+    expect(calibrated({ channels: [...one, 'primaryFlowGpm'] }).limits).not.toContain('span');
+    expect(calibrated({ channels: ['primarySupplyF', 'primaryFlowGpm'] }).limits).not.toContain('span');
   });
 
   test('two meters that nothing else checks, in a record of forward flow', () => {

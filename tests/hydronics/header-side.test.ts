@@ -84,11 +84,12 @@ describe('a header sensor of unknown place', () => {
 describe('the odds of a side', () => {
   const N = 200;
   /** Ten stretches of four slots: the first `backward` of them run backward, by everything but the header. */
-  const stretches = (backward: number, told = 0.99): HeaderStretch[] =>
+  const stretches = (backward: number, told = 0.99, share = 0.3): HeaderStretch[] =>
     Array.from({ length: 40 }, (_, index) => ({
       slot: 5 * index,
       slots: 4,
       reverse: index < backward ? told : 1 - told,
+      share,
       worth: 0.25,
     }));
   const record = (
@@ -103,12 +104,11 @@ describe('the odds of a side', () => {
   const backUntil = (stretch: number, blendF: number) => (slot: number) => 44.2 + (slot < 5 * stretch ? blendF : 0);
 
   test('go by whether it departs when the pipe runs backward', () => {
-    expect(judgeHeader(record(backUntil(20, 3)), stretches(20), 0.3).side).toBe('secondary');
+    expect(judgeHeader(record(backUntil(20, 3)), stretches(20)).side).toBe('secondary');
     expect(
       judgeHeader(
         record(() => 44.2),
         stretches(20),
-        0.3,
       ).side,
     ).toBe('primary');
   });
@@ -116,19 +116,18 @@ describe('the odds of a side', () => {
   test('do not go by its lasting offset, whatever its size', () => {
     for (const offsetF of [-3, 0, 3]) {
       const moved = record((slot) => backUntil(20, 3)(slot) + offsetF);
-      expect(judgeHeader(moved, stretches(20), 0.3).side).toBe('secondary');
+      expect(judgeHeader(moved, stretches(20)).side).toBe('secondary');
     }
   });
 
   test('are turned round beside a sensor of the secondary side', () => {
     const beside = { secondarySupplyF: 46 };
     const apart = (slot: number) => 46.2 - (slot < 100 ? 3 : 0);
-    expect(judgeHeader(record(apart, beside), stretches(20), 0.3).side).toBe('primary');
+    expect(judgeHeader(record(apart, beside), stretches(20)).side).toBe('primary');
     expect(
       judgeHeader(
         record(() => 46.2, beside),
         stretches(20),
-        0.3,
       ).side,
     ).toBe('secondary');
   });
@@ -138,44 +137,40 @@ describe('the odds of a side', () => {
       judgeHeader(
         record(() => 44.2),
         stretches(0, 1),
-        0.3,
       ).side,
     ).toBe('unknown');
     expect(
       judgeHeader(
         record(() => 44.2, {}),
         stretches(20),
-        0.3,
       ),
     ).toEqual({ side: 'unknown', primaryProbability: 0.5 });
     expect(
       judgeHeader(
         record(() => 44.2),
         stretches(20).slice(0, 5),
-        0.3,
       ).side,
     ).toBe('unknown');
   });
 
   test('are not moved by one wild stretch, nor by gaps', () => {
     const wild = record((slot) => (slot >= 50 && slot < 54 ? 70 : 44.2));
-    expect(judgeHeader(wild, stretches(20), 0.3).side).toBe('primary');
+    expect(judgeHeader(wild, stretches(20)).side).toBe('primary');
     const gappy = record((slot) => (slot % 3 === 0 ? Number.NaN : backUntil(20, 3)(slot)));
-    expect(judgeHeader(gappy, stretches(20), 0.3).side).toBe('secondary');
+    expect(judgeHeader(gappy, stretches(20)).side).toBe('secondary');
   });
 
   test('say nothing by staying together where the blend would hardly show', () => {
     expect(
       judgeHeader(
         record(() => 44.2),
-        stretches(20),
-        0,
+        stretches(20, 0.99, 0.03),
       ).side,
     ).toBe('unknown');
   });
 
   test('are absent without a header sensor', () => {
-    expect(judgeHeader(recordOf(N, 5, { primarySupplyF: 44 }), stretches(20), 0.3).side).toBe('absent');
+    expect(judgeHeader(recordOf(N, 5, { primarySupplyF: 44 }), stretches(20)).side).toBe('absent');
   });
 });
 
