@@ -174,7 +174,7 @@ export function estimateIntervals(record: Measurements, plant: PlantModel, calib
       writeOff(out, slot, loop, scale);
       continue;
     }
-    const from = average(slot, values);
+    const from = average(slot, values, weighed);
     if (from === weighed) {
       writeSlot(out, slot, verdict, scale, heat);
       continue;

@@ -22,10 +22,10 @@ const LEAST_SPAN_SIGMAS = 8;
 
 /**
  * Reads one slot's values, averaged with neighbours where the record shows that nothing moves. Returns the slot whose values
- * they are: its own, or that of the few minutes it shares them with; what the call before already filled in is left as it is,
- * so that one averager fills one `out`.
+ * they are: its own, or that of the few minutes it shares them with. `held` is the slot whose values `out` holds already: they
+ * are left as they are.
  */
-export type SlotAverager = (slot: number, out: SlotValues) => number;
+export type SlotAverager = (slot: number, out: SlotValues, held?: number) => number;
 
 /** Running sums of one series: values, and how many there were (null: one a slot). */
 interface Sums {
@@ -253,8 +253,7 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
     const leant = within(sought.leant, changes, slot);
     if (leant > 0) lean(leaning, slot, leant, out);
   };
-  let last = -1;
-  return (slot, out) => {
+  return (slot, out, held) => {
     seek(slot);
     const { slot: middle, joined, leant } = sought;
     // Wide windows of neighbours are nearly the same mean: the group is read once, where the same sensors speak.
@@ -265,8 +264,7 @@ export function slotAverager(loop: LoopRecord, errors: SensorErrors, state: Floa
       within(joined, changes, middle) > 0 &&
       sameGaps(channels, slot, middle);
     const from = shares ? middle : slot;
-    if (from !== last) average(from, out);
-    last = from;
+    if (from !== held) average(from, out);
     return from;
   };
 }
