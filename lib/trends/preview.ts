@@ -8,7 +8,14 @@ import { StepCounter } from './step';
 import { findTime, type FoundTime } from './time-column';
 import { MINUTE_MS, StampParser } from './timestamps';
 import { unitOfCell, unitOfHeading } from './unit-text';
-import { TrendError, type ColumnPreview, type PreviewOptions, type TrendPreview, type TrendProblem } from './types';
+import {
+  TrendError,
+  type ColumnPreview,
+  type PreviewOptions,
+  type TablePreview,
+  type TrendPreview,
+  type TrendProblem,
+} from './types';
 
 const MOST_SAMPLES = 96;
 const SHOWN_ROWS = 5;
@@ -27,14 +34,29 @@ export function previewTrend(head: Uint8Array, options: PreviewOptions): TrendPr
   const time = findTime(names, table.data, options.timeZone, table.dialect.decimal);
   const columns = suggestColumns(names, table, time, options);
   const dialect = { encoding, ...table.dialect };
+  const stepMinutes = usualStep(table.data, time, table.dialect.decimal);
+  const fingerprint = headingFingerprint(names, table.units);
+  const rows = table.data.slice(0, SHOWN_ROWS).map(({ cells }) => cells);
+  const first: TablePreview = {
+    files: [],
+    shape: { kind: 'wide' },
+    dialect,
+    timestamp: time.plan,
+    fingerprint,
+    names: columns.map(({ column }) => ({ cell: column, column })),
+    stepMinutes,
+    rows,
+    firstRows: table.data.length,
+  };
   const preview: TrendPreview = {
+    tables: [first],
     dialect,
     timestamp: time.plan,
     timeZone: options.timeZone,
     columns,
-    stepMinutes: usualStep(table.data, time, table.dialect.decimal),
-    fingerprint: headingFingerprint(names, table.units),
-    rows: table.data.slice(0, SHOWN_ROWS).map(({ cells }) => cells),
+    stepMinutes,
+    fingerprint,
+    rows,
     firstRows: table.data.length,
     problems: [],
   };

@@ -26,6 +26,8 @@ const FORM_WORDS: Readonly<Record<TimestampForm, string>> = {
   'month/day/year': 'a time in the form month/day/year',
   'day/month/year': 'a time in the form day/month/year',
   'year/month/day': 'a time in the form year/month/day',
+  'month/day': 'a time in the form month/day, without a year',
+  'day/month': 'a time in the form day/month, without a year',
   'epoch-s': 'a time in seconds since 1970',
   'epoch-ms': 'a time in milliseconds since 1970',
   'spreadsheet-serial': 'a spreadsheet time (days since 1899-12-30)',

@@ -6,18 +6,34 @@ export interface Dialect {
   encoding: 'utf-8' | 'utf-16le' | 'utf-16be' | 'windows-1252';
   delimiter: ',' | ';' | '\t' | '|';
   decimal: '.' | ',';
-  /** Row that holds the column names. */
+  /** Row that holds the column names; the lower one of two. */
   headerRow: number;
-  /** Row that holds units, when one follows the header. */
+  /** Row above it that names groups of columns ("Chiller 1" over "Supply", "Return"), when there is one. */
+  upperHeaderRow?: number | null;
+  /** Row that holds units, when there is one before or after the header. */
   unitRow: number | null;
   firstDataRow: number;
 }
+
+/**
+ * What the cells of a table are.
+ *   wide  one column a point
+ *   long  one row a reading: a column names the point, another holds the value, perhaps others a status and a unit
+ */
+export type TableShape =
+  { kind: 'wide' } | { kind: 'long'; point: string; value: string; status: string | null; unit: string | null };
 
 /** Where the time stands and in which form. `form` is one of TIMESTAMP_FORMS. */
 export interface TimestampPlan {
   /** One column, or a date and a time column in this order. */
   columns: string[];
   form: TimestampForm;
+  /** Year of the first row, for the forms that have none; the years after it follow from the months. */
+  year?: number | null;
+  /** Whether a time is the start of its interval (or the moment of a reading), or its end: then it belongs to the interval before. */
+  stamps?: 'start' | 'end';
+  /** Added to every time: for a source whose clock is known to be off. */
+  shiftMinutes?: number;
 }
 
 export const TIMESTAMP_FORMS = [
@@ -25,6 +41,8 @@ export const TIMESTAMP_FORMS = [
   'month/day/year',
   'day/month/year',
   'year/month/day',
+  'month/day',
+  'day/month',
   'epoch-s',
   'epoch-ms',
   'spreadsheet-serial',
@@ -50,6 +68,10 @@ export interface ColumnPreview extends ColumnMapping {
   samples: (number | null)[];
   low: number | null;
   high: number | null;
+  /** Index into `tables` of the table that holds it (of the first that does). */
+  table?: number;
+  /** Read so in an earlier file of this plant. */
+  known?: boolean;
 }
 
 export type ProblemSeverity = 'error' | 'warning';
@@ -63,7 +85,24 @@ export interface TrendProblem {
   count: number;
 }
 
+/** One heading of a drop: the files, archive members or sheets that share it. */
+export interface TablePreview {
+  /** Names of the files that have this heading, in the order they came. */
+  files: string[];
+  shape: TableShape;
+  dialect: Dialect;
+  timestamp: TimestampPlan;
+  fingerprint: string;
+  /** The heading's name of each column that is read, and the name it goes by in the drop. */
+  names: { cell: string; column: string }[];
+  stepMinutes: number | null;
+  rows: string[][];
+  firstRows: number;
+}
+
 export interface TrendPreview {
+  /** One a heading. `dialect`, `timestamp`, `rows` and `firstRows` beside it are those of the first. */
+  tables: TablePreview[];
   dialect: Dialect;
   timestamp: TimestampPlan;
   timeZone: string;
@@ -93,8 +132,10 @@ export interface PreviewOptions {
   plantStepMinutes: number;
 }
 
-/** All that reading needs; the confirmed shape of a preview. */
+/** All that reading one file needs; the confirmed shape of a preview. */
 export interface ReadPlan {
+  /** Wide when left out. */
+  shape?: TableShape;
   dialect: Dialect;
   timestamp: TimestampPlan;
   timeZone: string;
