@@ -154,9 +154,7 @@ function wholeLines(head: Uint8Array, encoding: Encoding): Uint8Array {
 }
 
 function doubts(time: FoundTime, table: RecognisedTable): TrendProblem[] {
-  if (time.doubt === null) return [];
   const row = table.dialect.firstDataRow;
-  return [
-    { code: 'day-or-month', severity: 'warning', message: time.doubt, row, column: time.plan.columns[0], count: 1 },
-  ];
+  const column = time.plan.columns[0];
+  return time.doubts.map(({ code, message }) => ({ code, severity: 'warning', message, row, column, count: 1 }));
 }

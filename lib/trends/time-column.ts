@@ -18,10 +18,15 @@ const CALENDAR_FORMS: readonly TimestampForm[] = ['iso', 'month/day/year', 'day/
 /** Numbers are taken for times when they come at an even distance, row by row. */
 const NUMBER_FORMS: readonly TimestampForm[] = ['epoch-s', 'epoch-ms', 'spreadsheet-serial'];
 
+export interface TimeDoubt {
+  code: 'day-or-month' | 'no-year' | 'end-stamps';
+  message: string;
+}
+
 export interface FoundTime {
   plan: TimestampPlan;
-  /** Set when day and month could be either way round; says how it was read and why. */
-  doubt: string | null;
+  /** What a person should check: how the times were read, and why. */
+  doubts: TimeDoubt[];
   /** Indexes of the time's cells. */
   cells: number[];
   /** Further columns of times, which no role reads. */
@@ -68,9 +73,9 @@ export function findTime(
     const joined = best.texts.map((text, i) => `${text} ${clock.texts[i] ?? ''}`);
     const together = bestReading(joined, best.name, timeZone, decimal);
     if (together) plan.form = together.reading.form;
-    return { plan, doubt: together?.doubt ?? best.doubt, cells, others: othersThan(cells, candidates) };
+    return { plan, doubts: together?.doubts ?? best.doubts, cells, others: othersThan(cells, candidates) };
   }
-  return { plan, doubt: best.doubt, cells, others: othersThan(cells, candidates) };
+  return { plan, doubts: best.doubts, cells, others: othersThan(cells, candidates) };
 }
 
 /** A time of day and nothing else. */
@@ -102,7 +107,7 @@ function bestReading(
   name: string,
   timeZone: string,
   decimal: '.' | ',',
-): { reading: Reading; doubt: string | null } | null {
+): { reading: Reading; doubts: TimeDoubt[] } | null {
   const inForms = (forms: readonly TimestampForm[]) =>
     forms
       .filter((form) => mayHold(texts, form, decimal))
@@ -110,16 +115,16 @@ function bestReading(
       .filter(({ share }) => share >= TIME_SHARE);
   const calendar = inForms(CALENDAR_FORMS);
   const iso = calendar.find(({ form }) => form === 'iso');
-  if (iso) return { reading: { ...iso, form: isoOrSlashes(texts) }, doubt: null };
+  if (iso) return { reading: { ...iso, form: isoOrSlashes(texts) }, doubts: [] };
   const [monthFirst, dayFirst] = (['month/day/year', 'day/month/year'] as const).map((form) =>
     calendar.find((each) => each.form === form),
   );
   if (monthFirst && dayFirst) return monthOrDayFirst(texts, monthFirst, dayFirst, timeZone);
   const one = monthFirst ?? dayFirst;
-  if (one) return { reading: one, doubt: null };
+  if (one) return { reading: one, doubts: [] };
   const numbers = inForms(NUMBER_FORMS);
   const fit = numbers.find(({ regular }) => regular > 0.5 || (texts.length < 3 && TIME_WORDS.test(name)));
-  return fit ? { reading: fit, doubt: null } : null;
+  return fit ? { reading: fit, doubts: [] } : null;
 }
 
 const isoOrSlashes = (texts: readonly string[]): TimestampForm =>
@@ -169,22 +174,22 @@ function monthOrDayFirst(
   monthFirst: Reading,
   dayFirst: Reading,
   timeZone: string,
-): { reading: Reading; doubt: string | null } {
+): { reading: Reading; doubts: TimeDoubt[] } {
   const first = texts.find((text) => text.trim() !== '') ?? '';
   const words = first.match(/[^\W\d_]{3,}/gu) ?? [];
   // A month in letters reads the same both ways.
   if (words.some((word) => monthOfWord(word) !== 0))
-    return { reading: /^[^\W\d_]/u.test(first.trim()) ? monthFirst : dayFirst, doubt: null };
+    return { reading: /^[^\W\d_]/u.test(first.trim()) ? monthFirst : dayFirst, doubts: [] };
   if (monthFirst.share !== dayFirst.share)
-    return { reading: monthFirst.share > dayFirst.share ? monthFirst : dayFirst, doubt: null };
+    return { reading: monthFirst.share > dayFirst.share ? monthFirst : dayFirst, doubts: [] };
   if (monthFirst.regular !== dayFirst.regular)
-    return { reading: monthFirst.regular > dayFirst.regular ? monthFirst : dayFirst, doubt: null };
+    return { reading: monthFirst.regular > dayFirst.regular ? monthFirst : dayFirst, doubts: [] };
   // Points part days from months only where the day comes first.
-  if (/^\s*\d{1,2}\./.test(first)) return { reading: dayFirst, doubt: null };
+  if (/^\s*\d{1,2}\./.test(first)) return { reading: dayFirst, doubts: [] };
   const american = timeZone.startsWith('America/') || timeZone.startsWith('US/') || timeZone === 'Pacific/Honolulu';
   const reading = american ? monthFirst : dayFirst;
-  const doubt = `${quoted(first)} can be read with the month or the day first. Read as ${reading.form} because the plant's zone is ${timeZone}; check it.`;
-  return { reading, doubt };
+  const message = `${quoted(first)} can be read with the month or the day first. Read as ${reading.form} because the plant's zone is ${timeZone}; check it.`;
+  return { reading, doubts: [{ code: 'day-or-month', message }] };
 }
 
 function noTime(columns: readonly { name: string; texts: readonly string[] }[], clocks: readonly string[]): TrendError {
