@@ -32,7 +32,7 @@ export function roleByName(draft: Draft, options: PreviewOptions): NamedRole | n
 function byQuantity(draft: Draft, options: PreviewOptions): NamedRole | null {
   switch (draft.quantity) {
     case 'temperature':
-      return temperatureRole(draft);
+      return temperatureRole(draft, options);
     case 'flow':
       return flowRole(draft);
     case 'power':
@@ -56,23 +56,26 @@ const role = (name: NamedRole['role'], confidence: number, concepts: readonly Co
 });
 
 const isSetpoint = (draft: Draft) => says(draft, 'setpoint') || draft.name.setpointOrPump !== null;
+/** What stands at a unit: its own points, or those of an evaporator, which only a unit has. */
+const onUnit = (draft: Draft) => says(draft, 'chiller', 'evaporator');
 /** A branch is one of several buildings or coils; a building without a number is the distribution side. */
-const isBranch = (draft: Draft) => says(draft, 'branch') && draft.name.index !== null && !says(draft, 'chiller');
+const isBranch = (draft: Draft) =>
+  says(draft, 'branch') && draft.name.index !== null && !onUnit(draft) && !says(draft, 'primary', 'bypass');
 const onSecondary = (draft: Draft) => says(draft, 'secondary') || (says(draft, 'branch') && draft.name.index === null);
 
-function temperatureRole(draft: Draft): NamedRole | null {
+function temperatureRole(draft: Draft, options: PreviewOptions): NamedRole | null {
   if (says(draft, 'wetBulb')) return role('outdoorWetBulb', FULL, ['wetBulb', 'outdoor']);
   const out = says(draft, 'supply', 'leaving');
   const back = says(draft, 'return', 'entering');
   if (isSetpoint(draft)) {
-    if (says(draft, 'chiller')) return role('unitSetpoint', FULL, ['chiller', 'setpoint']);
+    if (onUnit(draft)) return role('unitSetpoint', FULL, ['chiller', 'setpoint']);
     if (says(draft, 'outdoor', 'air')) return null;
     const clear = says(draft, 'chilledWater', 'supply', 'leaving', 'plant') && !back;
     return role('supplySetpoint', clear ? FULL : OPEN, ['supply', 'chilledWater', 'setpoint']);
   }
   if (says(draft, 'outdoor')) return role('outdoorTemp', FULL, ['outdoor', 'temperature']);
   if (says(draft, 'bypass')) return role('bypassTemp', FULL, ['bypass', 'temperature']);
-  if (says(draft, 'chiller')) {
+  if (onUnit(draft)) {
     const [direction, unitRole] = back
       ? (['entering', 'unitEnteringTemp'] as const)
       : (['leaving', 'unitLeavingTemp'] as const);
@@ -89,7 +92,25 @@ function temperatureRole(draft: Draft): NamedRole | null {
       'leaving',
     ]);
   }
-  return sideRole(draft, out, back);
+  return looseUnitRole(draft, options) ?? sideRole(draft, out, back);
+}
+
+/**
+ * "LWT 2" is a unit's although no chiller is named, and so is "LWT" where there is one unit. "CHWS 2" may be a unit's:
+ * taken for a header, it would bring the water of an idle unit into every balance.
+ */
+function looseUnitRole(draft: Draft, options: PreviewOptions): NamedRole | null {
+  if (says(draft, 'primary', 'secondary', 'branch', 'pump', 'plant')) return null;
+  const number = draft.name.looseNumber;
+  const numbered = number !== null && number <= options.unitCount;
+  const panel = says(draft, 'leaving') !== says(draft, 'entering') && !says(draft, 'supply', 'return');
+  if (panel && (numbered || options.unitCount === 1))
+    return says(draft, 'entering')
+      ? role('unitEnteringTemp', LIKELY, ['entering', 'chilledWater'], 'named as on a unit’s own panel')
+      : role('unitLeavingTemp', LIKELY, ['leaving', 'chilledWater'], 'named as on a unit’s own panel');
+  if (!numbered || says(draft, 'supply') === says(draft, 'return')) return null;
+  const unitRole = says(draft, 'return') ? 'unitEnteringTemp' : 'unitLeavingTemp';
+  return role(unitRole, OPEN, ['supply', 'return'], 'numbered as the units are; a header, perhaps');
 }
 
 function sideRole(draft: Draft, out: boolean, back: boolean): NamedRole | null {
@@ -104,9 +125,14 @@ function sideRole(draft: Draft, out: boolean, back: boolean): NamedRole | null {
     'branch',
   ];
   if (out === back) return null;
+  const panel = says(draft, 'leaving', 'entering') && !says(draft, 'supply', 'return', 'plant', 'primary', 'secondary');
   if (onSecondary(draft)) return role(out ? 'secondarySupplyTemp' : 'secondaryReturnTemp', FULL, concepts);
   if (says(draft, 'primary')) return role(out ? 'primarySupplyTemp' : 'primaryReturnTemp', FULL, concepts);
   if (says(draft, 'pump')) return null;
+  if (panel) {
+    const note = 'of a unit or of the header: the name does not say';
+    return role(out ? 'headerSupplyTemp' : 'secondaryReturnTemp', OPEN, concepts, note);
+  }
   return out
     ? role('headerSupplyTemp', 0.55, concepts, 'does not say which side of the decoupler')
     : role('secondaryReturnTemp', OPEN, concepts, 'does not say which side of the decoupler');
@@ -120,12 +146,12 @@ function flowRole(draft: Draft): NamedRole | null {
       ? role('bypassFlow', FULL, ['bypass', 'flow'], 'goes below 0, so it carries the direction')
       : role('bypassFlowUnsigned', LIKELY, ['bypass', 'flow'], 'never below 0, so the direction is not in it');
   }
-  if (says(draft, 'chiller')) return role('unitFlow', FULL, ['chiller', 'evaporator', 'flow']);
+  if (onUnit(draft)) return role('unitFlow', FULL, ['chiller', 'evaporator', 'flow']);
   if (isBranch(draft)) return role('branchFlow', LIKELY, ['branch', 'flow']);
   if (onSecondary(draft)) return role('secondaryFlow', FULL, ['secondary', 'branch', 'flow']);
   if (says(draft, 'primary')) return role('primaryFlow', FULL, ['primary', 'flow']);
   if (says(draft, 'condenser')) return null;
-  return says(draft, 'chilledWater', 'plant', 'supply', 'return')
+  return says(draft, 'chilledWater', 'plant', 'supply', 'return', 'leaving', 'entering')
     ? role('secondaryFlow', OPEN, ['chilledWater', 'plant', 'flow'], 'does not say which side of the decoupler')
     : null;
 }
@@ -184,6 +210,13 @@ function percentRole(draft: Draft, options: PreviewOptions): NamedRole | null {
     const sure = pumpSide(draft, options) !== 'unknown' && says(draft, 'primary', 'secondary', 'pump');
     return role(speedRole(draft, options), sure ? FULL : 0.55, ['primary', 'secondary', 'pump', 'speed']);
   }
+  if (onUnit(draft) && says(draft, 'setpoint', 'speed', 'position'))
+    return role(
+      'ignore',
+      0.55,
+      ['chiller', 'setpoint', 'speed', 'position'],
+      'a set-point, speed or position, not a load',
+    );
   return says(draft, 'chiller')
     ? role('unitLoadPercent', says(draft, 'load') ? FULL : LIKELY, ['chiller', 'load', 'percent'])
     : null;
@@ -209,14 +242,41 @@ function pressureRole(draft: Draft): NamedRole | null {
     : role('differentialPressure', FULL, ['differential']);
 }
 
-/** The number of a chiller or pump counts from 1 among those of the file, so that CH-101 and CH-102 are units 1 and 2. */
+/**
+ * The number of each chiller, pump and branch from 1. Numbers as they are where they fit the plant; counted from 0 where
+ * the file has a number 0; else their last digits (CH-101 and CH-102 are units 1 and 2), else their order in the file.
+ */
 export function unitIndexes(drafts: readonly Draft[], options: PreviewOptions): Map<Draft, number | null> {
   const result = new Map<Draft, number | null>();
   for (const concept of NUMBERED) {
-    const numbered = drafts.filter((draft) => draft.name.index !== null && says(draft, concept) && !result.has(draft));
-    const numbers = [...new Set(numbered.map(({ name }) => name.index!))].sort((a, b) => a - b);
-    const plain = numbers.every((number) => number <= options.unitCount) || concept === 'branch';
-    for (const draft of numbered) result.set(draft, plain ? draft.name.index : numbers.indexOf(draft.name.index!) + 1);
+    const numbered = drafts.flatMap((draft) => {
+      const number = says(draft, concept) ? draft.name.index : concept === 'chiller' ? draft.name.looseNumber : null;
+      return number === null || result.has(draft) ? [] : { draft, number };
+    });
+    const numbers = numbered.filter(({ draft }) => draft.name.index !== null).map(({ number }) => number);
+    const count = numberingOf(
+      [...new Set(numbers)],
+      concept === 'branch' ? Number.POSITIVE_INFINITY : options.unitCount,
+    );
+    for (const { draft, number } of numbered) result.set(draft, count(number));
   }
   return result;
+}
+
+function numberingOf(numbers: readonly number[], most: number): (number: number) => number {
+  const sorted = [...numbers].sort((a, b) => a - b);
+  const fit = (count: (number: number) => number) =>
+    sorted.every((number) => count(number) >= 1 && count(number) <= most) &&
+    new Set(sorted.map(count)).size === sorted.length;
+  const ways = [
+    (number: number) => number,
+    (number: number) => number + 1,
+    (number: number) => number % 100,
+    (number: number) => number % 10,
+  ];
+  const fitting = ways.find((count, i) => (i === 1 ? sorted[0] === 0 : true) && fit(count));
+  if (fitting) return fitting;
+  // More numbers than units: as they are, so that a person sees which is too many.
+  if (sorted[0] === 0) return (number) => number + 1;
+  return (number) => sorted.indexOf(number) + 1 || number;
 }

@@ -15,6 +15,21 @@ export interface Refusal {
 /** Names of what no role reads; the first that fits counts. `unless`: other words that make it something else. */
 const BY_NAME: readonly { concept: Concept; unless?: readonly Concept[]; confidence: number; reason: string }[] = [
   { concept: 'alarm', confidence: 0.8, reason: 'An alarm, not a reading' },
+  {
+    concept: 'refrigerant',
+    unless: ['power', 'percent', 'load', 'status'],
+    confidence: 0.8,
+    reason: 'Inside the machine (refrigerant, oil or motor), not chilled water',
+  },
+  { concept: 'limit', confidence: 0.7, reason: 'A limit that somebody set, not a reading' },
+  { concept: 'vane', confidence: 0.7, reason: 'Position of the guide vanes: no role reads it' },
+  { concept: 'runtime', confidence: 0.8, reason: 'Hours or starts counted: only the present state is read' },
+  {
+    concept: 'elsewhere',
+    unless: ['chilledWater', 'chiller', 'primary', 'secondary', 'bypass'],
+    confidence: 0.75,
+    reason: 'Of another system of the building, not of the chilled-water plant',
+  },
   { concept: 'efficiency', confidence: 0.85, reason: 'Efficiency is worked out from power and load, not read' },
   {
     concept: 'energy',
