@@ -9,6 +9,8 @@ export class DayBuffer {
   rows = new Uint32Array(FIRST_ROWS);
   /** Row by row: the value of column c in row i is at i * columns + c. */
   values: Float64Array;
+  /** How regular the file's rows were by this day's last row; null while too few rows had come to say. */
+  pace: { isRegular: boolean; holdMs: number } | null = null;
   private strictlyRising = true;
 
   constructor(readonly columns: number) {
@@ -68,23 +70,26 @@ export class DayBuffer {
   }
 }
 
-/** The last reading of each column on a day, which may reach into the next day: time from the day's start and value. */
+/** The last reading of each column on a day, which may reach into the next day: time from the day's start, value, row. */
 export interface DayTail {
   timesMs: Float64Array;
   values: Float64Array;
+  rows: Uint32Array;
 }
 
 /** Works on a day that is not settled yet, too. Time is -Infinity where a column has no cell at all. */
 export function tailOf(day: DayBuffer): DayTail {
   const timesMs = new Float64Array(day.columns).fill(Number.NEGATIVE_INFINITY);
   const values = new Float64Array(day.columns).fill(Number.NaN);
+  const rows = new Uint32Array(day.columns);
   for (let i = 0; i < day.count; i++) {
     for (let c = 0; c < day.columns; c++) {
       const value = day.values[i * day.columns + c]!;
       if (value === BLANK || day.timesMs[i]! < timesMs[c]!) continue;
       timesMs[c] = day.timesMs[i]!;
       values[c] = value;
+      rows[c] = day.rows[i]!;
     }
   }
-  return { timesMs, values };
+  return { timesMs, values, rows };
 }

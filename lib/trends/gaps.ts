@@ -32,7 +32,10 @@ export class StampWriter {
   }
 }
 
-/** Reports a gap between two rows that follow each other in time, if there is one. `row` is the later row's. */
+/**
+ * Reports a gap between two rows that follow each other in time, if there is one. `row` is the later row's; `held` says
+ * that a column beside it is logged on change and keeps its value meanwhile.
+ */
 export function noteGap(
   problems: ProblemLog,
   step: StepCounter,
@@ -40,13 +43,15 @@ export function noteGap(
   fromMs: number,
   toMs: number,
   row: number,
+  held = false,
 ): void {
   if (!step.isRegular || toMs - fromMs <= step.usualMs * GAP_STEPS) return;
   const message = () => {
     const missing = durationText(toMs - fromMs - step.usualMs);
     const change =
       stamps.localMs(toMs) - toMs === stamps.localMs(fromMs) - fromMs ? '' : ' The clocks changed in between.';
-    return `${stamps.text(fromMs)} is followed by ${stamps.shortText(toMs, fromMs)}. A gap of ${missing}; nothing was filled in.${change}`;
+    const filled = held ? 'only values logged on change were kept on' : 'nothing was filled in';
+    return `${stamps.text(fromMs)} is followed by ${stamps.shortText(toMs, fromMs)}. A gap of ${missing}; ${filled}.${change}`;
   };
   problems.add({ code: 'gap', severity: 'warning', row, column: stamps.column(), message });
 }

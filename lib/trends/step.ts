@@ -43,6 +43,11 @@ export class StepCounter {
     }
   }
 
+  /** Distances met so far. */
+  get distances(): number {
+    return this.total;
+  }
+
   get newestFirst(): boolean {
     return this.backward * 2 > this.total;
   }

@@ -2,6 +2,8 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { DayAligner } from '@/lib/trends/align';
 import { DayBuffer, tailOf } from '@/lib/trends/day-buffer';
+import { mannerOf, seenOf } from '@/lib/trends/hold-manner';
+import { DAY_MS } from '@/lib/trends/timestamps';
 import { BLANK } from '@/lib/trends/values';
 
 const MINUTE_MS = 60_000;
@@ -24,7 +26,10 @@ function align(
 ): number[] {
   const aligner = new DayAligner(stepMinutes * MINUTE_MS);
   const out = new Float64Array(aligner.slots);
-  aligner.align(bufferOf(rows), 0, usualMinutes * MINUTE_MS, before && tailOf(before), out);
+  const pace = { isRegular: true, holdMs: usualMinutes * MINUTE_MS };
+  const day = bufferOf(rows);
+  const manner = mannerOf(seenOf(day, 0, pace), undefined, pace, { quantity: 'temperature', ownRows: false });
+  aligner.align(day, 0, manner, before && tailOf(before), DAY_MS, out);
   return [...out];
 }
 
