@@ -25,7 +25,24 @@ const MONTHS: Readonly<Record<string, number>> = {
   dez: 12,
   déc: 12,
 };
-const WEEKDAYS = new Set(['mon', 'tue', 'wed', 'thu', 'fri', 'sat', 'sun']);
+/** Weekdays by their first letters, Sunday 0: English by three, German by two where no English one begins so. */
+const WEEKDAYS: Readonly<Record<string, number>> = {
+  sun: 0,
+  mon: 1,
+  tue: 2,
+  wed: 3,
+  thu: 4,
+  fri: 5,
+  sat: 6,
+  so: 0,
+  mo: 1,
+  di: 2,
+  mi: 3,
+  do: 4,
+  fr: 5,
+  sa: 6,
+};
+const LONGEST_WEEKDAY = 10;
 
 /** Zone abbreviations written behind a time, in minutes east of UTC. Ones that mean several zones are left out. */
 const ABBREVIATIONS: Readonly<Record<string, number>> = {
@@ -56,7 +73,15 @@ export function monthOfWord(word: string): number {
   return MONTHS[lower.slice(0, 3)] ?? 0;
 }
 
-export const isWeekday = (word: string): boolean => WEEKDAYS.has(word.slice(0, 3).toLowerCase());
+/** 0 = Sunday to 6, or -1 when the word is no weekday. */
+export function weekdayOfWord(word: string): number {
+  if (word.length > LONGEST_WEEKDAY) return -1;
+  const lower = word.toLowerCase();
+  const english = WEEKDAYS[lower.slice(0, 3)];
+  if (english !== undefined) return english;
+  const isGerman = lower.length === 2 || lower.endsWith('tag') || lower === 'mittwoch' || lower === 'sonnabend';
+  return (isGerman ? WEEKDAYS[lower.slice(0, 2)] : undefined) ?? -1;
+}
 
 /** Minutes east of UTC, or NaN when the abbreviation is not known. */
 export const offsetMinutesOfAbbreviation = (word: string): number => ABBREVIATIONS[word.toLowerCase()] ?? Number.NaN;

@@ -1,10 +1,21 @@
-import { isWeekday, monthOfWord, offsetMinutesOfAbbreviation } from './stamp-words';
-import type { TimestampForm } from './types';
+import { DateScanner } from './stamp-date';
+import {
+  CAPITAL_T,
+  COLON,
+  COMMA,
+  DAY_MS,
+  DOT,
+  isDigit,
+  isLetter,
+  isSpace,
+  MINUS,
+  OPENING_BRACKET,
+  SECOND_MS,
+  UNDERSCORE,
+} from './stamp-scan';
+import type { TimestampForm, TimestampPlan } from './types';
 
-export const SECOND_MS = 1000;
-export const MINUTE_MS = 60_000;
-export const HOUR_MS = 3_600_000;
-export const DAY_MS = 86_400_000;
+export { DAY_MS, HOUR_MS, MINUTE_MS, SECOND_MS } from './stamp-scan';
 
 /** Day 0 of spreadsheet serials, 1899-12-30, in days from 1970-01-01. */
 const SERIAL_DAY_ZERO = -25_569;
@@ -15,50 +26,60 @@ const SERIAL_HIGH = 80_000;
 const EPOCH_LOW_S = 631_152_000;
 const EPOCH_HIGH_S = 4_102_444_800;
 
-const DAYS_IN_MONTH = [31, 29, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31] as const;
-const ZERO = 48;
-const COLON = 58;
-const DOT = 46;
-const COMMA = 44;
-const SLASH = 47;
-const SPACE = 32;
-const PLUS = 43;
-const MINUS = 45;
-
-const isDigit = (code: number) => code >= 48 && code <= 57;
-/** Latin letters, with accents. */
-const isLetter = (code: number) => ((code | 32) >= 97 && (code | 32) <= 122) || (code >= 192 && code <= 591);
-const isSpace = (code: number) =>
-  code === 32 || code === 9 || code === 160 || code === 0x202f || code === 13 || code === 10;
-
 /**
  * Reads times of one form, written by hand because it runs once a row: no Date, no Intl, no regular expression and no
  * allocation on the usual path. After `parse` answered true, `ms` is the instant (`hasOffset`) or the local wall time
  * counted as if it were UTC.
  *
- * Dates take `/ - . ,` or blanks between their parts, month names, two-digit years (70 to 99 are 1970 to 1999) and a
- * weekday in front; times take seconds, fractions, AM/PM, hour 24 for the end of a day, and `Z`, `+hh:mm` or a usual
- * zone abbreviation behind. A date alone is its midnight.
+ * Dates are read as DateScanner says, times of day as ClockScanner; a date alone is its midnight. Epoch milliseconds may
+ * also be micro- or nanoseconds: the size tells them apart.
+ *
+ * A text that holds a time of day alone goes on from the row before, for exports that write the date only in the first
+ * row of a day: the day rolls on when the clock goes back by more than half a day, or back a day when it goes forward by
+ * more than that in a file with the newest row first. Once a row's date could not be read, times alone are refused until
+ * the next date.
+ *
+ * One parser reads one file (or one point of a file in which whole points follow each other), row by row.
  */
-export class StampParser {
+export class StampParser extends DateScanner {
   ms = 0;
-  hasOffset = false;
-  /** Whether the last text held a time of day. */
-  hasTime = false;
 
-  private text = '';
-  private at = 0;
-  private dateKey = -1;
-  private dateMs = 0;
+  /** The characters of the last date, so that an equal date in the next row is not taken apart again. */
+  private datePrefix = '';
+  private prefixWeekday = -1;
+  /** Whether a time of day alone may follow. */
+  private mayContinue = false;
+  /** Offset of the row that held the date. */
+  private heldHasOffset = false;
+  private heldOffsetMs = 0;
+  private lastClockMs = Number.NaN;
+  private clockForward = 0;
+  private clockBackward = 0;
 
+  /** `year` is that of the first row, for the forms without one, which cannot be read when it is null. */
   constructor(
-    private readonly form: TimestampForm,
+    form: TimestampForm,
     private readonly decimal: '.' | ',' = '.',
-  ) {}
+    year: number | null = null,
+  ) {
+    super(form, year);
+  }
+
+  /**
+   * The parser of a plan.
+   * Throws  RangeError when the plan's form has no year and the plan gives none.
+   */
+  static of(plan: TimestampPlan, decimal: '.' | ','): StampParser {
+    const { form, year = null } = plan;
+    if (year === null && (form === 'month/day' || form === 'day/month'))
+      throw new RangeError(`StampParser: times of the form ${form} need the year of the first row`);
+    return new StampParser(form, decimal, year);
+  }
 
   parse(text: string): boolean {
     this.hasOffset = false;
     this.hasTime = false;
+    this.isHour24 = false;
     switch (this.form) {
       case 'epoch-s':
         return this.parseEpoch(text, SECOND_MS);
@@ -77,7 +98,9 @@ export class StampParser {
   }
 
   private parseEpoch(text: string, unitMs: number): boolean {
-    const ms = this.number(text) * unitMs;
+    let ms = this.number(text) * unitMs;
+    // Only nearest: 2 ** 53 is passed by nanoseconds, whose last digits do not matter.
+    if (unitMs === 1) for (let i = 0; i < 2 && ms > EPOCH_HIGH_S * SECOND_MS; i++) ms /= 1000;
     if (!(ms >= EPOCH_LOW_S * SECOND_MS && ms <= EPOCH_HIGH_S * SECOND_MS)) return false;
     this.ms = Math.round(ms);
     this.hasOffset = true;
@@ -88,8 +111,43 @@ export class StampParser {
   /** Serials carry the wall time as a fraction of a day in limited digits: to the nearest second. */
   private parseSerial(text: string): boolean {
     const days = this.number(text);
-    if (!(days >= SERIAL_LOW && days <= SERIAL_HIGH)) return false;
-    this.ms = Math.round((days + SERIAL_DAY_ZERO) * 86_400) * SECOND_MS;
+    if (!(days >= SERIAL_LOW && days <= SERIAL_HIGH)) return this.parseSerialParts(text, days);
+    this.holdSerial(days);
+    return true;
+  }
+
+  private holdSerial(days: number): void {
+    const whole = Math.floor(days);
+    this.dateMs = (whole + SERIAL_DAY_ZERO) * DAY_MS;
+    this.heldMs = this.dateMs;
+    this.mayContinue = true;
+    this.hasTime = days !== whole;
+    this.clockMs = Math.round((days - whole) * 86_400) * SECOND_MS;
+    this.lastClockMs = this.hasTime ? this.clockMs : Number.NaN;
+    this.ms = this.dateMs + this.clockMs;
+  }
+
+  /** A day's number in one cell and its time in the next: `46223 0.25`, `46223 06:00`, or the time alone. */
+  private parseSerialParts(text: string, days: number): boolean {
+    if (days >= 0 && days <= 1) return this.continueAt(Math.round(days * 86_400) * SECOND_MS);
+    this.text = text;
+    this.at = 0;
+    this.skipSpaces();
+    if (this.isClockAlone()) return this.parseClockAlone();
+    const start = this.at;
+    const end = text.indexOf(' ', start);
+    if (end === -1) return false;
+    const day = this.number(text.slice(start, end));
+    if (!Number.isInteger(day) || !(day >= SERIAL_LOW && day <= SERIAL_HIGH)) return false;
+    const share = this.number(text.slice(end));
+    this.at = end;
+    this.skipSpaces();
+    if (!(share >= 0 && share <= 1) && !(this.readClock(false) && this.at === text.length && !this.hasOffset))
+      return false;
+    const clockMs = share >= 0 ? Math.round(share * 86_400) * SECOND_MS : this.clockMs;
+    this.holdSerial(day);
+    this.ms += clockMs;
+    this.lastClockMs = clockMs;
     this.hasTime = true;
     return true;
   }
@@ -98,243 +156,119 @@ export class StampParser {
     this.text = text;
     this.at = 0;
     this.skipSpaces();
-    if (!this.readDate()) return false;
-    this.ms = this.dateMs;
-    // Between date and time: blanks, a comma, a T or a colon.
-    this.skipSpaces();
-    const code = this.code();
-    if (code === COMMA || code === COLON || (code === 84 && isDigit(this.codeAt(this.at + 1)))) this.at++;
-    this.skipSpaces();
-    if (this.at < text.length && !this.readTime()) return false;
+    if (this.isClockAlone()) return this.parseClockAlone();
+    if (this.isDateAgain()) {
+      this.at = this.datePrefix.length;
+      this.weekday = this.prefixWeekday;
+      this.needsTime = false;
+      this.clockAt = 0;
+    } else {
+      const start = this.at;
+      if (!this.readDate()) return this.refuse();
+      // Kept only where the text begins with it and what follows cannot belong to it.
+      const end = this.code();
+      const keep = start === 0 && this.clockAt === 0 && !this.needsTime && (isSpace(end) || end === CAPITAL_T);
+      this.datePrefix = keep ? text.slice(0, this.at) : '';
+      this.prefixWeekday = this.weekday;
+    }
+    if (!this.endCalendar()) return this.refuse();
+    this.ms = this.dateMs + this.clockMs - this.offsetMs;
+    this.heldMs = this.dateMs;
+    this.mayContinue = true;
+    this.heldHasOffset = this.hasOffset;
+    this.heldOffsetMs = this.offsetMs;
+    this.lastClockMs = this.hasTime ? this.clockMs : Number.NaN;
+    return true;
+  }
+
+  private isDateAgain(): boolean {
+    const { text, datePrefix } = this;
+    const { length } = datePrefix;
+    if (length === 0 || this.at !== 0) return false;
+    for (let i = length - 1; i >= 0; i--) if (text.charCodeAt(i) !== datePrefix.charCodeAt(i)) return false;
+    const end = text.charCodeAt(length);
+    return isSpace(end) || end === CAPITAL_T;
+  }
+
+  /** Reads what follows the date. */
+  private endCalendar(): boolean {
+    const { text } = this;
+    this.clockMs = 0;
+    this.offsetMs = 0;
+    if (this.clockAt > 0) {
+      // The year stands behind the clock, and its four digits were read.
+      const end = this.at - 4;
+      this.at = this.clockAt;
+      if (!this.readClock(false)) return false;
+      this.skipSpaces();
+      return this.at === end;
+    }
+    this.skipToTime();
+    if (this.at < text.length && !this.readClock(!this.yearless)) return false;
+    if (this.needsTime && !this.hasTime) return false;
     this.skipSpaces();
     // Some programs add the zone's name in brackets after its offset.
-    if (this.code() === 91 && this.text.endsWith(']')) return this.hasOffset;
+    if (this.code() === OPENING_BRACKET && text.endsWith(']')) return this.hasOffset;
     return this.at === text.length;
   }
 
-  private code(): number {
-    return this.text.charCodeAt(this.at);
-  }
-
-  private codeAt(at: number): number {
-    return this.text.charCodeAt(at);
-  }
-
-  private skipSpaces(): void {
-    while (isSpace(this.code())) this.at++;
-  }
-
-  /** Digits from here on as a number; `digits` says how many there were. */
-  private digits = 0;
-  private readNumber(): number {
-    let value = 0;
-    const start = this.at;
-    let code = this.code();
-    while (isDigit(code)) {
-      value = value * 10 + code - ZERO;
-      code = this.codeAt(++this.at);
-    }
-    this.digits = this.at - start;
-    return value;
-  }
-
-  private readWord(): string {
-    const start = this.at;
-    while (isLetter(this.code())) this.at++;
-    return this.text.slice(start, this.at);
-  }
-
-  /** The sign between two parts of a date (a blank when there is nothing else), or 0 when there is none. */
-  private skipSeparator(): number {
-    const start = this.at;
+  /** Between date and time: blanks, a comma, a T, a colon, an underscore, a weekday; a hyphen before `00.05`. */
+  private skipToTime(): void {
     this.skipSpaces();
     const code = this.code();
-    const sign = code === SLASH || code === MINUS || code === DOT || code === COMMA;
-    if (sign) this.at++;
+    const next = this.codeAt(this.at + 1);
+    if (code === COMMA || code === COLON || code === UNDERSCORE || (code === CAPITAL_T && isDigit(next))) this.at++;
+    else if (code === MINUS && isDigit(next) && this.codeAt(this.at + 3) === DOT) this.at++;
+    else if (isLetter(code)) this.skipWeekday();
     this.skipSpaces();
-    return this.at === start ? 0 : sign ? code : SPACE;
   }
 
-  private readDate(): boolean {
-    if (isLetter(this.code())) {
-      const start = this.at;
-      const word = this.readWord();
-      if (isWeekday(word) && monthOfWord(word) === 0) this.skipSeparator();
-      else this.at = start;
-    }
-    let named = 0;
-    let first = 0;
-    let firstDigits = 0;
-    if (isLetter(this.code())) named = monthOfWord(this.readWord());
-    else {
-      first = this.readNumber();
-      firstDigits = this.digits;
-    }
-    if (firstDigits === 8 && (this.form === 'iso' || this.form === 'year/month/day'))
-      return this.setDate(Math.floor(first / 10_000), Math.floor(first / 100) % 100, first % 100, 4);
-    if (named === 0 && (firstDigits === 0 || firstDigits > 4)) return false;
-    const sign = this.skipSeparator();
-    if (sign === 0) return false;
-    let second = 0;
-    let secondDigits = 0;
-    if (named === 0 && isLetter(this.code())) {
-      named = monthOfWord(this.readWord());
-      if (named === 0) return false;
-    } else {
-      second = this.readNumber();
-      secondDigits = this.digits;
-      if (secondDigits === 0) return false;
-    }
-    // 08/28 00:05 has no year: numbers are parted by the same sign twice.
-    const again = this.skipSeparator();
-    if (again === 0 || (named === 0 && again !== sign)) return false;
-    const third = this.readNumber();
-    const thirdDigits = this.digits;
-    if (thirdDigits === 0) return false;
-    return this.orderDate(named, first, firstDigits, second, secondDigits, third, thirdDigits);
+  private isClockAlone(): boolean {
+    const { at } = this;
+    if (!isDigit(this.code())) return false;
+    const second = this.codeAt(at + 1);
+    return second === COLON || (isDigit(second) && this.codeAt(at + 2) === COLON);
   }
 
-  private orderDate(
-    named: number,
-    first: number,
-    firstDigits: number,
-    second: number,
-    secondDigits: number,
-    third: number,
-    thirdDigits: number,
-  ): boolean {
-    if (this.form === 'iso' || this.form === 'year/month/day') {
-      return named === 0
-        ? secondDigits <= 2 && thirdDigits <= 2 && this.setDate(first, second, third, firstDigits)
-        : this.setDate(first, named, third, firstDigits);
-    }
-    if (named !== 0) return this.setDate(third, named, firstDigits === 0 ? second : first, thirdDigits);
-    if (firstDigits > 2 || secondDigits > 2) return false;
-    return this.form === 'month/day/year'
-      ? this.setDate(third, first, second, thirdDigits)
-      : this.setDate(third, second, first, thirdDigits);
-  }
-
-  private setDate(shortYear: number, month: number, day: number, yearDigits: number): boolean {
-    if (yearDigits !== 4 && (yearDigits !== 2 || this.form === 'iso')) return false;
-    const year = yearDigits === 4 ? shortYear : shortYear + (shortYear < 70 ? 2000 : 1900);
-    if (month < 1 || month > 12 || day < 1 || day > DAYS_IN_MONTH[month - 1]! || year < 1900) return false;
-    const key = year * 512 + month * 32 + day;
-    if (key === this.dateKey) return true;
-    if (month === 2 && day === 29 && (year % 4 !== 0 || (year % 100 === 0 && year % 400 !== 0))) return false;
-    this.dateKey = key;
-    this.dateMs = Date.UTC(year, month - 1, day);
-    return true;
-  }
-
-  private readTime(): boolean {
-    let hour = this.readNumber();
-    let minute = 0;
-    let second = 0;
-    let milli = 0;
-    const hourDigits = this.digits;
-    if (hourDigits === 0) return false;
-    let bare = true;
-    if (hourDigits === 4 || hourDigits === 6) {
-      // Compact: 0005 or 000500.
-      if (hourDigits === 6) {
-        second = hour % 100;
-        hour = Math.floor(hour / 100);
-      }
-      minute = hour % 100;
-      hour = Math.floor(hour / 100);
-      bare = false;
-    } else if (hourDigits > 2) return false;
-    else if (this.code() === COLON) {
-      bare = false;
-      this.at++;
-      minute = this.readNumber();
-      if (this.digits === 0 || this.digits > 2) return false;
-      if (this.code() === COLON) {
-        this.at++;
-        second = this.readNumber();
-        if (this.digits === 0 || this.digits > 2) return false;
-        const code = this.code();
-        if ((code === DOT || code === COMMA || code === COLON) && isDigit(this.codeAt(this.at + 1)))
-          milli = this.readFraction();
-      }
-    }
-    if (minute > 59 || second > 60) return false;
-    const half = this.readHalf();
-    if (half !== 0) {
-      if (hour === 12) hour = half === 1 ? 0 : 12;
-      else if (half === 2 && hour < 12) hour += 12;
-      else if (half === 1 && hour > 12) return false;
-    } else if (bare) return false;
-    // Hour 24 ends a day and is the next day's midnight; nothing lies behind it.
-    if (hour > 24 || (hour === 24 && (minute !== 0 || second !== 0 || milli !== 0))) return false;
-    this.ms += hour * HOUR_MS + minute * MINUTE_MS + second * SECOND_MS + milli;
-    this.hasTime = true;
-    return this.readOffset();
-  }
-
-  private readFraction(): number {
-    this.at++;
-    const start = this.at;
-    this.readNumber();
-    const three = this.text.slice(start, Math.min(this.at, start + 3)).padEnd(3, '0');
-    return +three;
-  }
-
-  /** 1 for AM, 2 for PM, 0 for neither. */
-  private readHalf(): 0 | 1 | 2 {
-    const start = this.at;
+  private parseClockAlone(): boolean {
+    this.offsetMs = 0;
+    if (!this.mayContinue || !this.readClock(false)) return false;
     this.skipSpaces();
-    const letter = this.code() | 32;
-    if (letter === 97 || letter === 112) {
-      let at = this.at + 1;
-      if (this.codeAt(at) === DOT) at++;
-      if ((this.codeAt(at) | 32) === 109) {
-        at++;
-        if (this.codeAt(at) === DOT) at++;
-        if (!isLetter(this.codeAt(at))) {
-          this.at = at;
-          return letter === 97 ? 1 : 2;
-        }
-      }
-    }
-    this.at = start;
-    return 0;
+    if (this.at !== this.text.length) return false;
+    return this.continueAt(this.clockMs);
   }
 
-  private readOffset(): boolean {
-    this.skipSpaces();
-    const code = this.code();
-    if (code === PLUS || code === MINUS || code === 0x2212) {
-      this.at++;
-      const hours = this.readNumber();
-      const digits = this.digits;
-      if (digits === 4) return this.applyOffset(code, Math.floor(hours / 100), hours % 100);
-      if (digits !== 1 && digits !== 2) return false;
-      let minutes = 0;
-      if (this.code() === COLON) {
-        this.at++;
-        minutes = this.readNumber();
-        if (this.digits !== 2) return false;
-      }
-      return this.applyOffset(code, hours, minutes);
-    }
-    if (isLetter(code)) {
-      const minutes = offsetMinutesOfAbbreviation(this.readWord());
-      if (Number.isNaN(minutes)) return false;
-      // "UTC+2" and the like go on with digits.
-      if (minutes === 0 && (this.code() === PLUS || this.code() === MINUS)) return this.readOffset();
-      this.ms -= minutes * MINUTE_MS;
+  private continueAt(clockMs: number): boolean {
+    if (!this.mayContinue) return false;
+    const deltaMs = clockMs - this.lastClockMs;
+    // NaN behind a date that had a row of its own.
+    if (deltaMs < -DAY_MS / 2) {
+      if (this.clockBackward <= this.clockForward) this.roll(DAY_MS);
+    } else if (deltaMs > DAY_MS / 2) {
+      if (this.clockBackward > this.clockForward) this.roll(-DAY_MS);
+    } else if (deltaMs > 0) this.clockForward++;
+    else if (deltaMs < 0) this.clockBackward++;
+    this.lastClockMs = clockMs;
+    if (!this.hasOffset && this.heldHasOffset) {
       this.hasOffset = true;
+      this.offsetMs = this.heldOffsetMs;
     }
+    this.hasTime = true;
+    this.ms = this.heldMs + clockMs - (this.hasOffset ? this.offsetMs : 0);
     return true;
   }
 
-  private applyOffset(sign: number, hours: number, minutes: number): boolean {
-    if (hours > 15 || minutes > 59) return false;
-    const offsetMs = hours * HOUR_MS + minutes * MINUTE_MS;
-    this.ms += sign === PLUS ? -offsetMs : offsetMs;
-    this.hasOffset = true;
-    return true;
+  private roll(ms: number): void {
+    this.heldMs += ms;
+    if (!this.yearless) return;
+    // The date read last is no longer the one that dates without a year are held to.
+    this.dateKey = -1;
+    this.datePrefix = '';
+  }
+
+  /** A text with digits that is no time of this form may have held the next day's date: times alone do not go on from it. */
+  private refuse(): false {
+    for (let i = 0; i < this.text.length; i++) if (isDigit(this.text.charCodeAt(i))) this.mayContinue = false;
+    return false;
   }
 }
