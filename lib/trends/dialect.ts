@@ -1,4 +1,5 @@
 import { cellKind, dataShare, decimalOf } from './cells';
+import { joinedHeading, plainName } from './headings';
 import { isBlankRow, linesOfRow, newlineOf, wholeRows } from './rows';
 import { TrendError, type Dialect } from './types';
 import { unitOfCell } from './unit-text';
@@ -19,7 +20,10 @@ export interface NumberedRow {
 
 export interface RecognisedTable {
   dialect: Omit<Dialect, 'encoding'>;
-  heading: string[];
+  /** Names of two heading rows are joined. */
+  heading: readonly string[];
+  /** Filled rows before the heading. */
+  preamble: string[][];
   units: string[] | null;
   /** Whole data rows of the head that have the usual number of cells. */
   data: NumberedRow[];
@@ -43,19 +47,22 @@ export function recogniseTable(head: string, complete: boolean): RecognisedTable
 
   const width = usualWidth(filled.slice(0, LOOKED_AT_ROWS).map(({ cells }) => cells));
   const first = firstDataIndex(filled, width);
-  const { heading, unitRow } = findHeading(filled, first, width);
+  const { heading, upper, unitRow } = findHeading(filled, first, width);
   const below = filled.slice(first);
-  const shaped = below.filter(({ cells }) => cells.length === width || cells.length === heading.cells.length);
+  const shaped = below.filter(({ cells }) => cells.length === width || cells.length === heading?.cells.length);
   const data = shaped.length > 0 ? shaped : below;
   return {
     dialect: {
       delimiter,
       decimal: decimalOf(data.slice(0, LOOKED_AT_ROWS).flatMap(({ cells }) => cells)),
-      headerRow: heading.row,
+      headerRow: heading?.row ?? 0,
+      upperHeaderRow: upper?.row ?? null,
       unitRow: unitRow?.row ?? null,
       firstDataRow: below[0]!.row,
     },
-    heading: heading.cells,
+    // A file without a heading has one of empty cells: its columns go by their numbers.
+    heading: heading ? joinedHeading(upper?.cells ?? [], heading.cells) : Array<string>(width).fill(''),
+    preamble: filled.filter(({ row }) => row < (upper ?? heading ?? filled[first]!).row).map(({ cells }) => cells),
     units: unitRow?.cells ?? null,
     data,
   };
@@ -147,12 +154,16 @@ function firstDataIndex(rows: readonly NumberedRow[], width: number): number {
   throw new TrendError('no-rows', `${what} Export a period that holds data.`, heading.row);
 }
 
-/** The heading is the last row of words before the data; a row of units may stand between them. */
-function findHeading(
-  rows: readonly NumberedRow[],
-  first: number,
-  width: number,
-): { heading: NumberedRow; unitRow: NumberedRow | null } {
+interface FoundHeading {
+  /** Null when the first row already holds readings. */
+  heading: NumberedRow | null;
+  /** A row above it that names groups of columns. */
+  upper: NumberedRow | null;
+  unitRow: NumberedRow | null;
+}
+
+/** The heading is the last row of words before the data; rows of units and of group names may stand around it. */
+function findHeading(rows: readonly NumberedRow[], first: number, width: number): FoundHeading {
   const wordy = ({ cells }: NumberedRow) => {
     const filled = cells.filter((cell) => cell.trim() !== '');
     const readings = filled.filter((cell) => ['number', 'time'].includes(cellKind(cell)));
@@ -165,14 +176,34 @@ function findHeading(
   let at = first - 1;
   while (at >= 0 && !wordy(rows[at]!)) at--;
   const last = rows[at];
-  if (!last) {
-    const row = rows[first]!.row;
-    const what = `Row ${row} already holds readings and no row of column names stands before it.`;
-    throw new TrendError('no-header', `${what} Add a heading as the first row and drop the file again.`, row);
-  }
-  const before = rows[at - 1];
-  if (before && isUnitRow(last.cells) && wordy(before)) return { heading: before, unitRow: last };
-  return { heading: last, unitRow: null };
+  if (!last) return { heading: null, upper: null, unitRow: null };
+  const before = (index: number): NumberedRow | null => {
+    const row = rows[index];
+    return row && wordy(row) ? row : null;
+  };
+  const above = before(at - 1);
+  const [heading, unitBelow, next] =
+    above && isUnitRow(last.cells) ? [above, last, before(at - 2)] : [last, null, above];
+  // Units may stand above the names too; names of groups above either.
+  const unitAbove = !unitBelow && next && isUnitRow(next.cells) ? next : null;
+  const groups = unitAbove ? before(at - 2) : next;
+  const upper = groups && isUpperHeading(groups.cells, heading.cells) ? groups : null;
+  return { heading, upper, unitRow: unitBelow ?? unitAbove };
+}
+
+/**
+ * Whether a row names groups of the columns below it: as wide as they are, filled beyond the first two cells (which a line
+ * about the file fills), and needed: names below it come twice without it, or it has a cell over most of them.
+ */
+function isUpperHeading(upper: readonly string[], lower: readonly string[]): boolean {
+  const filled = upper.flatMap((cell, i) => (cell.trim() === '' ? [] : [i]));
+  if (upper.length < 2 || Math.abs(upper.length - lower.length) > 1) return false;
+  if (!filled.some((i) => i >= 2) || upper.some((cell) => /:\s*\S/.test(cell))) return false;
+  if (isUnitRow(upper)) return false;
+  const names = lower.map((cell) => plainName(cell).toLowerCase()).filter((name) => name !== '');
+  const repeats = new Set(names).size < names.length;
+  const nameless = lower.some((cell, i) => cell.trim() === '' && (upper[i] ?? '').trim() !== '');
+  return repeats || nameless || filled.length * 2 >= lower.length;
 }
 
 /** At least half of the filled cells, and two of them, are units. */

@@ -1,13 +1,12 @@
-import { recogniseTable, type NumberedRow, type RecognisedTable } from './dialect';
-import { detectEncoding, type Encoding } from './encoding';
-import { columnNames, headingFingerprint } from './headings';
+import { createHash } from 'node:crypto';
+import { dropTables, type DropFile, type DropTable } from './drop';
+import type { Encoding } from './encoding';
+import { PointScan, type ScannedPoint } from './point-scan';
 import { createTrendReader } from './reader';
-import { sentenceOf, suggestRoles } from './roles/suggest';
+import { sentenceOf, suggestRoles, type Candidate } from './roles/suggest';
 import { columnStatistics, evenSamples } from './roles/statistics';
-import { StepCounter } from './step';
-import { findTime, type FoundTime } from './time-column';
-import { MINUTE_MS, StampParser } from './timestamps';
-import { unitOfCell, unitOfHeading } from './unit-text';
+import { recogniseFile, type FileTable } from './table';
+import { StampParser } from './timestamps';
 import {
   TrendError,
   type ColumnPreview,
@@ -16,133 +15,210 @@ import {
   type TrendPreview,
   type TrendProblem,
 } from './types';
+import { unitOfCell, unitOfHeading } from './unit-text';
 
 const MOST_SAMPLES = 96;
 const SHOWN_ROWS = 5;
+/** Rows of a heading's files that are looked at together. */
+const MOST_ROWS = 20_000;
 
-/**
- * What the first megabyte of a file shows: how it is written, where its time stands, what each column probably is and
- * why, and what went wrong in those rows. The file must be unpacked already.
- *
- * `columns` holds every column but those of the time. A column under confidence 0.5 needs a person.
- * Throws  TrendError, in words, for a file that cannot be read at all.
- */
-export function previewTrend(head: Uint8Array, options: PreviewOptions): TrendPreview {
-  const encoding = detectEncoding(head);
-  const table = recogniseTable(new TextDecoder(encoding).decode(head, { stream: !options.complete }), options.complete);
-  const names = columnNames(table.heading);
-  const time = findTime(names, table.data, options.timeZone, table.dialect.decimal);
-  const columns = suggestColumns(names, table, time, options);
-  const dialect = { encoding, ...table.dialect };
-  const stepMinutes = usualStep(table.data, time, table.dialect.decimal);
-  const fingerprint = headingFingerprint(names, table.units);
-  const rows = table.data.slice(0, SHOWN_ROWS).map(({ cells }) => cells);
-  const first: TablePreview = {
-    files: [],
-    shape: { kind: 'wide' },
-    dialect,
-    timestamp: time.plan,
-    fingerprint,
-    names: columns.map(({ column }) => ({ cell: column, column })),
-    stepMinutes,
-    rows,
-    firstRows: table.data.length,
-  };
-  const preview: TrendPreview = {
-    tables: [first],
-    dialect,
-    timestamp: time.plan,
-    timeZone: options.timeZone,
-    columns,
-    stepMinutes,
-    fingerprint,
-    rows,
-    firstRows: table.data.length,
-    problems: [],
-  };
-  preview.problems = [...headProblems(head, encoding, preview, options), ...doubts(time, table)].sort(
-    (a, b) => (a.row ?? 0) - (b.row ?? 0),
-  );
-  return preview;
+/** A file of a drop: its first bytes, and for a long table its points where the whole file was scanned for them. */
+export interface FileHead {
+  name: string;
+  head: Uint8Array;
+  complete: boolean;
+  points?: ScannedPoint[];
 }
 
-function suggestColumns(
-  names: readonly string[],
-  table: RecognisedTable,
-  time: FoundTime,
-  options: PreviewOptions,
-): ColumnPreview[] {
-  const { decimal } = table.dialect;
-  const places = names.map((_, cell) => cell).filter((cell) => !time.cells.includes(cell));
-  const candidates = places.map((cell) => {
-    const column = names[cell]!;
-    const unitCell = table.units?.[cell] ?? '';
-    const unit = unitOfHeading(column).unit ?? unitOfCell(unitCell);
-    const cells = table.data.map((row) => row.cells[cell] ?? '');
-    return { column, unitCell, statistics: columnStatistics(cells, decimal, unit) };
-  });
-  const roles = suggestRoles(candidates, options);
-  return candidates.map(({ column, statistics }, i) => {
-    const draft = roles[i]!;
+/** What the first megabyte of a single file shows; see previewDrop. */
+export const previewTrend = (head: Uint8Array, options: PreviewOptions): TrendPreview =>
+  previewDrop([{ name: '', head, complete: options.complete }], options);
+
+/**
+ * What the first megabyte of each file of a drop shows: how it is written, where its time stands, what each column or point
+ * probably is and why, and what went wrong in those rows. The files must be unpacked already.
+ *
+ * `columns` holds every column but those of the time, or every point of a long table. A column under confidence 0.5 needs a
+ * person. A file that cannot be read is left out with a problem that says so, unless none can.
+ * Throws  TrendError, in words, when no file can be read at all.
+ */
+export function previewDrop(heads: readonly FileHead[], options: PreviewOptions): TrendPreview {
+  const problems: TrendProblem[] = [];
+  const files: DropFile[] = [];
+  let refusal: TrendError | null = null;
+  for (const file of heads) {
+    try {
+      files.push(dropFile(file, options));
+    } catch (error) {
+      if (!(error instanceof TrendError)) throw error;
+      refusal ??= heads.length > 1 ? new TrendError(error.code, `"${file.name}": ${error.message}`, error.row) : error;
+      const message = `"${file.name}" was left out. ${error.message}`;
+      problems.push({ code: 'file-left-out', severity: 'error', message, count: 1 });
+    }
+  }
+  if (files.length === 0)
+    throw refusal ?? new TrendError('empty', 'The upload holds no file. Choose a file and send it again.');
+  const tables = dropTables(files);
+  const columns = suggestColumns(tables, options);
+  const shown = tables.map((table, index) => tablePreview(table, columns, index));
+  const [first] = shown;
+  for (const table of tables) problems.push(...tableProblems(table, columns, tables.indexOf(table), options));
+  return {
+    tables: shown,
+    dialect: first!.dialect,
+    timestamp: first!.timestamp,
+    timeZone: options.timeZone,
+    columns,
+    stepMinutes: first!.stepMinutes,
+    fingerprint: printOf(tables),
+    rows: first!.rows,
+    firstRows: first!.firstRows,
+    problems: problems.sort((a, b) => (a.row ?? 0) - (b.row ?? 0)),
+  };
+}
+
+function dropFile({ name, head, complete, points }: FileHead, options: PreviewOptions): DropFile {
+  const table = recogniseFile(head, { ...options, complete });
+  const found = table.shape.kind === 'wide' ? [] : (points ?? pointsOfHead(head, complete, table));
+  return { name, head, complete, table, points: found };
+}
+
+function pointsOfHead(head: Uint8Array, complete: boolean, table: FileTable): ScannedPoint[] {
+  const scan = new PointScan(table);
+  scan.push(complete ? head : wholeLines(head, table.dialect.encoding));
+  return scan.finish();
+}
+
+const printOf = (tables: readonly DropTable[]): string =>
+  tables.length === 1
+    ? tables[0]!.fingerprint
+    : createHash('sha256')
+        .update(
+          tables
+            .map(({ fingerprint }) => fingerprint)
+            .sort()
+            .join('\n'),
+        )
+        .digest('hex');
+
+function tablePreview(table: DropTable, columns: readonly ColumnPreview[], index: number): TablePreview {
+  const { table: first } = table.files[0]!;
+  const own = new Set(columns.filter((each) => each.table === index).map(({ column }) => column));
+  return {
+    files: table.files.map(({ name }) => name),
+    shape: first.shape,
+    dialect: first.dialect,
+    timestamp: first.time.plan,
+    fingerprint: table.fingerprint,
+    names: table.names.filter(({ column }) => own.has(column)),
+    stepMinutes: first.stepMinutes,
+    rows: first.data.slice(0, SHOWN_ROWS).map(({ cells }) => cells),
+    firstRows: table.files.reduce((sum, file) => sum + file.table.data.length, 0),
+  };
+}
+
+/** Role, unit and reason of every column of the drop, judged together. */
+function suggestColumns(tables: readonly DropTable[], options: PreviewOptions): ColumnPreview[] {
+  const several = tables.length > 1;
+  const found = tables.flatMap((table, index) =>
+    table.names.map((name) => ({ ...candidateOf(table, name, index, several), furtherTime: isTime(table, name.cell) })),
+  );
+  const roles = suggestRoles(found, options);
+  return found.map(({ column, statistics, table, furtherTime }, i) => {
     const shared = {
       column,
       samples: evenSamples(statistics.values, MOST_SAMPLES),
       low: statistics.count === 0 ? null : statistics.low,
       high: statistics.count === 0 ? null : statistics.high,
+      table,
     };
-    if (time.others.includes(places[i]!))
-      return {
-        ...shared,
-        role: 'ignore',
-        unit: null,
-        unitIndex: null,
-        confidence: 0.8,
-        reason: 'A further column of times.',
-      };
+    if (furtherTime) {
+      const reason = 'A further column of times.';
+      return { ...shared, role: 'ignore', unit: null, unitIndex: null, confidence: 0.8, reason };
+    }
+    const draft = roles[i]!;
     const { role, unitIndex } = draft;
     const confidence = Math.round(Math.min(0.99, Math.max(0.05, draft.confidence)) * 100) / 100;
-    return {
-      ...shared,
-      role,
-      unit: role === 'ignore' ? null : draft.unit,
-      unitIndex,
-      confidence,
-      reason: sentenceOf(draft),
-    };
+    const unit = role === 'ignore' ? null : draft.unit;
+    return { ...shared, role, unit, unitIndex, confidence, reason: sentenceOf(draft) };
   });
 }
 
-function usualStep(data: readonly NumberedRow[], time: FoundTime, decimal: '.' | ','): number | null {
-  const parser = new StampParser(time.plan.form, decimal);
-  const step = new StepCounter();
-  let previousMs = Number.NaN;
-  for (const { cells } of data) {
-    if (!parser.parse(time.cells.map((cell) => cells[cell] ?? '').join(' '))) continue;
-    if (!Number.isNaN(previousMs)) step.add(parser.ms - previousMs);
-    previousMs = parser.ms;
-  }
-  return step.usualMs === 0 ? null : step.usualMs / MINUTE_MS;
+const isTime = ({ files }: DropTable, cell: string): boolean =>
+  files.some(({ table }) => table.shape.kind === 'wide' && table.time.others.includes(table.names.indexOf(cell)));
+
+/** One column of a wide table, over the files that share its heading, or one point of a long one. */
+function candidateOf(
+  { files }: DropTable,
+  { cell, column }: { cell: string; column: string },
+  table: number,
+  several: boolean,
+): Candidate & { table: number; timesMs?: Float64Array } {
+  const first = files[0]!.table;
+  const { decimal } = first.dialect;
+  const long = first.shape.kind === 'long';
+  const place = first.names.indexOf(cell);
+  const scanned = files.flatMap(({ points }) => points.filter(({ name }) => name === cell));
+  const unitCell = long ? (scanned[0]?.unitCell ?? '') : (first.units?.[place] ?? '');
+  const unit = unitOfHeading(long ? column : cell).unit ?? unitOfCell(unitCell);
+  const rows = long ? [] : files.flatMap((file) => file.table.data).slice(0, MOST_ROWS);
+  const cells = long ? scanned.flatMap((point) => point.cells) : rows.map((row) => row.cells[place] ?? '');
+  const timesMs = long
+    ? Float64Array.from(scanned.flatMap((point) => point.timesMs))
+    : several
+      ? timesOf(first, rows)
+      : undefined;
+  // A heading that does not name the point may still name its unit: "Value (°F)".
+  const headed = !long && cell !== column && unit && unitCell === '' ? unit : unitCell;
+  return { column, unitCell: headed, statistics: columnStatistics(cells, decimal, unit), timesMs, table };
 }
 
-/** Reads the head as the suggestion says and takes over what the reader found wrong. */
-function headProblems(
-  head: Uint8Array,
-  encoding: Encoding,
-  preview: TrendPreview,
+function timesOf(table: FileTable, rows: FileTable['data']): Float64Array {
+  const parser = new StampParser(table.time.plan.form, table.dialect.decimal);
+  return Float64Array.from(rows, ({ cells }) =>
+    parser.parse(table.time.cells.map((cell) => cells[cell] ?? '').join(' ')) ? parser.ms : Number.NaN,
+  );
+}
+
+/** Reads the first file's head of a table as the suggestion says and takes over what the reader found wrong. */
+function tableProblems(
+  table: DropTable,
+  columns: readonly ColumnPreview[],
+  index: number,
   options: PreviewOptions,
 ): TrendProblem[] {
-  const { dialect, timestamp, timeZone, columns } = preview;
-  const plan = { dialect, timestamp, timeZone, columns, stepMinutes: options.plantStepMinutes };
-  const reader = createTrendReader(plan);
-  reader.push(options.complete ? head : wholeLines(head, encoding));
+  const { head, complete, table: first } = table.files[0]!;
+  const cells = new Map(table.names.map(({ cell, column }) => [column, cell]));
+  const own = columns.filter((each) => each.table === index);
+  const reader = createTrendReader({
+    shape: first.shape,
+    dialect: first.dialect,
+    timestamp: first.time.plan,
+    timeZone: options.timeZone,
+    columns: own.map((each) => ({ ...each, column: cells.get(each.column) ?? each.column })),
+    sourceStepMinutes: first.stepMinutes,
+    stepMinutes: options.plantStepMinutes,
+  });
+  reader.push(complete ? head : wholeLines(head, first.dialect.encoding));
   reader.finish();
   const report = reader.report();
   if (report.rowsRead === 0) {
-    const first = report.problems[0];
-    const why = first ? ` ${first.message}` : '';
-    throw new TrendError('no-rows', `No row of readings could be read.${why}`, first?.row ?? dialect.firstDataRow);
+    const [problem] = report.problems;
+    const why = problem ? ` ${problem.message}` : '';
+    const row = problem?.row ?? first.dialect.firstDataRow;
+    throw new TrendError('no-rows', `No row of readings could be read.${why}`, row);
   }
-  return report.problems;
+  const row = first.dialect.firstDataRow;
+  const column = first.time.plan.columns[0];
+  const doubts = first.time.doubts.map(({ code, message }): TrendProblem => ({
+    code,
+    severity: 'warning',
+    message,
+    row,
+    column,
+    count: 1,
+  }));
+  return [...report.problems, ...doubts];
 }
 
 /** The head up to its last line end: the row behind it is cut. */
@@ -151,10 +227,4 @@ function wholeLines(head: Uint8Array, encoding: Encoding): Uint8Array {
   const end = Math.max(head.lastIndexOf(10), head.lastIndexOf(13));
   if (end === -1) return head;
   return head.subarray(0, wide ? end + (encoding === 'utf-16le' ? 2 : 1) : end + 1);
-}
-
-function doubts(time: FoundTime, table: RecognisedTable): TrendProblem[] {
-  const row = table.dialect.firstDataRow;
-  const column = time.plan.columns[0];
-  return time.doubts.map(({ code, message }) => ({ code, severity: 'warning', message, row, column, count: 1 }));
 }

@@ -1,12 +1,9 @@
-import { DayStore } from './day-store';
 import { TextStream } from './encoding';
-import { StampWriter } from './gaps';
-import { placeColumns, type ColumnPlaces } from './headings';
+import { joinedHeading, type ColumnPlaces } from './headings';
+import { LongRows } from './long-rows';
 import { ProblemLog, quoted } from './problems';
 import { RowShape, SHAPE_ROWS } from './row-shape';
 import { BLOCK_CHARACTERS, isBlankRow, linesOfRow, parseRows, RowCutter, type Newline } from './rows';
-import { StepCounter } from './step';
-import { stampText } from './stamp-text';
 import { StampParser } from './timestamps';
 import {
   TrendError,
@@ -16,8 +13,7 @@ import {
   type TimestampForm,
   type TrendReader,
 } from './types';
-import { ValueReader } from './values';
-import { LocalClock } from './zone-offsets';
+import { WideRows, type RowSink } from './wide-rows';
 
 const MINUTES_OF_DAY = 1440;
 
@@ -51,45 +47,32 @@ export function createTrendReader(plan: ReadPlan, options: { blockCharacters?: n
 
 class PlanReader implements TrendReader {
   private readonly problems = new ProblemLog();
-  private readonly step = new StepCounter();
   private readonly text: TextStream;
   private readonly cutter: RowCutter;
-  private readonly clock: LocalClock;
   private readonly stamp: StampParser;
-  private readonly days: DayStore;
+  private readonly rows: RowSink;
   /** Row number of the next block's first line. */
   private nextRow = 1;
+  private upperHeading: readonly string[] = [];
   private places: ColumnPlaces | null = null;
-  private valueReaders: ValueReader[] = [];
-  /** Index of each value's cell in the row. */
-  private cellOf: number[] = [];
   private shape: RowShape | null = null;
   private firstRows: { cells: string[]; row: number }[] = [];
   private finished = false;
-
-  private rowsRead = 0;
-  private firstMs = Number.POSITIVE_INFINITY;
-  private lastMs = Number.NEGATIVE_INFINITY;
-  private previousMs = Number.NaN;
-  private readonly against = { forward: { row: 0, count: 0 }, backward: { row: 0, count: 0 } };
 
   constructor(
     private readonly plan: ReadPlan,
     blockCharacters: number,
   ) {
-    const { stepMinutes, dialect, timestamp, timeZone } = plan;
+    const { stepMinutes, dialect, timestamp, shape } = plan;
     if (!(stepMinutes > 0) || MINUTES_OF_DAY % stepMinutes !== 0)
       throw new RangeError(`createTrendReader: a step of ${stepMinutes} minutes does not divide a day`);
-    const columns = plan.columns.flatMap(({ column, role, unit }, i) => {
-      if (role === 'ignore') return [];
-      if (unit === null) throw new RangeError(`createTrendReader: column "${column}" is to be read but has no unit`);
-      return [{ plan: i, unit }];
-    });
+    for (const { column, role, unit } of plan.columns) {
+      if (role !== 'ignore' && unit === null)
+        throw new RangeError(`createTrendReader: column "${column}" is to be read but has no unit`);
+    }
     this.text = new TextStream(dialect.encoding);
-    this.clock = new LocalClock(timeZone);
     this.stamp = new StampParser(timestamp.form, dialect.decimal);
-    const stamps = new StampWriter(this.clock, timestamp);
-    this.days = new DayStore(columns, stepMinutes, this.step, this.problems, stamps);
+    this.rows = shape?.kind === 'long' ? new LongRows(plan, shape, this.problems) : new WideRows(plan, this.problems);
     this.cutter = new RowCutter(
       dialect.delimiter,
       (block, newline) => this.readBlock(block, newline),
@@ -104,7 +87,7 @@ class PlanReader implements TrendReader {
   }
 
   takeOldestDays(keepOpen: number): DayOfColumn[] {
-    return this.days.takeOldest(keepOpen);
+    return this.rows.takeOldest(keepOpen);
   }
 
   finish(): DayOfColumn[] {
@@ -114,30 +97,17 @@ class PlanReader implements TrendReader {
     this.cutter.end();
     this.learnShape();
     this.requirePlaces(this.nextRow);
-    return this.days.takeAll();
+    return this.rows.takeAll();
   }
 
   report(): ReadReport {
-    const problems = this.problems.list();
-    const disorder = this.step.newestFirst ? this.against.forward : this.against.backward;
-    if (disorder.count > 0) {
-      const message = 'The time goes back here and there. The rows were put in order.';
-      const column = this.plan.timestamp.columns[0];
-      problems.push({
-        code: 'out-of-order',
-        severity: 'warning',
-        message,
-        row: disorder.row,
-        column,
-        count: disorder.count,
-      });
-      problems.sort((a, b) => (a.row ?? 0) - (b.row ?? 0));
-    }
+    const { rowsRead, samplesStored, firstMs, lastMs } = this.rows;
+    const problems = [...this.problems.list(), ...this.rows.disorder()].sort((a, b) => (a.row ?? 0) - (b.row ?? 0));
     return {
-      rowsRead: this.rowsRead,
-      samplesStored: this.days.samplesStored,
-      fromMs: this.rowsRead > 0 ? this.firstMs : null,
-      toMs: this.rowsRead > 0 ? this.lastMs : null,
+      rowsRead,
+      samplesStored,
+      fromMs: Number.isFinite(firstMs) ? firstMs : null,
+      toMs: Number.isFinite(lastMs) ? lastMs : null,
       problems,
     };
   }
@@ -155,23 +125,14 @@ class PlanReader implements TrendReader {
   }
 
   private takeRow(cells: string[], row: number): void {
-    const { headerRow, firstDataRow } = this.plan.dialect;
-    if (row === headerRow) this.takeHeading(cells);
+    const { headerRow, firstDataRow, upperHeaderRow } = this.plan.dialect;
+    if (row === upperHeaderRow) this.upperHeading = cells;
+    if (row === headerRow) this.places = this.rows.place(joinedHeading(this.upperHeading, cells));
     if (row < firstDataRow || row === headerRow) return;
     if (cells[0] === '' && isBlankRow(cells)) return;
     if (this.shape) return this.readRow(cells, row, this.requirePlaces(row), this.shape);
     this.firstRows.push({ cells, row });
     if (this.firstRows.length >= SHAPE_ROWS) this.learnShape();
-  }
-
-  private takeHeading(cells: readonly string[]): void {
-    const places = placeColumns(cells, this.plan);
-    this.places = places;
-    this.cellOf = places.read.map(({ cell }) => cell);
-    this.valueReaders = places.read.map(({ plan }) => {
-      const { column, unit } = this.plan.columns[plan]!;
-      return new ValueReader(column, unit!, this.plan.dialect.decimal, this.problems);
-    });
   }
 
   private requirePlaces(row: number): ColumnPlaces {
@@ -187,13 +148,12 @@ class PlanReader implements TrendReader {
   /** The first rows wait until the usual number of cells is known, so that blocks of any size give the same result. */
   private learnShape(): void {
     if (this.shape || this.firstRows.length === 0) return;
-    const places = this.requirePlaces(this.firstRows[0]!.row);
-    this.shape = new RowShape(
-      this.firstRows.map(({ cells }) => cells),
-      places.width,
-      this.problems,
-    );
     const waiting = this.firstRows;
+    // A file without a heading: its columns go by their number.
+    if (this.plan.dialect.headerRow === 0) this.places ??= this.rows.place(waiting[0]!.cells.map(() => ''));
+    const places = this.requirePlaces(waiting[0]!.row);
+    const allCells = waiting.map(({ cells }) => cells);
+    this.shape = new RowShape(allCells, places.width, this.problems);
     this.firstRows = [];
     for (const { cells, row } of waiting) this.readRow(cells, row, places, this.shape);
   }
@@ -203,35 +163,8 @@ class PlanReader implements TrendReader {
     const [first, second] = places.time;
     const date = cells[first!] ?? '';
     const time = second === undefined ? date : `${date} ${cells[second] ?? ''}`;
-    if (!this.stamp.parse(time)) {
-      this.noteBadTime(time, date, row, places);
-      return;
-    }
-    const utcMs = this.stamp.hasOffset ? this.stamp.ms : this.utcOfLocal(this.stamp.ms, row);
-    this.follow(utcMs, row);
-    const values = this.days.addRow(utcMs, row);
-    const base = this.days.base;
-    const { cellOf, valueReaders } = this;
-    for (let c = 0; c < cellOf.length; c++) values[base + c] = valueReaders[c]!.read(cells[cellOf[c]!] ?? '', row);
-  }
-
-  private utcOfLocal(localMs: number, row: number): number {
-    const utcMs = this.clock.toUtc(localMs, this.step.newestFirst, this.step.usualMs);
-    if (this.clock.kind !== 'plain') this.noteClockChange(localMs, utcMs, row);
-    return utcMs;
-  }
-
-  private follow(utcMs: number, row: number): void {
-    this.rowsRead++;
-    if (utcMs < this.firstMs) this.firstMs = utcMs;
-    if (utcMs > this.lastMs) this.lastMs = utcMs;
-    const deltaMs = utcMs - this.previousMs;
-    this.previousMs = utcMs;
-    // NaN for the first row.
-    if (!(deltaMs > 0 || deltaMs < 0)) return;
-    this.step.add(deltaMs);
-    const way = deltaMs < 0 ? this.against.backward : this.against.forward;
-    if (way.count++ === 0) way.row = row;
+    if (this.stamp.parse(time)) this.rows.take(cells, row, this.stamp);
+    else this.noteBadTime(time, date, row, places);
   }
 
   private noteBadTime(time: string, date: string, row: number, places: ColumnPlaces): void {
@@ -246,23 +179,6 @@ class PlanReader implements TrendReader {
         ? 'The time is empty. The row was left out.'
         : `${quoted(time)} is not ${FORM_WORDS[this.plan.timestamp.form]}. The row was left out.`;
     this.problems.add({ code: 'bad-time', severity: 'error', row, column, message });
-  }
-
-  private noteClockChange(localMs: number, utcMs: number, row: number): void {
-    const { form, columns } = this.plan.timestamp;
-    const { timeZone } = this.clock;
-    const stamp = stampText(localMs, form);
-    if (this.clock.kind === 'repeated') {
-      const message = () =>
-        `Clocks went back in ${timeZone}: ${stamp} comes twice. The two passes were told apart by their order in the file.`;
-      this.problems.add({ code: 'repeated-hour', severity: 'warning', row, column: columns[0], message });
-      return;
-    }
-    const message = () => {
-      const shifted = stampText(utcMs + this.clock.offsetMs(utcMs), form);
-      return `${stamp} does not exist in ${timeZone}: clocks went forward. Read as ${shifted}. If the logger never changes its clock, choose a zone without summer time.`;
-    };
-    this.problems.add({ code: 'missing-hour', severity: 'warning', row, column: columns[0], message });
   }
 
   private noteStrayQuote(row: number): void {

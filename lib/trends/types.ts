@@ -6,7 +6,7 @@ export interface Dialect {
   encoding: 'utf-8' | 'utf-16le' | 'utf-16be' | 'windows-1252';
   delimiter: ',' | ';' | '\t' | '|';
   decimal: '.' | ',';
-  /** Row that holds the column names; the lower one of two. */
+  /** Row that holds the column names; the lower one of two; 0 when the file has none. */
   headerRow: number;
   /** Row above it that names groups of columns ("Chiller 1" over "Supply", "Return"), when there is one. */
   upperHeaderRow?: number | null;
@@ -17,11 +17,12 @@ export interface Dialect {
 
 /**
  * What the cells of a table are.
- *   wide  one column a point
+ *   wide  one column a point; with a single point perhaps a column with the status of each reading
  *   long  one row a reading: a column names the point, another holds the value, perhaps others a status and a unit
  */
 export type TableShape =
-  { kind: 'wide' } | { kind: 'long'; point: string; value: string; status: string | null; unit: string | null };
+  | { kind: 'wide'; status?: string | null }
+  | { kind: 'long'; point: string; value: string; status: string | null; unit: string | null };
 
 /** Where the time stands and in which form. `form` is one of TIMESTAMP_FORMS. */
 export interface TimestampPlan {
@@ -140,6 +141,8 @@ export interface ReadPlan {
   timestamp: TimestampPlan;
   timeZone: string;
   columns: ColumnMapping[];
+  /** Usual distance of the file's rows, as its preview found it. */
+  sourceStepMinutes?: number | null;
   /** The plant's step, which divides 1440. */
   stepMinutes: number;
 }

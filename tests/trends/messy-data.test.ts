@@ -200,10 +200,10 @@ describe('open data beside the project', () => {
     test.each([
       ['messytables/utf-16le_encoded.csv', 'no-time-column'],
       ['messytables/mixedGLB.csv', 'no-time-column'],
-      ['messytables/weird_head_padding.csv', 'no-header'],
-      ['messytables/null.csv', 'no-header'],
+      ['messytables/weird_head_padding.csv', 'no-time-column'],
+      ['messytables/null.csv', 'no-time-column'],
       ['csv-spectrum/simple.csv', 'no-time-column'],
-      ['nem12/Example_NEM12_15min_200_30min_300.csv', 'no-header'],
+      ['nem12/Example_NEM12_15min_200_30min_300.csv', 'no-time-column'],
       ['nem12/Example_empty_file.csv', 'empty'],
     ])('%s is no trend and is refused with code %s', (name, code) => {
       expect(() => previewOf(file(`messy_csv/${name}`))).toThrow(expect.objectContaining({ name: 'TrendError', code }));

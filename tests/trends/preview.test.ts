@@ -20,6 +20,7 @@ describe('how a file is written', () => {
       delimiter: ',',
       decimal: '.',
       headerRow: 4,
+      upperHeaderRow: null,
       unitRow: null,
       firstDataRow: 5,
     });

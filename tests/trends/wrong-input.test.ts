@@ -51,12 +51,6 @@ describe('a file that cannot be read gets a sentence that says what, where and w
       'No row of column names was found: no row holds more than one cell. Export the trend as a table with a heading, one column a point.',
     ],
     [
-      'no heading',
-      '07/20/2026 00:00,44.1,55.2\n07/20/2026 00:05,44.2,55.3\n',
-      'no-header',
-      'Row 1 already holds readings and no row of column names stands before it. Add a heading as the first row and drop the file again.',
-    ],
-    [
       'a heading alone',
       '"Trend report"\nTimestamp,CHWS T,CHWR T\n',
       'no-rows',

@@ -1,0 +1,121 @@
+import { TextStream } from './encoding';
+import { columnNames, joinedHeading, plainName } from './headings';
+import { detached } from './problems';
+import { BLOCK_CHARACTERS, linesOfRow, parseRows, RowCutter, type Newline } from './rows';
+import type { FileTable } from './table';
+import { StampParser } from './timestamps';
+
+/** One point of a long table: how often it comes, its unit cell, and readings spread over the whole file. */
+export interface ScannedPoint {
+  name: string;
+  count: number;
+  unitCell: string;
+  /** Local wall time of each kept reading, counted as if it were UTC. */
+  timesMs: number[];
+  cells: string[];
+}
+
+/** Readings kept of a point: when full, every second one is let go and from then on only every second one is taken. */
+const MOST_KEPT = 1024;
+/** More points than this in one file: the column that names them is something else. */
+const MOST_POINTS = 20_000;
+
+interface Kept extends ScannedPoint {
+  every: number;
+}
+
+/**
+ * Finds the points of a long table by going through the whole file: one that comes late, or a file sorted by point, shows in
+ * no head. Bytes are pushed as they come; memory holds the points, not the file.
+ */
+export class PointScan {
+  private readonly points = new Map<string, Kept>();
+  private readonly text: TextStream;
+  private readonly cutter: RowCutter;
+  private readonly stamp: StampParser;
+  private nextRow = 1;
+  private upper: readonly string[] = [];
+  private readonly cell = { point: -1, value: -1, unit: -1, time: [] as number[] };
+
+  constructor(private readonly table: FileTable) {
+    const { dialect, time } = table;
+    this.text = new TextStream(dialect.encoding);
+    this.stamp = new StampParser(time.plan.form, dialect.decimal);
+    if (dialect.headerRow === 0) this.place(table.names);
+    this.cutter = new RowCutter(
+      dialect.delimiter,
+      (block, newline) => this.readBlock(block, newline),
+      () => undefined,
+      BLOCK_CHARACTERS,
+    );
+  }
+
+  push(bytes: Uint8Array): void {
+    this.cutter.push(this.text.decode(bytes));
+  }
+
+  /** The points in the order they first came. */
+  finish(): ScannedPoint[] {
+    this.cutter.push(this.text.end());
+    this.cutter.end();
+    return [...this.points.values()];
+  }
+
+  private place(names: readonly string[]): void {
+    const { shape, time } = this.table;
+    if (shape.kind !== 'long') throw new RangeError('PointScan: the table has a column a point');
+    this.cell.point = names.indexOf(shape.point);
+    this.cell.value = names.indexOf(shape.value);
+    this.cell.unit = shape.unit === null ? -1 : names.indexOf(shape.unit);
+    this.cell.time = time.plan.columns.map((column) => names.indexOf(column));
+  }
+
+  private readBlock(block: string, newline: Newline): void {
+    const rows = parseRows(block, this.table.dialect.delimiter, newline);
+    if (block.endsWith(newline)) rows.pop();
+    const mayHoldLines = block.includes('"');
+    const { headerRow, firstDataRow, upperHeaderRow } = this.table.dialect;
+    for (const cells of rows) {
+      const row = this.nextRow;
+      this.nextRow += mayHoldLines ? linesOfRow(cells) : 1;
+      if (row === upperHeaderRow) this.upper = cells;
+      if (row === headerRow) this.place(columnNames(joinedHeading(this.upper, cells)));
+      if (row >= firstDataRow && row !== headerRow) this.take(cells);
+    }
+  }
+
+  private take(cells: readonly string[]): void {
+    const name = cells[this.cell.point];
+    if (name === undefined) return;
+    let point = this.points.get(name);
+    if (!point) {
+      point = this.known(name, cells[this.cell.unit] ?? '');
+      if (!point) return;
+    }
+    if (point.count++ % point.every !== 0) return;
+    const [first, second] = this.cell.time;
+    const time = second === undefined ? (cells[first!] ?? '') : `${cells[first!] ?? ''} ${cells[second] ?? ''}`;
+    if (!this.stamp.parse(time)) return;
+    point.timesMs.push(this.stamp.ms);
+    point.cells.push(detached(cells[this.cell.value] ?? ''));
+    if (point.cells.length >= MOST_KEPT) thin(point);
+  }
+
+  /** A new point, or one that was only spelled with other blanks. */
+  private known(cell: string, unitCell: string): Kept | undefined {
+    const name = plainName(cell);
+    if (name === '' || this.points.size >= MOST_POINTS) return undefined;
+    for (const point of name === cell ? [] : this.points.values()) {
+      if (point.name === name) return point;
+    }
+    const point = { name: detached(name), count: 0, unitCell: detached(unitCell), timesMs: [], cells: [], every: 1 };
+    this.points.set(detached(cell), point);
+    return point;
+  }
+}
+
+function thin(point: Kept): void {
+  point.timesMs = point.timesMs.filter((_, i) => i % 2 === 0);
+  point.cells = point.cells.filter((_, i) => i % 2 === 0);
+  point.every *= 2;
+}
