@@ -4,14 +4,16 @@ import { createGunzip } from 'node:zlib';
 import { CHUNK_BYTES } from '../db/chunks';
 import { problem } from '../http/problem';
 
-/** Containers that are not text, by their first bytes. */
-const CONTAINERS: readonly { magic: readonly number[]; what: string }[] = [
-  { magic: [0x50, 0x4b, 0x03, 0x04], what: 'a ZIP file or a spreadsheet workbook' },
+/** Files that are neither text nor unpacked later on (zip archives and workbooks are), by their first bytes. */
+const UNREADABLE: readonly { magic: readonly number[]; what: string }[] = [
   { magic: [0x50, 0x4b, 0x05, 0x06], what: 'an empty ZIP file' },
-  { magic: [0xd0, 0xcf, 0x11, 0xe0], what: 'an old spreadsheet workbook' },
+  { magic: [0x50, 0x4b, 0x07, 0x08], what: 'one part of a split ZIP file' },
+  { magic: [0xd0, 0xcf, 0x11, 0xe0], what: 'an old or a password-protected spreadsheet workbook' },
   { magic: [0x25, 0x50, 0x44, 0x46], what: 'a PDF' },
   { magic: [0x42, 0x5a, 0x68], what: 'a bzip2 file' },
   { magic: [0xfd, 0x37, 0x7a, 0x58, 0x5a], what: 'an xz file' },
+  { magic: [0x28, 0xb5, 0x2f, 0xfd], what: 'a zstd file' },
+  { magic: [0x52, 0x61, 0x72, 0x21, 0x1a, 0x07], what: 'a RAR file' },
   { magic: [0x37, 0x7a, 0xbc, 0xaf], what: 'a 7z file' },
 ];
 const GZIP = [0x1f, 0x8b];
@@ -29,7 +31,7 @@ export interface Meter {
 }
 
 export interface PlainContent {
-  /** The file's plain bytes cut into pieces of a MiB, the last one shorter. A piece is valid until the next is asked for. */
+  /** The file's plain bytes (of a zip archive or a workbook: its own) cut into pieces of a MiB, the last one shorter. A piece is valid until the next is asked for. */
   pieces: AsyncGenerator<Buffer>;
   /** Known once `pieces` has ended. */
   summary: () => { sizeBytes: number; receivedBytes: number; sha256: string; gzip: boolean };
@@ -38,7 +40,7 @@ export interface PlainContent {
 /**
  * Reads a file as received: unpacks gzip, hashes and counts the bytes as they came, cuts the plain bytes into pieces.
  *
- * Throws (while iterating)  415 for a workbook or another container, in words that say what to do; 400 for gzip that is damaged
+ * Throws (while iterating)  415 for what is neither text nor a zip archive, in words that say what to do; 400 for gzip that is damaged
  *                           or cut short; what `meter.check` throws.
  */
 export function plainContent(name: string, content: Readable, meter: Meter): PlainContent {
@@ -60,7 +62,7 @@ export function plainContent(name: string, content: Readable, meter: Meter): Pla
   async function* plain(): AsyncGenerator<Buffer> {
     const source = received();
     const head = await readHead(source);
-    refuseContainer(name, head, false);
+    refuseUnreadable(name, head, false);
     gzip = startsWith(head, GZIP);
     if (!gzip) {
       if (head.byteLength > 0) yield head;
@@ -69,7 +71,7 @@ export function plainContent(name: string, content: Readable, meter: Meter): Pla
     }
     const unpacked = unpack(name, head, source);
     const plainHead = await readHead(unpacked);
-    refuseContainer(name, plainHead, true);
+    refuseUnreadable(name, plainHead, true);
     if (plainHead.byteLength > 0) yield plainHead;
     yield* unpacked;
   }
@@ -98,9 +100,9 @@ async function readHead(source: AsyncGenerator<Buffer>): Promise<Buffer> {
   return head;
 }
 
-function refuseContainer(name: string, head: Buffer, packed: boolean): void {
-  const container = CONTAINERS.find(({ magic }) => startsWith(head, magic));
-  const what = container?.what ?? (packed && startsWith(head, GZIP) ? 'another gzip file' : null);
+function refuseUnreadable(name: string, head: Buffer, packed: boolean): void {
+  const found = UNREADABLE.find(({ magic }) => startsWith(head, magic));
+  const what = found?.what ?? (packed && startsWith(head, GZIP) ? 'another gzip file' : null);
   if (what === null) return;
   const inside = packed ? 'holds' : 'is';
   const message = `"${name}" ${inside} ${what}, which is not read here. In the program it comes from, export it as CSV and drop that.`;

@@ -25,6 +25,9 @@ const RAW_TYPES = new Set([
   'application/csv',
   'application/gzip',
   'application/x-gzip',
+  'application/zip',
+  'application/x-zip-compressed',
+  'application/vnd.openxmlformats-officedocument.spreadsheetml.sheet',
   'application/octet-stream',
 ]);
 const MOST_FILES = 500;
@@ -52,7 +55,7 @@ export function incomingBody(request: Request, filename: string | undefined): In
   const type = (request.headers.get('content-type') ?? '').split(';')[0]?.trim().toLowerCase() ?? '';
   const isForm = type === 'multipart/form-data';
   if (!isForm && !RAW_TYPES.has(type)) {
-    const message = `A body of type "${type}" is not read here. Send a form with a "file" field, or the file itself as text/csv or application/gzip.`;
+    const message = `A body of type "${type}" is not read here. Send a form with a "file" field, or the file itself as text/csv, application/gzip or application/zip.`;
     throw problem(415, 'Unsupported media type', message);
   }
   const source = request.body

@@ -6,15 +6,27 @@ export type Encoding = Dialect['encoding'];
 /** First bytes of files that people drop in place of a CSV, and what they are called. */
 const SIGNATURES: readonly (readonly [name: string, bytes: readonly number[]])[] = [
   ['a spreadsheet workbook or a zip archive', [0x50, 0x4b, 0x03, 0x04]],
+  ['an empty zip archive', [0x50, 0x4b, 0x05, 0x06]],
+  ['one part of a split zip archive', [0x50, 0x4b, 0x07, 0x08]],
   ['a PDF document', [0x25, 0x50, 0x44, 0x46]],
   ['an old spreadsheet workbook (xls)', [0xd0, 0xcf, 0x11, 0xe0]],
   ['a gzip archive inside the file', [0x1f, 0x8b]],
+  ['a bzip2 archive', [0x42, 0x5a, 0x68]],
+  ['an xz archive', [0xfd, 0x37, 0x7a, 0x58, 0x5a]],
+  ['a zstd archive', [0x28, 0xb5, 0x2f, 0xfd]],
+  ['a RAR archive', [0x52, 0x61, 0x72, 0x21, 0x1a, 0x07]],
   ['a picture', [0x89, 0x50, 0x4e, 0x47]],
   ['a picture', [0xff, 0xd8, 0xff]],
+  ['a picture', [0x47, 0x49, 0x46, 0x38]],
   ['a 7z archive', [0x37, 0x7a, 0xbc, 0xaf]],
   ['a Parquet table', [0x50, 0x41, 0x52, 0x31]],
   ['an SQLite database', [0x53, 0x51, 0x4c, 0x69, 0x74, 0x65]],
 ];
+
+const startsWith = (head: Uint8Array, bytes: readonly number[]): boolean => bytes.every((byte, i) => head[i] === byte);
+
+/** Whether a file is a zip archive, which a workbook is too: not text, but lib/containers makes text of it. */
+export const isZip = (head: Uint8Array): boolean => startsWith(head, [0x50, 0x4b, 0x03, 0x04]);
 
 const EXPORT_AS_CSV = 'Export the trend as CSV text and drop that file.';
 /** A logger may write a few stray control bytes; more than this share of them is no text. */
@@ -29,7 +41,7 @@ const LOOKED_AT_BYTES = 65_536;
  */
 export function detectEncoding(head: Uint8Array): Encoding {
   if (head.length === 0) throw new TrendError('empty', 'The file is empty. Export the trend again and drop that file.');
-  const signature = SIGNATURES.find(([, bytes]) => bytes.every((byte, i) => head[i] === byte));
+  const signature = SIGNATURES.find(([, bytes]) => startsWith(head, bytes));
   if (signature) throw new TrendError('not-text', `This is ${signature[0]}, not text. ${EXPORT_AS_CSV}`);
   if (head[0] === 0xff && head[1] === 0xfe) return 'utf-16le';
   if (head[0] === 0xfe && head[1] === 0xff) return 'utf-16be';

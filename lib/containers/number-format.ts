@@ -1,0 +1,34 @@
+/** What a cell's number stands for. `elapsed` counts hours beyond a day. */
+export type NumberKind = 'number' | 'datetime' | 'time' | 'elapsed';
+
+const range = (from: number, to: number): number[] => Array.from({ length: to - from + 1 }, (_, i) => from + i);
+/**
+ * The formats every workbook has without declaring them.
+ *
+ * Source  ECMA-376 part 1, 18.8.30, including the East Asian formats.
+ */
+const BUILT_IN: ReadonlyMap<number, NumberKind> = new Map<number, NumberKind>([
+  ...[...range(14, 17), 22, ...range(27, 31), 36, ...range(50, 54), 57, 58].map((id) => [id, 'datetime'] as const),
+  ...[...range(18, 21), ...range(32, 35), 45, 47, 55, 56].map((id) => [id, 'time'] as const),
+  [46, 'elapsed'],
+]);
+
+/** What numbers in a format are, by its number and, unless it is built in, its code. */
+export function numberKind(id: number, code: string | undefined): NumberKind {
+  return code === undefined ? (BUILT_IN.get(id) ?? 'number') : kindOfCode(code);
+}
+
+function kindOfCode(code: string): NumberKind {
+  const letters = code
+    .replace(/"[^"]*"?/g, '')
+    .replace(/\\.|_.|\*./gs, '')
+    .split(';', 1)[0]
+    ?.toLowerCase();
+  if (letters === undefined || letters.includes('general')) return 'number';
+  if (/\[(h+|m+|s+)\]/.test(letters)) return 'elapsed';
+  // Colours, conditions and languages.
+  const plain = letters.replace(/\[[^\]]*\]/g, '').replace(/am\/pm|a\/p/g, 'h');
+  if (/[yd]/.test(plain)) return 'datetime';
+  if (/[hs]/.test(plain)) return 'time';
+  return /m/.test(plain) ? 'datetime' : 'number';
+}
