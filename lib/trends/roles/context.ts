@@ -1,6 +1,11 @@
 import { POINT_ROLES, pointRole, type PointRoleName } from '../../point-roles';
 import { TREND_UNITS } from '../../units';
-import { doubt, JUST_OPEN, PERSON_DECIDES, says, type Draft } from './draft';
+import { settleUnits } from './balance-units';
+import { weighDuplicates } from './context-duplicates';
+import { weighFlows } from './context-flows';
+import { findIdleHeaders, weighUnits } from './context-units';
+import { bearOut, doubt, JUST_OPEN, PERSON_DECIDES, says, type Draft } from './draft';
+import { alignedTo, medianOf } from './pairing';
 import { number } from './quantity';
 import { stepSize } from './statistics';
 import type { PreviewOptions } from '../types';
@@ -22,8 +27,6 @@ const CROSSED_F = 1;
 const STEP_SHARE = 0.25;
 /** A header whose name gives no side has at most this confidence. */
 const OPEN_SIDE = 0.6;
-/** A role is borne out by behaviour by this much. */
-const BORNE_OUT = 0.03;
 
 const asF = (draft: Draft, value: number): number => TREND_UNITS[draft.unit ?? 'degF'].toStored(value);
 const medianF = (draft: Draft): number => asF(draft, draft.statistics.median);
@@ -32,6 +35,9 @@ const percent = (share: number): string => `${Math.round(share * 100)} %`;
 /** Compares columns with each other: the coldest and the warmest water, who follows whom, who clashes. */
 export function weighTogether(drafts: readonly Draft[], options: PreviewOptions): void {
   const withRole = (role: PointRoleName) => drafts.filter((draft) => draft.role === role);
+  settleUnits(drafts);
+  findIdleHeaders(drafts);
+  settleTwoHeaders(drafts);
   settleOpenSides(drafts, withRole);
   const water = drafts.filter(
     (draft) => WATER_ROLES.includes(draft.role as PointRoleName) && draft.statistics.count > 0,
@@ -41,6 +47,9 @@ export function weighTogether(drafts: readonly Draft[], options: PreviewOptions)
   followReturn(withRole('primaryReturnTemp')[0], withRole('secondaryReturnTemp')[0]);
   findCrossed(water);
   for (const draft of drafts) flowSteps(draft, options);
+  weighUnits(drafts, options);
+  weighFlows(drafts);
+  weighDuplicates(drafts);
   noteShared(drafts);
 }
 
@@ -66,6 +75,42 @@ function settleOpenSides(drafts: readonly Draft[], withRole: (role: PointRoleNam
   }
 }
 
+/**
+ * Two supplies that name no side: return water that crosses the decoupler warms the secondary supply and never the
+ * primary, so the one that is warmer at times and never colder is the secondary. A share of the rows has to show it.
+ */
+function settleTwoHeaders(drafts: readonly Draft[]): void {
+  const open = drafts.filter(({ role, confidence }) => role === 'headerSupplyTemp' && confidence >= PERSON_DECIDES);
+  const named = drafts.some(({ role }) => role === 'primarySupplyTemp' || role === 'secondarySupplyTemp');
+  if (open.length !== 2 || named) return;
+  const gaps = differencesF(open[0]!, open[1]!);
+  if (gaps.length < FEWEST_FOR_SIDES) return;
+  const middle = medianOf(gaps);
+  // A constant offset of two sensors is none of the water.
+  const above = shareAbove(gaps, middle + BLEND_F);
+  const below = shareAbove(
+    gaps.map((gap) => -gap),
+    BLEND_F - middle,
+  );
+  const share = Math.max(above, below);
+  if (share < 0.05 || Math.min(above, below) > share / 5) {
+    for (const draft of open)
+      doubt(draft, JUST_OPEN, 'two supplies of unknown side, and their values do not tell them apart');
+    return;
+  }
+  const [secondary, primary] = above > below ? [open[0]!, open[1]!] : [open[1]!, open[0]!];
+  primary.role = 'primarySupplyTemp';
+  secondary.role = 'secondarySupplyTemp';
+  primary.confidence = OPEN_SIDE;
+  secondary.confidence = OPEN_SIDE;
+  primary.shown.push(`steadier and colder than "${secondary.column}": the primary side`);
+  secondary.shown.push(`warmer than "${primary.column}" in ${percent(share)} of rows: the secondary side`);
+}
+
+/** Return water in the supply warms it by more than this. */
+const BLEND_F = 0.7;
+const FEWEST_FOR_SIDES = 48;
+
 function rankWater(water: readonly Draft[]): void {
   if (water.length < 2) return;
   const sorted = [...water].sort((a, b) => medianF(a) - medianF(b));
@@ -80,18 +125,14 @@ function rankWater(water: readonly Draft[]): void {
   if (warmest.role === 'secondaryReturnTemp') bearOut(warmest, `Warmest of ${all} water temperatures`);
 }
 
-function bearOut(draft: Draft, clause: string): void {
-  draft.shown.unshift(clause);
-  // What a person has to decide stays so.
-  if (draft.confidence >= PERSON_DECIDES) draft.confidence = Math.min(0.97, draft.confidence + BORNE_OUT);
-}
-
 /** Row by row, the difference of two columns in F; rows where one is missing are left out. */
 function differencesF(a: Draft, b: Draft): number[] {
   const differences: number[] = [];
   const { values } = a.statistics;
+  const other = alignedTo(a, b);
+  if (!other) return differences;
   for (let i = 0; i < values.length; i++) {
-    const difference = asF(a, values[i]!) - asF(b, b.statistics.values[i] ?? Number.NaN);
+    const difference = asF(a, values[i]!) - asF(b, other[i] ?? Number.NaN);
     if (!Number.isNaN(difference)) differences.push(difference);
   }
   return differences;

@@ -9,6 +9,8 @@ export interface NameReading {
   looseNumber: number | null;
   /** The piece `sp`: a set-point or the secondary pump, as the quantity shows. */
   setpointOrPump: string | null;
+  /** Kilowatts stand within the name. */
+  kilowatts: boolean;
   /** A bare `f`: flow or degrees. */
   letterF: boolean;
 }
@@ -23,6 +25,7 @@ export function piecesOf(name: string): string[] {
     .replace(/Ch[Ww]/g, 'CHW')
     .replace(/\bch[\s_.-]*(?:water|wtr)/gi, ' CHW ')
     .replace(/by[\s_-]pass/gi, ' bypass ')
+    .replace(/set[\s_-](?:point|pt)/gi, ' setpoint ')
     .replace(/(?:\b|_)d[-_ ]?P(?![a-z])/g, ' DP ')
     .replace(/(?:[δΔ∆]\s?|delta[\s_-]?)P(?![a-z])/g, ' DP ')
     .replace(/(?:[δΔ∆]\s?|delta[\s_-]?|(?:\b|_)d)T(?![a-z])/g, ' DELTAT ');
@@ -70,17 +73,22 @@ export function readName(pieces: readonly string[]): NameReading {
   const letters: { letter: string; piece: string }[] = [];
   const numbers = new Map<Concept, number>();
   let setpointOrPump: string | null = null;
+  let lettered = -1;
   for (const [i, piece] of pieces.entries()) {
     const word = words[i]!;
     if (word === 'sp') setpointOrPump = piece;
     const concepts = conceptsOfPiece(words, i);
     for (const concept of concepts) say(concept, piece);
-    if (concepts.length === 0 && word.length === 1) letters.push({ letter: word, piece });
+    if (concepts.length === 0 && word.length === 1 && i !== lettered) letters.push({ letter: word, piece });
     const numbered = NUMBERED.find((concept) => concepts.includes(concept));
     if (numbered && !numbers.has(numbered)) {
-      const next = NUMBER_WORDS.has(words[i + 1] ?? '') ? pieces[i + 2] : pieces[i + 1];
-      const number = numberOfPiece(next ?? '');
-      if (number !== null) numbers.set(numbered, number);
+      const at = NUMBER_WORDS.has(words[i + 1] ?? '') ? i + 2 : i + 1;
+      const number = numberOfPiece(pieces[at] ?? '');
+      if (number !== null) {
+        numbers.set(numbered, number);
+        // The C of "Chiller C" is its name and no condenser.
+        lettered = at;
+      }
     }
   }
   readLetters(letters, says, say);
@@ -88,7 +96,8 @@ export function readName(pieces: readonly string[]): NameReading {
   // The chiller of "Building 1 chiller 2" is number 2; a pump or building in the path does not count then.
   const index = numbers.get(said[0] ?? 'chiller') ?? (said.length > 0 ? loneNumber(pieces) : null);
   const looseNumber = said.length === 0 ? loneNumber(pieces) : null;
-  return { says, index, looseNumber, setpointOrPump, letterF: letters.some(({ letter }) => letter === 'f') };
+  const kilowatts = words.includes('kw') && says.has('power');
+  return { says, index, looseNumber, setpointOrPump, kilowatts, letterF: letters.some(({ letter }) => letter === 'f') };
 }
 
 function conceptsOfPiece(words: readonly string[], i: number): readonly Concept[] {

@@ -68,8 +68,7 @@ export function unitByValues(draft: Draft, hint: TrendUnitId | null, options: Pr
   }
   if (quantity === 'power') {
     const watts = statistics.high > MOST_PLANT_KW;
-    const saysKw = /kw$/i.test(draft.name.says.get('power') ?? '');
-    if (saysKw) return set('kW', 'named', '');
+    if (draft.name.kilowatts) return set('kW', 'named', '');
     return set(watts ? 'W' : 'kW', 'open', 'no unit is named: kW or W');
   }
   const range = `between ${number(statistics.low)} and ${number(statistics.high)}`;

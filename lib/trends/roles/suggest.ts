@@ -17,6 +17,10 @@ export interface Candidate {
   /** Cell of the unit row, if there is one. */
   unitCell: string;
   statistics: ColumnStatistics;
+  /** One instant a value, so that columns of different tables, or points of a long file, can be compared. */
+  timesMs?: Float64Array;
+  /** Columns of one table without times share rows. */
+  table?: number;
 }
 
 const UNIT_NAMED = 0.04;
@@ -43,6 +47,9 @@ export function suggestRoles(candidates: readonly Candidate[], options: PreviewO
   for (const draft of drafts) decide(draft, indexes.get(draft) ?? null, options);
   for (const draft of drafts) if (draft.confidence === 0) roleByValues(draft, drafts, options);
   weighTogether(drafts, options);
+  for (const draft of drafts) {
+    if (draft.unitOpen && draft.role !== 'ignore') draft.confidence = Math.min(draft.confidence, OPEN_UNIT_CONFIDENCE);
+  }
   return drafts;
 }
 
@@ -50,7 +57,7 @@ function startDrafts(candidates: readonly Candidate[]): Draft[] {
   const headings = candidates.map(({ column }) => unitOfHeading(column));
   const pieces = headings.map(({ name }) => piecesOf(name));
   const prefix = sharedPrefix(pieces);
-  return candidates.map(({ column, unitCell, statistics }, i) => {
+  return candidates.map(({ column, unitCell, statistics, timesMs, table }, i) => {
     const heading = headings[i]!;
     const rowUnit = unitOfCell(unitCell);
     const unit = heading.unit ?? rowUnit;
@@ -64,12 +71,15 @@ function startDrafts(candidates: readonly Candidate[]): Draft[] {
       name: readName(pieces[i]!.slice(prefix)),
       heading,
       statistics,
+      timesMs: timesMs ?? null,
+      table: table ?? 0,
       quantity: null,
       unit,
       unitFrom: unit ? 'named' : 'open',
       role: 'ignore',
       unitIndex: null,
       confidence: 0,
+      unitOpen: false,
       shown: [],
       said: [],
       unitClause: clause,
@@ -128,7 +138,7 @@ function matchUnit(draft: Draft, role: PointRoleName): void {
   }
   if (draft.unitFrom === 'named') draft.confidence += UNIT_NAMED;
   if (draft.unitFrom === 'values') draft.confidence += UNIT_BY_VALUES;
-  if (draft.unitFrom === 'open') draft.confidence = Math.min(draft.confidence, OPEN_UNIT_CONFIDENCE);
+  if (draft.unitFrom === 'open') draft.unitOpen = true;
   const impossible = checkUnit(draft);
   if (impossible) doubt(draft, JUST_OPEN, impossible);
   if (draft.heading.text !== '' && draft.heading.unit === null)
@@ -158,9 +168,15 @@ function placeUnit(draft: Draft, role: PointRoleName, unitIndex: number | null, 
 export function sentenceOf(draft: Draft): string {
   const said = draft.said.length === 0 ? [] : [`name holds ${listed(draft.said.map((piece) => `"${piece}"`))}`];
   const clauses = [...draft.shown, ...said, ...(draft.unitClause ? [draft.unitClause] : [])];
-  const text = clauses.length === 0 ? 'Neither name nor values tell what this is' : clauses.join('; ');
+  // Clauses are written to stand first; behind another they go on in small letters.
+  const joined = clauses
+    .map((clause, i) => (i > 0 && /^[A-Z][a-z]+ /.test(clause) ? lowered(clause) : clause))
+    .join('; ');
+  const text = clauses.length === 0 ? 'Neither name nor values tell what this is' : joined;
   return `${text[0]!.toUpperCase()}${text.slice(1)}${text.endsWith('?') ? '' : '.'}`;
 }
+
+const lowered = (text: string): string => `${text[0]!.toLowerCase()}${text.slice(1)}`;
 
 const listed = (items: readonly string[]): string =>
   items.length < 2 ? items.join('') : `${items.slice(0, -1).join(', ')} and ${items.at(-1)}`;

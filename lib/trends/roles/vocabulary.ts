@@ -87,7 +87,7 @@ const LINES: readonly (readonly [concepts: readonly Concept[], words: string])[]
   [['bypass', 'flow'], 'fb qb'],
   [
     ['bypass'],
-    'byp bypass bypas bp bps decoupler decouple decoupling decoup decpl dcpl dcplr common commonpipe cmnpipe weiche uberstromung ueberstroemung decouplage decoupleur bouteille desacoplador derivacion',
+    'byp bypass bypas bp bps decoupler decouple decoupling decoup decpl dcpl dcplr common commonpipe cmnpipe weiche uberstromung ueberstroemung uberstrom ueberstroem decouplage decoupleur bouteille desacoplador derivacion',
   ],
   [['bypass', 'valve'], 'bpv bypv bypvlv'],
   [['temperature'], 'temp temperature tmp temps rtd temperatur tempr temperature temperatura'],
@@ -236,7 +236,22 @@ function chilledConcepts(word: string): readonly Concept[] | null {
 /** Shorter parts are found in too many words by chance. */
 const SHORTEST_PART = 4;
 /** Parts that are short but clear within a run-together word. */
-const SHORT_PARTS = new Set(['chw', 'sup', 'ret', 'rtn', 'pri', 'sec', 'tmp', 'spd', 'kw', 'pos', 'ahu', 'lwt', 'ewt']);
+const SHORT_PARTS = new Set([
+  'chw',
+  'sup',
+  'ret',
+  'rtn',
+  'pri',
+  'sec',
+  'tmp',
+  'spd',
+  'kw',
+  'pos',
+  'ahu',
+  'lwt',
+  'ewt',
+  'pct',
+]);
 /** Signs of a compound, and words that say nothing of themselves but stand between others. */
 const FILLERS = ['water', 'sensor', 'wasser', 'kalte', 'kaelte', 's', 'n'];
 
