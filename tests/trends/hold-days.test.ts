@@ -118,7 +118,7 @@ describe('DayStore, columns logged on change', () => {
   });
 
   test('a day that comes again after it was handed out is not filled a second time', () => {
-    const rows = Array.from({ length: 30 }, (_, i): Row => [at(i * 5 + (i % 4) / 3), i % 2]);
+    const rows = Array.from({ length: 30 }, (_, i): Row => [at(i * 5 + ((i * i * 37) % 13) / 4), i % 2]);
     const { days, add } = store([STATUS], 60);
     rows.forEach((row, i) => add(row, i + 2));
     days.takeOldest(1);
