@@ -158,8 +158,9 @@ async function readSharedStrings(label: string, input: AsyncIterable<Uint8Array>
       if (name === 'rPh') phonetic--;
       if (name !== 'si') return;
       // A copy of its own: a cut keeps the whole piece alive that it was cut from.
-      strings.push(Buffer.from(unescaped(text), 'utf8').toString('utf8'));
-      bytes += STRING_OVERHEAD_BYTES + text.length;
+      const copy = Buffer.from(unescaped(text), 'utf8');
+      strings.push(copy.toString('utf8'));
+      bytes += STRING_OVERHEAD_BYTES + copy.length;
       if (bytes > MOST_STRING_BYTES) throw tooMuch(label, 'more text in its cells than is read from a workbook');
     },
   });
