@@ -1,4 +1,5 @@
 import { TREND_UNITS, type Quantity, type TrendUnitId } from '../units';
+import { plainWords } from './event-words';
 import { unitOfText } from './unit-text';
 
 /** What programs write where there is no reading. Lower case. */
@@ -44,35 +45,42 @@ const MISSING_WORDS = new Set([
   'undefined',
 ]);
 
-const ON_WORDS = new Set([
-  'on',
-  'true',
-  'running',
-  'run',
-  'yes',
-  'active',
-  'enabled',
-  'enable',
-  'started',
-  'start',
-  'open',
-  'opened',
-  'ein',
-  'an',
-]);
-const OFF_WORDS = new Set([
-  'off',
-  'false',
-  'stopped',
-  'stop',
-  'no',
-  'inactive',
-  'disabled',
-  'disable',
-  'closed',
-  'close',
-  'aus',
-  'idle',
+/** The same in the words of other languages and of gateways; without case, accents and brackets (plainWords). */
+const MISSING_PHRASES = new Set(
+  `n.a.|n.v.|k.a.|not available|unavailable|out of service|no communication|comm failure|comm lost|comms fail|stale|timeout
+  |error|err|#error|#err|invalid|failed|overflow|underflow|over range|under range|out of range|open circuit|short circuit
+  |sensor fault|sensor failure|device offline|...|.|#|##|###|####|#####|######|<null>|\\n|–|—|kein wert|keine daten
+  |ungultig|fehler|storung|gestort|fuhlerbruch|fehlt|schlecht|pas de donnees|pas de valeur|invalide|defaut|erreur|mauvais
+  |absent|hors ligne|hors service|sin datos|sin valor|invalido|fallo|averia|malo|ausente|fuera de linea|fuera de servicio`
+    .split('|')
+    .map((phrase) => phrase.trim()),
+);
+
+/** States in English, German, French and Spanish, without case and accents. */
+const ON_WORDS = new Set(
+  `on true running run yes y active enabled enable started start open opened operating energized energised
+  ein an lauft laufend betrieb wahr ja aktiv gestartet eingeschaltet offen auf
+  marche vrai oui actif active ouvert demarre allume
+  encendido marcha verdadero si activo activado abierto arrancado funcionando`.split(/\s+/),
+);
+const ON_PHRASES = new Set(['in operation', 'in betrieb', 'en marche', 'en service', 'en marcha', 'en servicio']);
+const OFF_WORDS = new Set(
+  `off false stopped stop no n inactive disabled disable closed close idle standby deenergized
+  aus steht stillstand falsch nein inaktiv gestoppt ausgeschaltet geschlossen zu
+  arret arrete faux non inactif inactive ferme eteint
+  apagado paro parado falso inactivo desactivado cerrado detenido`.split(/\s+/),
+);
+const OFF_PHRASES = new Set([
+  'not running',
+  'not active',
+  'de energized',
+  'de energised',
+  'ausser betrieb',
+  'außer betrieb',
+  'nicht in betrieb',
+  'a l arret',
+  'hors marche',
+  'en paro',
 ]);
 
 /** Numbers that loggers write in place of a reading, all below -900. Common practice, no source. */
@@ -97,36 +105,92 @@ export function readableRange(unit: TrendUnitId): readonly [low: number, high: n
   return [(low - atZero) / slope, (high - atZero) / slope];
 }
 
-export const isMissingWord = (trimmed: string): boolean => MISSING_WORDS.has(trimmed.toLowerCase());
-/** 1 for on, 0 for off, NaN for another word. A state may be followed by its number: "On (1)". */
+export function isMissingWord(trimmed: string): boolean {
+  const word = trimmed.toLowerCase();
+  return MISSING_WORDS.has(word) || MISSING_PHRASES.has(word) || MISSING_PHRASES.has(plainWords(trimmed));
+}
+
+/** A state behind or before its number: "On (1)", "1 - On". */
+const NUMBER_BEHIND = /^(.*\D)\s*[([{=:]\s*\d\s*[)\]}]?$/;
+const NUMBER_BEFORE = /^\d\s*[([{=:-]\s*(.+)$/;
+/** No state is longer. */
+const LONGEST_STATE = 40;
+
+/** 1 for on, 0 for off, NaN for another word. A state may stand beside its number: "On (1)". */
 export function stateOfWord(trimmed: string): number {
-  const word = trimmed.toLowerCase().replace(/\s*\(\d\)$/, '');
-  if (ON_WORDS.has(word)) return 1;
-  return OFF_WORDS.has(word) ? 0 : Number.NaN;
+  if (trimmed.length > LONGEST_STATE) return Number.NaN;
+  const bare = NUMBER_BEHIND.exec(trimmed)?.[1] ?? NUMBER_BEFORE.exec(trimmed)?.[1] ?? trimmed;
+  const words = plainWords(bare);
+  if (ON_WORDS.has(words) || ON_PHRASES.has(words)) return 1;
+  return OFF_WORDS.has(words) || OFF_PHRASES.has(words) ? 0 : Number.NaN;
 }
 export const isSentinel = (value: number): boolean => SENTINELS.has(value);
 
 /** Digits in groups of three, parted by one and the same mark, then perhaps a decimal mark and more digits. */
-const GROUPED = /^([-+]?\d{1,3})(?:([,.' \u00a0\u202f\u2019])\d{3})(?:\2\d{3})*(?:([.,])\d*)?$/;
-const WITH_UNIT = /^([-+]?[\d.,]+(?:[eE][-+]?\d+)?)\s*([°º]?\s?[a-zA-Z%³²/]+[a-zA-Z0-9³/]*)$/;
+const GROUPED = /^([-+]?\d{1,3})(?:([,.' ʼ\u00a0\u2009\u202f\u2018\u2019])\d{3})(?:\2\d{3})*(?:([.,])\d*)?$/;
+/** A number and what stands behind it. */
+const WITH_UNIT =
+  /^([-+]?[\d.,](?:[\d.,' ʼ\u00a0\u2009\u202f\u2018\u2019]*[\d.,])?(?:[eE][-+]?\d+)?)\s*([°º℃℉%a-zA-Z].{0,24})$/;
 /** What unary plus reads but people do not write: hexadecimal and the like. */
 const PLAIN = /^[-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?$/;
+/** Quotation marks that are left in a cell, a spreadsheet's mark for text, or its formula for text. */
+const WRAPPED = /^(?:=?"\s*([^"]*?)\s*"|'\s*([^']*?)\s*'?)$/;
+/** Minus as typesetters, bookkeepers and old reports write it. */
+const BRACKETED = /^\(\s*([\d.,].*?)\s*\)(\s*[°º℃℉%a-zA-Z].*)?$/;
+const TRAILING_MINUS = /^([\d.,]+)\s?-$/;
+const OTHER_MINUS = /^[\u2212\u2013\u2010\u2011]\s?(?=[\d.,])/;
+/** No number is longer. */
+const LONGEST_NUMBER = 64;
+
+/** A number, and the unit it names itself. */
+export interface Measure {
+  value: number;
+  unit: TrendUnitId | null;
+}
 
 /**
- * A number as people write it, with grouped thousands, the file's decimal sign and perhaps a unit behind.
- * NaN when the text is no number.
+ * A number as people write it: with grouped thousands, the file's decimal sign, a minus of any kind, and perhaps a unit
+ * behind. Null when the text is no number. A number with two different marks can only be read one way, whatever the
+ * file's decimal sign; one with a single mark follows the file.
  */
-export function numberOfText(trimmed: string, decimal: '.' | ','): number {
+export function measureOfText(trimmed: string, decimal: '.' | ','): Measure | null {
+  if (trimmed.length > LONGEST_NUMBER) return null;
+  const wrapped = WRAPPED.exec(trimmed);
+  let text = wrapped ? (wrapped[1] ?? wrapped[2] ?? '') : trimmed;
+  const bracketed = BRACKETED.exec(text);
+  if (bracketed) text = `-${bracketed[1]}${bracketed[2] ?? ''}`;
+  text = text.replace(OTHER_MINUS, '-').replace(TRAILING_MINUS, '-$1');
+  const value = bareNumber(text, decimal);
+  if (!Number.isNaN(value)) return { value, unit: null };
+  const united = WITH_UNIT.exec(text);
+  if (!united) return null;
+  const unit = unitOfText(united[2]!);
+  const before = unit ? bareNumber(united[1]!, decimal) : Number.NaN;
+  return Number.isNaN(before) ? null : { value: before, unit };
+}
+
+/** The number of a text in the unit it is written in; NaN when it is none. */
+export const numberOfText = (trimmed: string, decimal: '.' | ','): number =>
+  measureOfText(trimmed, decimal)?.value ?? Number.NaN;
+
+function bareNumber(trimmed: string, decimal: '.' | ','): number {
   const text = decimal === ',' ? trimmed.replace(',', '.') : trimmed;
   if (PLAIN.test(text) && !(decimal === ',' && groupsWithDots(trimmed))) return +text;
   const grouped = GROUPED.exec(trimmed);
-  if (grouped && grouped[2] !== decimal && (grouped[3] === undefined || grouped[3] === decimal)) {
-    const bare = trimmed.replaceAll(grouped[2]!, '');
-    return +(decimal === ',' ? bare.replace(',', '.') : bare);
-  }
-  const united = WITH_UNIT.exec(trimmed);
-  return united && unitOfText(united[2]!) ? numberOfText(united[1]!, decimal) : Number.NaN;
+  if (!grouped) return Number.NaN;
+  const [, , mark, fraction] = grouped;
+  if (mark === fraction) return Number.NaN;
+  return +trimmed.replaceAll(mark!, '').replace(',', '.');
 }
 
 /** With a decimal comma `1.234` is one thousand and so on. */
 const groupsWithDots = (text: string): boolean => /^[-+]?\d{1,3}(\.\d{3})+$/.test(text);
+
+/** A value of one unit in another of the same quantity; NaN when the quantities differ. */
+export function convertedBetween(value: number, from: TrendUnitId, to: TrendUnitId): number {
+  if (from === to) return value;
+  const { quantity, toStored } = TREND_UNITS[to];
+  if (TREND_UNITS[from].quantity !== quantity) return Number.NaN;
+  const atZero = toStored(0);
+  return (TREND_UNITS[from].toStored(value) - atZero) / (toStored(1) - atZero);
+}

@@ -1,4 +1,4 @@
-import { isMissingWord, stateOfWord } from './cell-text';
+import { isMissingWord, measureOfText, stateOfWord } from './cell-text';
 
 /** What a cell looks like on its own, before anything is known of its column. */
 export type CellKind = 'blank' | 'number' | 'time' | 'word' | 'text';
@@ -16,7 +16,8 @@ export function cellKind(cell: string): CellKind {
   if (text === '') return 'blank';
   if (CLOCK.test(text) || (DATE.test(text) && WHOLE_DATE.test(text))) return 'time';
   if (NUMBER.test(text)) return 'number';
-  return isMissingWord(text) || !Number.isNaN(stateOfWord(text)) ? 'word' : 'text';
+  if (isMissingWord(text) || !Number.isNaN(stateOfWord(text))) return 'word';
+  return /\d/.test(text) && (measureOfText(text, '.') ?? measureOfText(text, ',')) ? 'number' : 'text';
 }
 
 /** Share of a row's cells that are data rather than words; 0 for a blank row. */
@@ -41,8 +42,9 @@ export function decimalOf(cells: Iterable<string>): '.' | ',' {
   let point = 0;
   for (const cell of cells) {
     const text = cell.trim();
-    const found = /^[-+]?[\d.,'\u00a0\u202f]*?([.,])(\d+)(?:[eE][-+]?\d+)?\D{0,8}$/.exec(text);
-    if (!found || !NUMBER.test(text)) continue;
+    const found =
+      /^[-+(]?[\d.,' \u00a0\u2009\u202f\u2019]*?([.,])(\d+)(?:[eE][-+]?\d+)?(?:$|\s*[^\d\s.,].{0,24}$)/.exec(text);
+    if (!found || (!NUMBER.test(text) && cellKind(text) !== 'number')) continue;
     const isComma = found[1] === ',';
     const groupedByOther = text.includes(isComma ? '.' : ',');
     if (found[2]!.length === 3 && !groupedByOther && !/^[-+]?0/.test(text)) continue;
