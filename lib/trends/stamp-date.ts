@@ -49,6 +49,11 @@ export class DateScanner extends ClockScanner {
     this.yearless = form === 'month/day' || form === 'day/month';
   }
 
+  /** Midnight of the last date read, as the stamp writes it: hour 24 belongs to it. */
+  get dayMs(): number {
+    return this.dateMs;
+  }
+
   protected readDate(): boolean {
     this.needsTime = false;
     this.clockAt = 0;

@@ -1,30 +1,28 @@
-/** Month names by their first three letters: English, and the German and French spellings that differ. */
-const MONTHS: Readonly<Record<string, number>> = {
-  jan: 1,
-  feb: 2,
-  fev: 2,
-  fév: 2,
-  mar: 3,
-  mär: 3,
-  mrz: 3,
-  apr: 4,
-  avr: 4,
-  may: 5,
-  mai: 5,
-  jun: 6,
-  jui: 6,
-  jul: 7,
-  aug: 8,
-  aoû: 8,
-  aou: 8,
-  sep: 9,
-  oct: 10,
-  okt: 10,
-  nov: 11,
-  dec: 12,
-  dez: 12,
-  déc: 12,
-};
+/** January to December in English, German, French and Spanish. Abbreviations are their beginnings; the first one counts. */
+const MONTH_NAMES: readonly string[] = [
+  'january januar jänner janvier enero',
+  'february februar février fevrier febrero',
+  'march märz maerz mrz mars marzo',
+  'april avril abril',
+  'may mai mayo',
+  'june juni juin junio',
+  'july juli juillet julio',
+  'august août aout agosto',
+  'september septembre septiembre',
+  'october oktober octobre octubre',
+  'november novembre noviembre',
+  'december dezember décembre decembre diciembre',
+];
+const MONTHS = new Map<string, number>();
+MONTH_NAMES.forEach((names, index) => {
+  for (const name of names.split(' '))
+    for (let length = 3; length <= name.length; length++) {
+      const beginning = name.slice(0, length);
+      if (!MONTHS.has(beginning)) MONTHS.set(beginning, index + 1);
+    }
+});
+const LONGEST_MONTH = 10;
+
 /** Weekdays by their first letters, Sunday 0: English by three, German by two where no English one begins so. */
 const WEEKDAYS: Readonly<Record<string, number>> = {
   sun: 0,
@@ -66,12 +64,9 @@ const ABBREVIATIONS: Readonly<Record<string, number>> = {
   aedt: 660,
 };
 
-/** 1 to 12, or 0 when the word is no month. July in French shares its first three letters with June. */
-export function monthOfWord(word: string): number {
-  const lower = word.toLowerCase();
-  if (lower.startsWith('juil')) return 7;
-  return MONTHS[lower.slice(0, 3)] ?? 0;
-}
+/** 1 to 12, or 0 when the word is no month nor the first three or more letters of one. */
+export const monthOfWord = (word: string): number =>
+  word.length > LONGEST_MONTH ? 0 : (MONTHS.get(word.toLowerCase()) ?? 0);
 
 /** 0 = Sunday to 6, or -1 when the word is no weekday. */
 export function weekdayOfWord(word: string): number {

@@ -1,27 +1,22 @@
 import type { NumberedRow } from './dialect';
 import { quoted } from './problems';
-import { monthOfWord } from './stamp-words';
-import { StepCounter } from './step';
-import { StampParser } from './timestamps';
-import { TrendError, type TimestampForm, type TimestampPlan } from './types';
+import {
+  bestReading,
+  NUMBER_FORMS,
+  shareOf,
+  TIME_SHARE,
+  TIME_WORDS,
+  type Reading,
+  type TimeContext,
+  type TimeDoubt,
+} from './time-form';
+import { whyEndStamps } from './time-stamps';
+import { TrendError, type TimestampPlan } from './types';
 
-/** A column holds times when at least this share of its filled cells can be read as such. */
-const TIME_SHARE = 0.9;
-/** Rows of a quick look. */
-const QUICK_ROWS = 40;
-/** Headings over times. */
-const TIME_WORDS = /time|date|stamp|^ts$|datum|zeit|uhr|fecha|hora|heure|datetime|^when$/i;
+export type { TimeDoubt } from './time-form';
+
 /** Seldom the time of the reading. */
 const OTHER_TIME_WORDS = /\b(end|created|modified|updated|export)/i;
-
-const CALENDAR_FORMS: readonly TimestampForm[] = ['iso', 'month/day/year', 'day/month/year'];
-/** Numbers are taken for times when they come at an even distance, row by row. */
-const NUMBER_FORMS: readonly TimestampForm[] = ['epoch-s', 'epoch-ms', 'spreadsheet-serial'];
-
-export interface TimeDoubt {
-  code: 'day-or-month' | 'no-year' | 'end-stamps';
-  message: string;
-}
 
 export interface FoundTime {
   plan: TimestampPlan;
@@ -33,49 +28,71 @@ export interface FoundTime {
   others: number[];
 }
 
-interface Reading {
-  form: TimestampForm;
-  share: number;
-  hasTime: boolean;
-  /** Share of rows that follow their predecessor at the usual distance. */
-  regular: number;
+interface Column {
+  name: string;
+  index: number;
+  texts: string[];
+}
+interface Candidate extends Column {
+  reading: Reading;
 }
 
 /**
  * Which column (or which two) holds the time and in which form, judged from all rows of the head.
  *
- * Day and month are told apart by a value over 12; where there is none, by which reading gives rows at an even distance;
- * where both do, the zone decides and the doubt is reported.
- * Throws  TrendError `no-time-column`, or `unsupported` for dates without a year.
+ * Day and month are told apart by a value over 12 or a weekday; where there is none, by which reading gives rows at an even
+ * distance; where both do, the zone decides and the doubt is reported. Dates may stand only in the first row of a day.
+ * Dates without a year get the latest one that puts no row in the future, so `nowMs` must be given to read them. Times are
+ * taken for the ends of their intervals where the heading or hour 24 says so.
+ * Throws  TrendError `no-time-column`, or `unsupported` for dates without a year when `nowMs` is not given.
  */
 export function findTime(
   names: readonly string[],
   data: readonly NumberedRow[],
   timeZone: string,
   decimal: '.' | ',',
+  options: { nowMs?: number | null } = {},
 ): FoundTime {
+  const context = { timeZone, decimal, nowMs: options.nowMs ?? null };
   const columns = names.map((name, index) => ({ name, index, texts: data.map(({ cells }) => cells[index] ?? '') }));
-  const candidates = columns.flatMap((column) => {
-    const reading = bestReading(column.texts, column.name, timeZone, decimal);
-    return reading ? [{ ...column, ...reading }] : [];
-  });
   const clocks = columns.filter(({ texts }) => shareOf(texts, (text) => CLOCK_ALONE.test(text.trim())) >= TIME_SHARE);
-  const best = candidates.sort((a, b) => preference(b) - preference(a))[0];
-  if (!best)
-    throw noTime(
-      columns,
-      clocks.map(({ name }) => name),
-    );
+  const candidates = candidatesOf(columns, clocks.length > 0, context);
+  const best = candidates[0];
+  if (!best) {
+    const clockNames = clocks.map(({ name }) => name);
+    throw noTime(columns, clockNames);
+  }
   const clock = best.reading.hasTime ? undefined : nearest(clocks, best.index);
   const cells = clock ? [best.index, clock.index] : [best.index];
-  const plan = { columns: cells.map((cell) => names[cell]!), form: best.reading.form };
-  if (clock) {
-    const joined = best.texts.map((text, i) => `${text} ${clock.texts[i] ?? ''}`);
-    const together = bestReading(joined, best.name, timeZone, decimal);
-    if (together) plan.form = together.reading.form;
-    return { plan, doubts: together?.doubts ?? best.doubts, cells, others: othersThan(cells, candidates) };
+  const joined = clock ? best.texts.map((text, i) => `${text} ${clock.texts[i] ?? ''}`) : null;
+  const reading = (joined && bestReading(joined, best.name, context)) ?? best.reading;
+  const plan: TimestampPlan = { columns: cells.map((cell) => names[cell]!), form: reading.form };
+  if (reading.year !== null) plan.year = reading.year;
+  const doubts = [...reading.doubts];
+  const why = whyEndStamps(plan.columns, reading);
+  if (why !== null) {
+    plan.stamps = 'end';
+    const message = `${why}, so each time was taken for the end of its interval and moved one usual step back. Choose the start if it is the moment of the reading.`;
+    doubts.push({ code: 'end-stamps', message });
   }
-  return { plan, doubts: best.doubts, cells, others: othersThan(cells, candidates) };
+  const others = candidates.map(({ index }) => index).filter((index) => !cells.includes(index));
+  return { plan, doubts, cells, others };
+}
+
+/** Columns that hold times, the likeliest first. */
+function candidatesOf(columns: readonly Column[], hasClock: boolean, context: TimeContext): Candidate[] {
+  const all = columns.flatMap((column): Candidate[] => {
+    const reading = bestReading(column.texts, column.name, context);
+    return reading ? [{ ...column, reading }] : [];
+  });
+  const isWeak = ({ name, reading }: Candidate) =>
+    (reading.year !== null && !reading.hasTime) || (NUMBER_FORMS.includes(reading.form) && !TIME_WORDS.test(name));
+  const sure = all.filter((each) => !isWeak(each));
+  // "Dec 1" is a day without a year only where nothing else can be the time and something says so.
+  const weak = all.filter(
+    (each) => isWeak(each) && (NUMBER_FORMS.includes(each.reading.form) || hasClock || TIME_WORDS.test(each.name)),
+  );
+  return (sure.length > 0 ? sure : weak).sort((a, b) => preference(b) - preference(a));
 }
 
 /** A time of day and nothing else. */
@@ -83,11 +100,8 @@ const CLOCK_ALONE = /^\d{1,2}:\d{2}(:\d{2}([.,]\d+)?)?(\s?[ap]\.?m\.?)?$/i;
 /** Month and day or day and month, then a time of day, and no year. */
 const NO_YEAR = /^\d{1,2}[/.-]\d{1,2}\.?[\sT]+\d{1,2}:\d{2}/;
 
-const nearest = <Column extends { index: number }>(columns: readonly Column[], index: number): Column | undefined =>
+const nearest = (columns: readonly Column[], index: number): Column | undefined =>
   [...columns].sort((a, b) => Math.abs(a.index - index) - Math.abs(b.index - index))[0];
-
-const othersThan = (cells: readonly number[], candidates: readonly { index: number }[]): number[] =>
-  candidates.map(({ index }) => index).filter((index) => !cells.includes(index));
 
 /** Named columns first, then those with a time of day, then calendar times before numbers, then the leftmost. */
 function preference({ name, index, reading }: { name: string; index: number; reading: Reading }): number {
@@ -95,101 +109,6 @@ function preference({ name, index, reading }: { name: string; index: number; rea
   const other = OTHER_TIME_WORDS.test(name) ? -3 : 0;
   const number = NUMBER_FORMS.includes(reading.form) ? -2 : 0;
   return named + other + number + (reading.hasTime ? 3 : 0) + reading.regular - index / 1000;
-}
-
-function shareOf(texts: readonly string[], matches: (text: string) => boolean): number {
-  const filled = texts.filter((text) => text.trim() !== '');
-  return filled.length === 0 ? 0 : filled.filter(matches).length / filled.length;
-}
-
-function bestReading(
-  texts: readonly string[],
-  name: string,
-  timeZone: string,
-  decimal: '.' | ',',
-): { reading: Reading; doubts: TimeDoubt[] } | null {
-  const inForms = (forms: readonly TimestampForm[]) =>
-    forms
-      .filter((form) => mayHold(texts, form, decimal))
-      .map((form) => read(texts, form, decimal))
-      .filter(({ share }) => share >= TIME_SHARE);
-  const calendar = inForms(CALENDAR_FORMS);
-  const iso = calendar.find(({ form }) => form === 'iso');
-  if (iso) return { reading: { ...iso, form: isoOrSlashes(texts) }, doubts: [] };
-  const [monthFirst, dayFirst] = (['month/day/year', 'day/month/year'] as const).map((form) =>
-    calendar.find((each) => each.form === form),
-  );
-  if (monthFirst && dayFirst) return monthOrDayFirst(texts, monthFirst, dayFirst, timeZone);
-  const one = monthFirst ?? dayFirst;
-  if (one) return { reading: one, doubts: [] };
-  const numbers = inForms(NUMBER_FORMS);
-  const fit = numbers.find(({ regular }) => regular > 0.5 || (texts.length < 3 && TIME_WORDS.test(name)));
-  return fit ? { reading: fit, doubts: [] } : null;
-}
-
-const isoOrSlashes = (texts: readonly string[]): TimestampForm =>
-  shareOf(texts, (text) => /^\s*(\d{4}-\d{1,2}-\d{1,2}|\d{8})/.test(text)) > 0.5 ? 'iso' : 'year/month/day';
-
-/** A quick look at some rows, so that columns of readings are not read through in every form. */
-function mayHold(texts: readonly string[], form: TimestampForm, decimal: '.' | ','): boolean {
-  const parser = new StampParser(form, decimal);
-  const every = Math.max(1, Math.floor(texts.length / QUICK_ROWS));
-  const some = texts.filter((text, i) => i % every === 0 && text.trim() !== '');
-  return shareOf(some, (text) => parser.parse(text)) >= 0.5;
-}
-
-function read(texts: readonly string[], form: TimestampForm, decimal: '.' | ','): Reading {
-  const parser = new StampParser(form, decimal);
-  const step = new StepCounter();
-  let filled = 0;
-  let good = 0;
-  let timed = 0;
-  let usual = 0;
-  let previousMs = Number.NaN;
-  const distances: number[] = [];
-  for (const text of texts) {
-    if (text.trim() === '') continue;
-    filled++;
-    if (!parser.parse(text)) continue;
-    good++;
-    if (parser.hasTime) timed++;
-    const deltaMs = parser.ms - previousMs;
-    previousMs = parser.ms;
-    if (Number.isNaN(deltaMs)) continue;
-    step.add(deltaMs);
-    distances.push(Math.abs(deltaMs));
-  }
-  for (const distance of distances) if (Math.abs(distance - step.usualMs) <= step.usualMs * 0.1) usual++;
-  return {
-    form,
-    share: filled === 0 ? 0 : good / filled,
-    hasTime: timed > 0,
-    regular: distances.length === 0 ? 0 : usual / distances.length,
-  };
-}
-
-/** Both readings work on nearly every row. A row that only one can read, or uneven distances, settle it. */
-function monthOrDayFirst(
-  texts: readonly string[],
-  monthFirst: Reading,
-  dayFirst: Reading,
-  timeZone: string,
-): { reading: Reading; doubts: TimeDoubt[] } {
-  const first = texts.find((text) => text.trim() !== '') ?? '';
-  const words = first.match(/[^\W\d_]{3,}/gu) ?? [];
-  // A month in letters reads the same both ways.
-  if (words.some((word) => monthOfWord(word) !== 0))
-    return { reading: /^[^\W\d_]/u.test(first.trim()) ? monthFirst : dayFirst, doubts: [] };
-  if (monthFirst.share !== dayFirst.share)
-    return { reading: monthFirst.share > dayFirst.share ? monthFirst : dayFirst, doubts: [] };
-  if (monthFirst.regular !== dayFirst.regular)
-    return { reading: monthFirst.regular > dayFirst.regular ? monthFirst : dayFirst, doubts: [] };
-  // Points part days from months only where the day comes first.
-  if (/^\s*\d{1,2}\./.test(first)) return { reading: dayFirst, doubts: [] };
-  const american = timeZone.startsWith('America/') || timeZone.startsWith('US/') || timeZone === 'Pacific/Honolulu';
-  const reading = american ? monthFirst : dayFirst;
-  const message = `${quoted(first)} can be read with the month or the day first. Read as ${reading.form} because the plant's zone is ${timeZone}; check it.`;
-  return { reading, doubts: [{ code: 'day-or-month', message }] };
 }
 
 function noTime(columns: readonly { name: string; texts: readonly string[] }[], clocks: readonly string[]): TrendError {
