@@ -158,6 +158,12 @@ describe('no alarm', () => {
     }
   });
 
+  test('for three days of schedules with several steps a day, an hour apart', () => {
+    const schedule = (from: number) => (minute: number) =>
+      [0, 200, 490].some((start) => (minute % 1440) - from >= start && (minute % 1440) - from < start + 130) ? 1 : 0;
+    expect(findClockOffset(record(3, 5, schedule(360)), record(3, 5, schedule(420)))).toBeNull();
+  });
+
   test('for machines that cycle by the hour, as any number of hours would fit', () => {
     const cycling = (shift: number) => (minute: number) => ((minute + shift) % 60 < 30 ? 1 : 0);
     expect(findClockOffset(record(1.9, 5, cycling(0)), record(1.9, 5, cycling(15)))).toBeNull();

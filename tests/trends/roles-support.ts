@@ -55,7 +55,7 @@ export function panelDays(rows = 600, stepMinutes = 15): PanelMoment[] {
     const hour = (i * stepMinutes) / 60;
     drift = 0.95 * drift + 12 * (next() - 0.5);
     const tons = Math.max(60, 430 + 260 * Math.sin(((hour - 9) / 24) * 2 * Math.PI) + drift);
-    const running = tons > 520 ? 3 : tons > 250 ? 2 : 1;
+    const running = tons > 600 ? 3 : tons > 300 ? 2 : 1;
     // The lead changes every day, so that every unit is idle at times.
     const lead = Math.floor(hour / 24) % 3;
     const deltaF = 8.4 + 0.4 * Math.sin(i / 37);

@@ -31,6 +31,7 @@ function isOpenFlow(draft: Draft): boolean {
   if (draft.quantity !== 'flow' || draft.confidence >= PERSON_DECIDES || draft.statistics.count < FEWEST_ROWS)
     return false;
   if (draft.role === 'ignore') return !says(draft, 'condenser', 'hotWater', 'air', 'elsewhere') && draft.confidence > 0;
+  if (draft.role === 'primaryFlow') return !says(draft, 'primary');
   return draft.role === 'secondaryFlow' && !says(draft, 'secondary', 'branch');
 }
 

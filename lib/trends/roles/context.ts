@@ -166,14 +166,20 @@ function followReturn(primary: Draft | undefined, secondary: Draft | undefined):
   );
 }
 
+const MUCH_SURER = 0.2;
+
 function findCrossed(water: readonly Draft[]): void {
   const supplies = water.filter(({ role }) => role.endsWith('SupplyTemp'));
   const returns = water.filter(({ role }) => role.endsWith('ReturnTemp'));
   for (const supply of supplies) {
     const colder = returns.find((each) => medianF(each) < medianF(supply) - CROSSED_F);
     if (!colder) continue;
-    doubt(supply, JUST_OPEN, `Named a supply but warmer than "${colder.column}", a return`);
-    doubt(colder, JUST_OPEN, `Named a return but colder than "${supply.column}", a supply`);
+    const [said, against] = [supply.confidence, colder.confidence];
+    // A name that leaves the side open is more likely wrong than one that says all.
+    if (said < against + MUCH_SURER)
+      doubt(supply, JUST_OPEN, `Named a supply but warmer than "${colder.column}", a return`);
+    if (against < said + MUCH_SURER)
+      doubt(colder, JUST_OPEN, `Named a return but colder than "${supply.column}", a supply`);
   }
 }
 
@@ -186,6 +192,9 @@ function flowSteps(draft: Draft, options: PreviewOptions): void {
   if (Math.abs(size - oneUnit) > oneUnit * STEP_SHARE || Number.isNaN(size)) return;
   bearOut(draft, `Takes steps of ${number(size)}, about one unit's design flow`);
 }
+
+/** So many of a role's columns are named in a reason. */
+const MOST_NAMED = 4;
 
 /** Several columns of one role are used together; the reason says how. */
 function noteShared(drafts: readonly Draft[]): void {
@@ -201,7 +210,8 @@ function noteShared(drafts: readonly Draft[]): void {
         : quantity === 'temperature'
           ? 'averaged'
           : 'used together';
-    const names = others.map(({ column }) => `"${column}"`).join(', ');
+    const shown = others.slice(0, MOST_NAMED).map(({ column }) => `"${column}"`);
+    const names = [...shown, ...(others.length > MOST_NAMED ? [`${others.length - MOST_NAMED} more`] : [])].join(', ');
     draft.shown.push(`${how} with ${names}`);
   }
 }

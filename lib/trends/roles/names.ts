@@ -107,7 +107,9 @@ function conceptsOfPiece(words: readonly string[], i: number): readonly Concept[
   if (word === 'kw' && words.some((each) => GERMAN_WATER.has(each))) return ['chilledWater'];
   const concepts = conceptsOfWord(word);
   // A chiller plant, or its room, is no chiller.
-  const ofPlant = concepts.includes('chiller') && (next === 'room' || next === 'yard' || saysPlant(next));
+  const ofPlant =
+    concepts.includes('chiller') &&
+    (next === 'room' || next === 'yard' || saysPlant(next) || words[i - 1] === 'planta');
   if (ofPlant) return ['plant'];
   return word === 'room' && i > 0 && saysChillerOrPlant(words[i - 1]!) ? [] : concepts;
 }

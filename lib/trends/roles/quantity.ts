@@ -80,10 +80,20 @@ type SetUnit = (unit: TrendUnitId, from: Draft['unitFrom'], clause: string) => v
 function temperatureUnit(draft: Draft, hint: TrendUnitId | null, set: SetUnit): void {
   const { heading, statistics } = draft;
   if (heading.letter) return set(heading.letter, 'named', '');
+  const fitting = CHILLED_RANGE.find(([, low, high]) => statistics.median >= low && statistics.median <= high)?.[0];
+  // Only chilled water is in a range that tells the unit; a machine room in degrees C reads as cold water in degrees F.
+  const chilled =
+    says(draft, 'chilledWater', 'chiller', 'primary', 'secondary') &&
+    !says(draft, 'condenser', 'hotWater', 'refrigerant', 'setpoint');
+  if (hint && chilled && fitting && fitting !== hint && statistics.count > 0)
+    return set(
+      fitting,
+      'open',
+      `${TREND_UNITS[fitting].label} by its values, though the others are in ${TREND_UNITS[hint].label}`,
+    );
   if (hint) return set(hint, 'values', `unit as of the other temperatures`);
   const water = !says(draft, 'outdoor', 'wetBulb', 'air');
-  const fit = CHILLED_RANGE.find(([, low, high]) => statistics.median >= low && statistics.median <= high);
-  if (water && fit) return set(fit[0], 'values', `${TREND_UNITS[fit[0]].label} by its values`);
+  if (water && fitting) return set(fitting, 'values', `${TREND_UNITS[fitting].label} by its values`);
   if (!water && statistics.high > 55) return set('degF', 'values', '°F by its values');
   return set('degF', 'open', 'no unit is named');
 }

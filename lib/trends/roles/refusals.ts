@@ -1,4 +1,4 @@
-import { TREND_UNITS } from '../../units';
+import { TREND_UNITS, type Quantity } from '../../units';
 import { says, type Draft } from './draft';
 import type { Concept } from './vocabulary';
 
@@ -13,10 +13,18 @@ export interface Refusal {
 }
 
 /** Names of what no role reads; the first that fits counts. `unless`: other words that make it something else. */
-const BY_NAME: readonly { concept: Concept; unless?: readonly Concept[]; confidence: number; reason: string }[] = [
+const BY_NAME: readonly {
+  concept: Concept;
+  unless?: readonly Concept[];
+  /** Quantities to which it does not apply. */
+  quantities?: readonly Quantity[];
+  confidence: number;
+  reason: string;
+}[] = [
   { concept: 'alarm', confidence: 0.8, reason: 'An alarm, not a reading' },
   {
     concept: 'refrigerant',
+    quantities: ['power', 'percent', 'status'],
     unless: ['power', 'percent', 'load', 'status'],
     confidence: 0.8,
     reason: 'Inside the machine (refrigerant, oil or motor), not chilled water',
@@ -76,7 +84,8 @@ export function refusal(draft: Draft): Refusal | null {
   if (/rh|hum/i.test(heading.text)) return refused('humidity');
   if (/wh$|btu|gal$|m3$|m³$/i.test(heading.text)) return refused('energy');
   if (/^a$|^amps?$/i.test(heading.text)) return refused('amps');
-  for (const { concept, unless, confidence, reason } of BY_NAME) {
+  for (const { concept, unless, quantities, confidence, reason } of BY_NAME) {
+    if (draft.quantity && quantities?.includes(draft.quantity)) continue;
     if (says(draft, concept) && !(unless && says(draft, ...unless)))
       return { confidence, reason: held(reason, name.says.get(concept)) };
   }

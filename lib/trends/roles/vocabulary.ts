@@ -134,17 +134,17 @@ const LINES: readonly (readonly [concepts: readonly Concept[], words: string])[]
   [['secondary', 'pump'], 'schp spmp schwp'],
   [
     ['plant'],
-    'plant plt total tot cup cep site facility chplt chplant kaltezentrale kaeltezentrale anlage centrale central gesamt',
+    'plant plt planta total tot cup cep site facility chplt chplant kaltezentrale kaeltezentrale anlage centrale central gesamt',
   ],
   [
     ['condenser'],
-    'cond condenser cw cws cwr cwst cwrt cdw cdws cdwr cdwst cdwrt cwp cdwp tower ct ctf fan lcwt ecwt lcdwt ecdwt cdlwt cdewt cnd cond condensing kuhlturm kuehlturm kuhlwasser kuehlwasser kondensator verflussiger condenseur tour condensador torre',
+    'cond condenser cw cws cwr cwst cwrt cdw cdws cdwr cdwst cdwrt cwp cdwp tower ct ctf fan lcwt ecwt lcdwt ecdwt cdlwt cdewt cnd cond condensing kuhlturm kuehlturm ruckkuhlwerk rueckkuehlwerk ruckkuhler rueckkuehler ruckkuhlung kuhlwasser kuehlwasser kondensator verflussiger condenseur tour condensador torre',
   ],
   [
     ['hotWater'],
     'hw hws hwr hwst hwrt hhw hhws hhwr hhwst hhwrt hot heating boiler blr hx hchw heizung warmwasser heizwasser kessel chaude chauffage chaudiere caliente caldera calefaccion domestic dhw dcw dhws dhwr potable trinkwasser',
   ],
-  [['air'], 'air sat mat rat dat room zone space supair luft zuluft raum ambiance sala'],
+  [['air'], 'air sat mat rat dat lat cclat eat room zone space supair luft zuluft raum ambiance sala'],
   [['storage'], 'tes tank ice storage ts'],
   [['alarm'], 'alarm alm flt trip fault storung stoerung alarme defaut alarma'],
   [['branch'], 'ahu bldg building coil branch fcu riser wing block crah gebaude gebaeude'],
