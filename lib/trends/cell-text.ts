@@ -155,11 +155,7 @@ export interface Measure {
  */
 export function measureOfText(trimmed: string, decimal: '.' | ','): Measure | null {
   if (trimmed.length > LONGEST_NUMBER) return null;
-  const wrapped = WRAPPED.exec(trimmed);
-  let text = wrapped ? (wrapped[1] ?? wrapped[2] ?? '') : trimmed;
-  const bracketed = BRACKETED.exec(text);
-  if (bracketed) text = `-${bracketed[1]}${bracketed[2] ?? ''}`;
-  text = text.replace(OTHER_MINUS, '-').replace(TRAILING_MINUS, '-$1');
+  const text = isDigit(trimmed.charCodeAt(0)) && !trimmed.endsWith('-') ? trimmed : tidied(trimmed);
   const value = bareNumber(text, decimal);
   if (!Number.isNaN(value)) return { value, unit: null };
   const united = WITH_UNIT.exec(text);
@@ -167,6 +163,17 @@ export function measureOfText(trimmed: string, decimal: '.' | ','): Measure | nu
   const unit = unitOfText(united[2]!);
   const before = unit ? bareNumber(united[1]!, decimal) : Number.NaN;
   return Number.isNaN(before) ? null : { value: before, unit };
+}
+
+const isDigit = (code: number): boolean => code >= 48 && code <= 57;
+
+/** The same number without quotation marks and with a common minus in front. */
+function tidied(trimmed: string): string {
+  const wrapped = WRAPPED.exec(trimmed);
+  const text = wrapped ? (wrapped[1] ?? wrapped[2] ?? '') : trimmed;
+  const bracketed = BRACKETED.exec(text);
+  const signed = bracketed ? `-${bracketed[1]}${bracketed[2] ?? ''}` : text;
+  return signed.replace(OTHER_MINUS, '-').replace(TRAILING_MINUS, '-$1');
 }
 
 /** The number of a text in the unit it is written in; NaN when it is none. */

@@ -20,8 +20,19 @@ const BY_SPELLING = new Map<string, TrendUnitId>(
   ),
 );
 
+/** Spellings as they were met: a column repeats its own in every row. */
+const MET = new Map<string, TrendUnitId>();
+const MOST_MET = 256;
+
 /** The unit a text names, or null. */
-export const unitOfText = (text: string): TrendUnitId | null => BY_SPELLING.get(plainUnit(text)) ?? null;
+export function unitOfText(text: string): TrendUnitId | null {
+  const known = MET.get(text);
+  if (known !== undefined) return known;
+  const unit = BY_SPELLING.get(plainUnit(text)) ?? null;
+  // Copied, so that it does not keep alive the block of text it was cut from.
+  if (unit !== null && MET.size < MOST_MET) MET.set(Buffer.from(text, 'utf8').toString('utf8'), unit);
+  return unit;
+}
 
 /** Spellings that also mean something else in a heading (a letter, heat pump, feet of what): only believed in brackets or a unit row. */
 const NEEDS_BRACKETS = new Set([
@@ -30,6 +41,8 @@ const NEEDS_BRACKETS = new Set([
   'k',
   'w',
   'hp',
+  'bar',
+  'bars',
   'ft',
   'feet',
   'tr',

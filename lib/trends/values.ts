@@ -114,7 +114,7 @@ export class ValueReader {
   private readText(cell: string, row: number): Outcome {
     const note = (trouble: Trouble): CountedProblem =>
       this.problems.add({ severity: 'warning', ...trouble, row, column: this.column });
-    const state = QUALITY.exec(cell);
+    const state = cell.includes('}') ? QUALITY.exec(cell) : null;
     const meaning = state ? statusMeaning(state[1]!) : 'good';
     if (meaning === 'ends') return this.logEnded(cell, note);
     if (state && meaning !== 'good') {
