@@ -1,11 +1,18 @@
 import { UploadEntity, PlantEntity, type Plant, type Upload } from '@/entities';
-import { applyUpload, resumeApplying, takeOutUpload } from '@/lib/commands/apply-upload';
+import {
+  applyUpload,
+  clearLayers,
+  resumeApplying,
+  startAnalysisOfStale,
+  takeOutUpload,
+} from '@/lib/commands/apply-upload';
 import { planImport } from '@/lib/commands/import-plan';
 import { importSamples, type ImportResult } from '@/lib/commands/import-samples';
+import { unpackUpload } from '@/lib/commands/unpack-upload';
 import { enqueue } from '@/lib/db/enqueue';
-import { query } from '@/lib/db/sql';
+import { query, queryOne } from '@/lib/db/sql';
 import { withTenant } from '@/lib/db/tenant';
-import { TrendError } from '@/lib/trends/types';
+import { TrendError, type TrendProblem } from '@/lib/trends/types';
 import { defineJob, PermanentFailure, type JobContext } from './define-job';
 
 /**
@@ -55,24 +62,60 @@ async function load(organizationId: string, uploadId: string): Promise<{ upload:
 
 async function importFile(upload: Upload, plant: Plant, context: JobContext): Promise<void> {
   const tenancy = { organizationIds: [plant.organizationId] };
-  const { preview, plan } = await planImport(upload, plant);
+  const unpacked = await unpackUpload(upload, context);
+  const { preview, confirmed, plan } = await planImport(upload, plant, context.signal);
   await withTenant(tenancy, async (em) => {
     await context.fence(em);
-    await query(em, `update upload set preview = $2, status = $3, progress = 0, finished_at = null where id = $1`, [
-      upload.id,
-      JSON.stringify(preview),
-      plan ? 'importing' : 'needs-mapping',
-    ]);
+    await query(
+      em,
+      `update upload set preview = $2, confirmed = $3, status = $4, progress = 0, finished_at = null where id = $1`,
+      [
+        upload.id,
+        JSON.stringify(preview),
+        confirmed && JSON.stringify(confirmed),
+        plan ? 'importing' : 'needs-mapping',
+      ],
+    );
     if (!plan) await context.complete(em);
   });
   if (!plan) return;
-  const result = await importSamples(upload, plant, plan, context);
-  if (result.samplesStored === 0) return askAgain(upload, result, context);
+  // What an earlier attempt or an earlier mapping stored goes first; the days it touched are derived without it.
+  const cleared = await clearLayers(upload, plant, context);
+  const read = await importSamples(upload, plant, plan, context);
+  const aside = preview.problems.filter(({ code }) => ABOUT_FILES.has(code));
+  const twins = await sameFile(upload, plant);
+  const result = { ...read, problems: [...twins, ...unpacked.problems, ...aside, ...read.problems] };
+  if (result.samplesStored === 0) return askAgain(upload, plant, result, cleared, context);
   await applyUpload(upload, plant, result, context);
 }
 
+/** Problems that only the preview of a drop knows, and the reading of its files does not meet again. */
+const ABOUT_FILES: ReadonlySet<string> = new Set(['file-left-out', 'column-gone', 'clock-offset']);
+
+/** Says so when the same bytes came before: an overlap changes nothing, and a person may have meant another file. */
+async function sameFile(upload: Upload, plant: Plant): Promise<TrendProblem[]> {
+  const twin = await withTenant({ organizationIds: [plant.organizationId] }, (em) =>
+    queryOne<{ filename: string; day: string }>(
+      em,
+      `select filename, to_char(created_at at time zone $5, 'FMDD Mon YYYY') as day from upload
+       where organization_id = $1 and plant_id = $2 and sha256 = $3 and id <> $4 and applied and removed_at is null
+         and upload_seq < $6 order by upload_seq desc limit 1`,
+      [plant.organizationId, plant.id, upload.sha256, upload.id, plant.timeZone, upload.uploadSeq],
+    ),
+  );
+  if (!twin) return [];
+  const message = `Byte for byte the same as "${twin.filename}", received on ${twin.day}. Its values were stored already; nothing is counted twice.`;
+  return [{ code: 'same-file', severity: 'warning', message, count: 1 }];
+}
+
 /** The mapping made nothing of the file: it goes back to the person with what was found, and the file is kept. */
-async function askAgain(upload: Upload, result: ImportResult, context: JobContext): Promise<void> {
+async function askAgain(
+  upload: Upload,
+  plant: Plant,
+  result: ImportResult,
+  cleared: boolean,
+  context: JobContext,
+): Promise<void> {
   const problem = {
     code: 'no-values',
     severity: 'error',
@@ -85,6 +128,8 @@ async function askAgain(upload: Upload, result: ImportResult, context: JobContex
       `update upload set status = 'needs-mapping', confirmed = null, progress = 0, rows_read = $2, problems = $3 where id = $1`,
       [upload.id, result.rowsRead, JSON.stringify([problem, ...result.problems])],
     );
+    // What an earlier mapping had given is gone: the days it served are analysed without it.
+    if (cleared) await startAnalysisOfStale(em, plant, null);
     await context.complete(em);
   });
 }

@@ -88,6 +88,21 @@ export async function takeOutUpload(upload: Upload, plant: Plant, hooks: Hooks):
   });
 }
 
+/**
+ * Takes out what an upload has stored so far, so that it can be read anew: after an attempt that was cut off, or under another
+ * mapping. Its layers go last: a crash leaves the list of days to derive. True when there was anything.
+ */
+export async function clearLayers(upload: Upload, plant: Plant, hooks: Hooks): Promise<boolean> {
+  const days = await layerDays(upload, plant, hooks);
+  if (days.length === 0) return false;
+  await deriveDays(plant, days, hooks);
+  await withTenant({ organizationIds: [plant.organizationId] }, async (em) => {
+    await hooks.fence(em);
+    await dropLayers(em, upload, plant);
+  });
+  return true;
+}
+
 async function layerDays(upload: Upload, plant: Plant, hooks: Hooks): Promise<string[]> {
   return withTenant({ organizationIds: [plant.organizationId] }, async (em) => {
     await hooks.fence(em);
@@ -121,7 +136,7 @@ async function deriveDays(plant: Plant, days: readonly string[], hooks: Hooks): 
 }
 
 /** Starts an analysis of the days that are stale already; marking by range would redo the whole record. */
-async function startAnalysisOfStale(em: EntityManager, plant: Plant, upload: Upload | null): Promise<void> {
+export async function startAnalysisOfStale(em: EntityManager, plant: Plant, upload: Upload | null): Promise<void> {
   await startAnalysis(em, {
     organizationId: plant.organizationId,
     plantId: plant.id,

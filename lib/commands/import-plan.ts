@@ -1,75 +1,179 @@
-import { MappingEntity, PlantSettingsEntity, type Plant, type Upload } from '@/entities';
+import { PlantSettingsEntity, type Plant, type Upload } from '@/entities';
 import { withTenant } from '../db/tenant';
+import type { Arrangement } from '../hydronics/types';
 import { plantModelFromSettings } from '../hydronics/plant-model';
 import { IGNORE_ROLE } from '../point-roles';
 import { PlantSettings } from '../schemas/plant';
-import { ConfirmMapping } from '../schemas/upload';
-import { previewTrend } from '../trends/preview';
-import { TrendError, type ReadPlan, type TrendPreview } from '../trends/types';
-import type { Arrangement } from '../hydronics/types';
+import { ConfirmMapping, Preview } from '../schemas/upload';
+import { PointScan, type ScannedPoint } from '../trends/point-scan';
+import { previewDrop, type FileHead } from '../trends/preview';
+import { recogniseFile } from '../trends/table';
+import {
+  TrendError,
+  type ColumnMapping,
+  type PreviewOptions,
+  type ReadPlan,
+  type TablePreview,
+  type TimestampPlan,
+  type TrendPreview,
+} from '../trends/types';
 import { readChunk } from './import-source';
+import { recallMappings } from './recall-mappings';
+import { textFiles, type TextFile } from './unpack-upload';
+
+/** How one file of a drop is read, and where each of its columns stands among the drop's. */
+export interface FilePlan {
+  file: TextFile;
+  plan: ReadPlan;
+  /** By column of the plan: index into DropPlan.columns. */
+  columns: number[];
+}
+
+export interface DropPlan {
+  columns: ColumnMapping[];
+  stepMinutes: number;
+  files: FilePlan[];
+}
 
 export interface ImportPlan {
   preview: TrendPreview;
-  /** null while a person has to confirm the columns. */
-  plan: ReadPlan | null;
+  /** What is confirmed, by a person for this upload or remembered for its headings; null while a person has to say. */
+  confirmed: ConfirmMapping | null;
+  plan: DropPlan | null;
 }
 
 /**
- * Looks at the head of every file of an upload and decides how to read it: by the mapping confirmed for it, by one remembered
- * for its heading, or (plan null) not before a person has confirmed the suggestion.
+ * Looks at the head of every text file of an upload (and goes through the whole of those that have a row a reading) and decides
+ * how to read them: by the mapping confirmed for the upload, by those remembered for its headings, or (plan null) not before a
+ * person has confirmed the suggestion.
  *
- * Throws  TrendError, with a sentence for the person, when a file cannot be read at all.
+ * Throws  TrendError, with a sentence for the person, when no file can be read at all.
  */
-export async function planImport(upload: Upload, plant: Plant): Promise<ImportPlan> {
-  const preview = await previewFiles(upload, plant);
-  const answer = ConfirmMapping.safeParse(upload.confirmed ?? (await rememberedMapping(plant, preview.fingerprint)));
-  if (!answer.success) return { preview, plan: null };
-  const answered = new Map(answer.data.columns.map((column) => [column.column, column]));
-  return {
-    preview,
-    plan: {
-      dialect: preview.dialect,
-      timestamp: answer.data.timestamp,
-      timeZone: answer.data.timeZone,
-      stepMinutes: plant.stepMinutes,
-      columns: preview.columns.map(({ column }) => answered.get(column) ?? { column, role: IGNORE_ROLE, unit: null }),
-    },
-  };
-}
-
-/** The preview of the drop's first file, once every other file is known to share its heading. */
-async function previewFiles(upload: Upload, plant: Plant): Promise<TrendPreview> {
-  const hints = await previewHints(plant);
-  let first: { name: string; preview: TrendPreview } | null = null;
-  for (const [index, file] of upload.files.entries()) {
-    const head = (await readChunk(plant.organizationId, upload.id, index, 0)) ?? new Uint8Array();
-    const preview = inFile(upload.files.length > 1 ? file.name : null, () =>
-      previewTrend(head, { ...hints, complete: file.sizeBytes <= head.length }),
-    );
-    if (first && preview.fingerprint !== first.preview.fingerprint) {
-      throw new TrendError(
-        'unsupported',
-        `"${file.name}" has other headings than "${first.name}". The files of one drop must share their headings: drop these one at a time.`,
-      );
-    }
-    first ??= { name: file.name, preview };
+export async function planImport(upload: Upload, plant: Plant, signal: AbortSignal): Promise<ImportPlan> {
+  const files = namedApart(textFiles(upload));
+  const answer = ConfirmMapping.safeParse(upload.confirmed);
+  const stored = Preview.safeParse(upload.preview);
+  if (answer.success && stored.success) {
+    const preview = { ...(upload.preview as unknown as TrendPreview) };
+    return { preview, confirmed: answer.data, plan: dropPlan(preview, answer.data, files, plant.stepMinutes) };
   }
-  if (!first) throw new TrendError('empty', 'The upload holds no file. Choose a CSV file and send it again.');
-  return first.preview;
+  const fresh = await previewFiles(upload, plant, files, signal);
+  const { preview, confirmed } = await recallMappings(plant, fresh);
+  return { preview, confirmed, plan: confirmed && dropPlan(preview, confirmed, files, plant.stepMinutes) };
 }
 
-function inFile<Result>(name: string | null, read: () => Result): Result {
+/** Two files of one name in a drop are two files. */
+function namedApart(files: readonly TextFile[]): TextFile[] {
+  const taken = new Set<string>();
+  return files.map((file) => {
+    let { name } = file;
+    for (let n = 2; taken.has(name); n++) name = `${file.name} (${n})`;
+    taken.add(name);
+    return { ...file, name };
+  });
+}
+
+/** A confirmed mapping as a plan for each file: every file reads its table's columns under their own headings. */
+function dropPlan(
+  preview: TrendPreview,
+  confirmed: ConfirmMapping,
+  files: readonly TextFile[],
+  stepMinutes: number,
+): DropPlan {
+  const answered = new Map(confirmed.columns.map((column) => [column.column, column]));
+  const columns = preview.columns.map(
+    ({ column }): ColumnMapping => answered.get(column) ?? { column, role: IGNORE_ROLE, unit: null },
+  );
+  const place = new Map(columns.map(({ column }, index) => [column, index]));
+  const plans = preview.tables.flatMap((table, index) => {
+    const names = table.names.filter(({ column }) => place.has(column));
+    const own = names.map(({ column }) => place.get(column) as number);
+    const plan: ReadPlan = {
+      shape: table.shape,
+      dialect: table.dialect,
+      timestamp: timestampOf(preview, confirmed, table, index),
+      timeZone: confirmed.timeZone,
+      columns: names.map(({ cell }, i) => ({ ...(columns[own[i] as number] as ColumnMapping), column: cell })),
+      sourceStepMinutes: table.stepMinutes,
+      stepMinutes,
+    };
+    const held = new Set(table.files);
+    const mine = files.filter(({ name }) => held.has(name));
+    return mine.map((file): FilePlan => ({ file, plan, columns: own }));
+  });
+  return { columns, stepMinutes, files: plans.sort((a, b) => a.file.index - b.file.index) };
+}
+
+/**
+ * How a table's times are read: as said for it; where nothing other was said of it than suggested and the first table's were
+ * changed, as those of the first, if both looked alike.
+ */
+export function timestampOf(
+  preview: Pick<TrendPreview, 'timestamp'>,
+  confirmed: ConfirmMapping,
+  table: Pick<TablePreview, 'timestamp'>,
+  index: number,
+): TimestampPlan {
+  if (index === 0) return confirmed.timestamp;
+  const own = confirmed.tables?.[index]?.timestamp ?? table.timestamp;
+  const follows = same(own, table.timestamp) && !same(confirmed.timestamp, preview.timestamp);
+  const alike = table.timestamp.form === preview.timestamp.form;
+  return follows && alike ? { ...confirmed.timestamp, columns: own.columns } : own;
+}
+
+const same = (a: TimestampPlan, b: TimestampPlan): boolean => JSON.stringify(a) === JSON.stringify(b);
+
+async function previewFiles(
+  upload: Upload,
+  plant: Plant,
+  files: readonly TextFile[],
+  signal: AbortSignal,
+): Promise<TrendPreview> {
+  const hints = await previewHints(plant);
+  const heads: FileHead[] = [];
+  for (const file of files) {
+    signal.throwIfAborted();
+    const head = (await readChunk(plant.organizationId, upload.id, file.index, 0)) ?? new Uint8Array();
+    const complete = file.sizeBytes <= head.length;
+    const points = complete ? undefined : await pointsOf(upload, plant, file, head, hints, signal);
+    heads.push({ name: file.name, head, complete, points });
+  }
+  return previewDrop(heads, { ...hints, complete: false });
+}
+
+/** The points of a file that has a row a reading, from all of it; undefined for any other. */
+async function pointsOf(
+  upload: Upload,
+  plant: Plant,
+  file: TextFile,
+  head: Uint8Array,
+  hints: Omit<PreviewOptions, 'complete'>,
+  signal: AbortSignal,
+): Promise<ScannedPoint[] | undefined> {
+  const table = tableOf(head, hints);
+  if (table?.shape.kind !== 'long') return undefined;
+  const scan = new PointScan(table);
+  scan.push(head);
+  for (let seq = 1; ; seq++) {
+    signal.throwIfAborted();
+    const chunk = await readChunk(plant.organizationId, upload.id, file.index, seq);
+    if (!chunk) return scan.finish();
+    scan.push(chunk);
+    await new Promise((resolve) => setImmediate(resolve)); // lets the heartbeat through
+  }
+}
+
+function tableOf(head: Uint8Array, hints: Omit<PreviewOptions, 'complete'>) {
   try {
-    return read();
+    return recogniseFile(head, { ...hints, complete: false });
   } catch (error) {
-    if (error instanceof TrendError && name !== null)
-      throw new TrendError(error.code, `"${name}": ${error.message}`, error.row);
+    // The preview says of every file why it cannot be read.
+    if (error instanceof TrendError) return null;
     throw error;
   }
 }
 
-async function previewHints(plant: Plant) {
+async function previewHints(plant: Plant): Promise<Omit<PreviewOptions, 'complete'>> {
   const { organizationId, id: plantId, settingsRevision: revision } = plant;
   const stored = await withTenant({ organizationIds: [organizationId] }, (em) =>
     em.findOneOrFail(PlantSettingsEntity, { organizationId, plantId, revision }),
@@ -82,12 +186,4 @@ async function previewHints(plant: Plant) {
     productionSupplyF: model.productionSupplyF,
     plantStepMinutes: plant.stepMinutes,
   };
-}
-
-async function rememberedMapping(plant: Plant, fingerprint: string): Promise<unknown> {
-  const { organizationId, id: plantId } = plant;
-  const mapping = await withTenant({ organizationIds: [organizationId] }, (em) =>
-    em.findOne(MappingEntity, { organizationId, plantId, fingerprint }),
-  );
-  return mapping?.confirmed ?? null;
 }

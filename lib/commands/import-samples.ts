@@ -4,8 +4,9 @@ import { readLayers, writeLayers, type PointDay } from '../db/blocks';
 import { query } from '../db/sql';
 import { withTenant } from '../db/tenant';
 import { createTrendReader } from '../trends/reader';
-import type { DayOfColumn, ReadPlan, ReadReport, TrendProblem } from '../trends/types';
+import type { DayOfColumn, ReadReport, TrendProblem } from '../trends/types';
 import { ensurePoints } from './ensure-points';
+import type { DropPlan, FilePlan } from './import-plan';
 import { readChunk } from './import-source';
 
 /** Days kept open for rows that come out of order; what is older is written. Bounds the memory of a file of any length. */
@@ -22,12 +23,12 @@ export interface ImportResult {
 
 /**
  * Reads the files of an upload chunk by chunk and writes their days as the upload's own layers, in short transactions, each
- * fenced. What an earlier attempt left is taken out first. Nothing here counts until the upload is applied.
+ * fenced. The upload has no layers when it is called, and nothing here counts until the upload is applied.
  */
 export async function importSamples(
   upload: Upload,
   plant: Plant,
-  plan: ReadPlan,
+  plan: DropPlan,
   hooks: { signal: AbortSignal; fence: (em: EntityManager) => Promise<void> },
 ): Promise<ImportResult> {
   if (upload.uploadSeq == null) throw new Error(`importSamples: upload ${upload.id} has no sequence number`);
@@ -43,19 +44,12 @@ export async function importSamples(
       return work(em);
     });
 
-  const points = await inTenant(async (em) => {
-    await query(em, `delete from sample_layer where organization_id = $1 and plant_id = $2 and upload_seq = $3`, [
-      owner.organizationId,
-      owner.plantId,
-      owner.uploadSeq,
-    ]);
-    return ensurePoints(em, owner, plan.columns);
-  });
+  const points = await inTenant((em) => ensurePoints(em, owner, plan.columns));
 
   const written = new Set<string>();
-  const write = async (days: readonly DayOfColumn[], rowsRead: number, progress: number) => {
+  const write = async (file: FilePlan, days: readonly DayOfColumn[], rowsRead: number, progress: number) => {
     const incoming = days.flatMap((each): PointDay[] => {
-      const pointId = points[each.column];
+      const pointId = points[file.columns[each.column] ?? -1];
       return pointId ? [{ pointId, day: each.day, values: each.values }] : [];
     });
     await inTenant(async (em) => {
@@ -72,33 +66,33 @@ export async function importSamples(
   const reports: ReadReport[] = [];
   let bytesRead = 0;
   let rowsBefore = 0;
-  for (const [index] of upload.files.entries()) {
-    const reader = createTrendReader(plan);
+  // The share of the bytes that has been read; the last tenth is for what follows.
+  const totalBytes = plan.files.reduce((sum, { file }) => sum + file.sizeBytes, 0);
+  const progress = () => (0.9 * bytesRead) / Math.max(1, totalBytes);
+  for (const file of plan.files) {
+    const reader = createTrendReader(file.plan);
     for (let seq = 0; ; seq++) {
       hooks.signal.throwIfAborted();
-      const chunk = await readChunk(owner.organizationId, upload.id, index, seq);
+      const chunk = await readChunk(owner.organizationId, upload.id, file.file.index, seq);
       if (!chunk) break;
       reader.push(chunk);
       bytesRead += chunk.length;
-      // The share of the file that has been read; the last tenth is for what follows.
-      await write(
-        reader.takeOldestDays(OPEN_DAYS),
-        rowsBefore + reader.report().rowsRead,
-        (0.9 * bytesRead) / Math.max(1, upload.sizeBytes),
-      );
+      await write(file, reader.takeOldestDays(OPEN_DAYS), rowsBefore + reader.report().rowsRead, progress());
       await new Promise((resolve) => setImmediate(resolve)); // lets the heartbeat through
     }
-    await write(
-      reader.finish(),
-      rowsBefore + reader.report().rowsRead,
-      (0.9 * bytesRead) / Math.max(1, upload.sizeBytes),
-    );
+    await write(file, reader.finish(), rowsBefore + reader.report().rowsRead, progress());
     const report = reader.report();
     rowsBefore += report.rowsRead;
-    reports.push(report);
+    reports.push(plan.files.length > 1 ? inFile(report, file.file.name) : report);
   }
   return { ...combineReports(reports), days: [...new Set([...written].map((key) => key.slice(0, 10)))].sort() };
 }
+
+/** Problems of a drop of several files say which file they are of. */
+const inFile = (report: ReadReport, name: string): ReadReport => ({
+  ...report,
+  problems: report.problems.map((problem) => ({ ...problem, message: `"${name}": ${problem.message}` })),
+});
 
 /** A day that comes in parts: what the earlier part held stays where the later part has nothing. */
 function mergeInto(incoming: readonly PointDay[], stored: readonly PointDay[]): void {

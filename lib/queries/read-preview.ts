@@ -21,8 +21,18 @@ export async function readPreview(
     [input.uploadId, input.organizationId],
   );
   if (!row) throw notFound('upload');
-  if (row.preview) return row.preview;
+  if (row.preview) return withTables(row.preview);
   throw problem(409, 'Not there yet', WHY_NOT[row.status]);
+}
+
+/** A preview from before drops had tables is one of a single wide table. */
+function withTables(preview: Omit<StoredPreview, 'tables'> & Partial<Pick<StoredPreview, 'tables'>>): StoredPreview {
+  if (preview.tables) return { ...preview, tables: preview.tables };
+  const { dialect, timestamp, fingerprint, stepMinutes, rows, firstRows, columns } = preview;
+  const names = columns.map(({ column }) => ({ cell: column, column }));
+  const shape = { kind: 'wide' as const };
+  const table = { files: [], shape, dialect, timestamp, fingerprint, names, stepMinutes, rows, firstRows };
+  return { ...preview, tables: [table] };
 }
 
 const STILL_READ = 'The file is still being looked at. Ask again in a moment.';

@@ -46,7 +46,46 @@ export type Upload = z.infer<typeof Upload>;
 
 const Role = z.enum([...POINT_ROLE_NAMES, IGNORE_ROLE] as const);
 const TrendUnit = z.enum(TREND_UNIT_IDS).nullable();
-export const TimestampPlan = z.object({ columns: z.array(z.string()).min(1).max(2), form: z.enum(TIMESTAMP_FORMS) });
+export const TimestampPlan = z.object({
+  columns: z.array(z.string()).min(1).max(2),
+  form: z.enum(TIMESTAMP_FORMS),
+  /** Year of the first row, for forms without one. */
+  year: z.number().int().min(1970).max(2199).nullable().optional(),
+  stamps: z.enum(['start', 'end']).optional(),
+  /** Added to every time: at most two days. */
+  shiftMinutes: z.number().min(-2880).max(2880).optional(),
+});
+const Dialect = z.object({
+  encoding: z.string(),
+  delimiter: z.string(),
+  decimal: z.string(),
+  headerRow: z.number().int(),
+  upperHeaderRow: z.number().int().nullable().optional(),
+  unitRow: z.number().int().nullable(),
+  firstDataRow: z.number().int(),
+});
+const TableShape = z.discriminatedUnion('kind', [
+  z.object({ kind: z.literal('wide'), status: z.string().nullable().optional() }),
+  z.object({
+    kind: z.literal('long'),
+    point: z.string(),
+    value: z.string(),
+    status: z.string().nullable(),
+    unit: z.string().nullable(),
+  }),
+]);
+/** One heading of a drop: the files that share it, how they are written, and what its columns go by in the drop. */
+export const PreviewTable = z.object({
+  files: z.array(z.string()),
+  shape: TableShape,
+  dialect: Dialect,
+  timestamp: TimestampPlan,
+  fingerprint: z.string(),
+  names: z.array(z.object({ cell: z.string(), column: z.string() })),
+  stepMinutes: z.number().nullable(),
+  rows: z.array(z.array(z.string())),
+  firstRows: z.number().int(),
+});
 
 export const PreviewColumn = z.object({
   column: z.string(),
@@ -58,16 +97,14 @@ export const PreviewColumn = z.object({
   samples: z.array(z.number().nullable()),
   low: z.number().nullable(),
   high: z.number().nullable(),
+  /** Index into tables. */
+  table: z.number().int().optional(),
+  /** Answered by an earlier file of this plant. */
+  known: z.boolean().optional(),
 });
 export const Preview = z.object({
-  dialect: z.object({
-    encoding: z.string(),
-    delimiter: z.string(),
-    decimal: z.string(),
-    headerRow: z.number().int(),
-    unitRow: z.number().int().nullable(),
-    firstDataRow: z.number().int(),
-  }),
+  tables: z.array(PreviewTable),
+  dialect: Dialect,
   timestamp: TimestampPlan,
   timeZone: z.string(),
   stepMinutes: z.number().nullable(),
@@ -92,6 +129,8 @@ export const ConfirmMapping = z.object({
       }),
     )
     .min(1),
+  /** How each table's times are read, in the preview's order; `timestamp` stands for those left out. */
+  tables: z.array(z.object({ timestamp: TimestampPlan })).optional(),
   remember: z.boolean().default(true),
 });
 export type ConfirmMapping = z.infer<typeof ConfirmMapping>;

@@ -115,7 +115,8 @@ describe('a mapping', () => {
       unit: 'degC',
       unitIndex: null,
     });
-    expect(row?.remembered).toEqual(row?.confirmed);
+    const { timestamp, timeZone, columns } = row?.confirmed as Record<string, unknown>;
+    expect(row?.remembered).toEqual({ timestamp, timeZone, columns });
   });
 
   it('is not remembered when nobody asks for it', async () => {
@@ -176,7 +177,16 @@ describe('a mapping', () => {
     expect((await stored())?.jobs).toBe(1);
   });
 
-  it.each(['importing', 'done', 'failed', 'receiving'])('of an upload that is %s is a 409', async (status) => {
+  it.each(['done', 'failed'])('of an upload that is %s is changed: the stored file is read again', async (status) => {
+    uploadId = await insertUpload(status, 'heading-y');
+    await scene.api.owner.query(`update upload set applied = status = 'done' where id = $1`, [uploadId]);
+    expect((await confirm(withColumn(2, { role: 'secondaryFlow' }))).status).toBe(202);
+    const row = await stored();
+    expect(row).toMatchObject({ status: 'received', applied: false, jobs: 1 });
+    expect(row?.confirmed?.columns[2]).toMatchObject({ role: 'secondaryFlow' });
+  });
+
+  it.each(['importing', 'analysing', 'receiving'])('of an upload that is %s is a 409', async (status) => {
     uploadId = await insertUpload(status, 'heading-x');
     expect((await confirm(suggestion())).status).toBe(409);
   });

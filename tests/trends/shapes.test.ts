@@ -111,7 +111,7 @@ describe('a row a reading', () => {
       expect.objectContaining({
         code: 'unmapped-point',
         count: ROWS,
-        message: expect.stringContaining('"CHW Sec Flow (gpm)"'),
+        message: expect.stringContaining('"CHW Sec Flow (gpm)"') as string,
       }),
     );
     expect(samplesOf(read, 0)).toEqual(reference.get(NAMES[0]!));
@@ -255,7 +255,7 @@ describe('several files in one drop', () => {
       expect.objectContaining({
         code: 'file-left-out',
         severity: 'error',
-        message: expect.stringContaining('"readme.txt"'),
+        message: expect.stringContaining('"readme.txt"') as string,
       }),
     );
   });
