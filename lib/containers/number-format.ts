@@ -1,5 +1,6 @@
-/** What a cell's number stands for. `elapsed` counts hours beyond a day. */
-export type NumberKind = 'number' | 'datetime' | 'time' | 'elapsed';
+/** What a cell's number stands for: `date` shows no time of day, `time` no date, `elapsed` counts hours beyond a day. */
+export type NumberKind = 'number' | 'percent' | 'datetime' | 'date' | 'time' | 'elapsed';
+export type TimeKind = Exclude<NumberKind, 'number' | 'percent'>;
 
 const range = (from: number, to: number): number[] => Array.from({ length: to - from + 1 }, (_, i) => from + i);
 /**
@@ -8,7 +9,10 @@ const range = (from: number, to: number): number[] => Array.from({ length: to - 
  * Source  ECMA-376 part 1, 18.8.30, including the East Asian formats.
  */
 const BUILT_IN: ReadonlyMap<number, NumberKind> = new Map<number, NumberKind>([
-  ...[...range(14, 17), 22, ...range(27, 31), 36, ...range(50, 54), 57, 58].map((id) => [id, 'datetime'] as const),
+  [9, 'percent'],
+  [10, 'percent'],
+  ...[...range(14, 17), ...range(27, 31), 36, ...range(50, 54), 57, 58].map((id) => [id, 'date'] as const),
+  [22, 'datetime'],
   ...[...range(18, 21), ...range(32, 35), 45, 47, 55, 56].map((id) => [id, 'time'] as const),
   [46, 'elapsed'],
 ]);
@@ -28,7 +32,9 @@ function kindOfCode(code: string): NumberKind {
   if (/\[(h+|m+|s+)\]/.test(letters)) return 'elapsed';
   // Colours, conditions and languages.
   const plain = letters.replace(/\[[^\]]*\]/g, '').replace(/am\/pm|a\/p/g, 'h');
-  if (/[yd]/.test(plain)) return 'datetime';
-  if (/[hs]/.test(plain)) return 'time';
-  return /m/.test(plain) ? 'datetime' : 'number';
+  if (plain.includes('%')) return 'percent';
+  const clock = /[hs]/.test(plain);
+  if (/[yd]/.test(plain)) return clock ? 'datetime' : 'date';
+  if (clock) return 'time';
+  return plain.includes('m') ? 'date' : 'number';
 }

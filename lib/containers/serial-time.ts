@@ -1,4 +1,4 @@
-import type { NumberKind } from './number-format';
+import type { TimeKind } from './number-format';
 
 const DAY_SECONDS = 86_400;
 /** Serial number of 1970-01-01 in either system. */
@@ -19,19 +19,21 @@ export class SerialTimes {
   constructor(private readonly since1904: boolean) {}
 
   /**
-   * A spreadsheet's serial time as `YYYY-MM-DD HH:MM:SS`, or `HH:MM:SS` when it has no day; null when it is outside what the
-   * spreadsheet itself can show, and then the number has to stand as it is.
+   * A spreadsheet's serial time as `YYYY-MM-DD HH:MM:SS`, or `HH:MM:SS` when it has no day, or `YYYY-MM-DD` when it is a
+   * whole day shown as a date: a clock may stand in the column beside it. Null when it is outside what the spreadsheet itself
+   * can show, and then the number has to stand as it is.
    *
    * Units  days since 1900 or 1904, local time; rounded to the nearest second.
    */
-  text(serial: number, kind: Exclude<NumberKind, 'number'>): string | null {
+  text(serial: number, kind: TimeKind): string | null {
     if (!(serial >= 0 && serial < END_OF_TIME)) return null;
     const seconds = Math.round(serial * DAY_SECONDS);
     if (kind === 'elapsed') return clock(seconds);
     const day = Math.floor(seconds / DAY_SECONDS);
     // A time format over a whole date hides the date; it is there all the same. A serial under 1 has none to show.
     if (serial < 1) return clock(seconds);
-    return `${this.dateOf(day)} ${clock(seconds - day * DAY_SECONDS)}`;
+    const ofDay = seconds - day * DAY_SECONDS;
+    return kind === 'date' && ofDay === 0 ? this.dateOf(day) : `${this.dateOf(day)} ${clock(ofDay)}`;
   }
 
   private dateOf(day: number): string {

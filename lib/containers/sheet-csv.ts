@@ -16,7 +16,8 @@ const PLAIN_NUMBER = /^-?\d[\d.]{0,14}$/;
  * A worksheet's XML as comma-separated text (RFC 4180, UTF-8, line feeds): an empty line for an empty row, empty cells up to the
  * widest row so far, so that every row below the heading is as wide as the heading.
  *
- * Shapes  times `YYYY-MM-DD HH:MM:SS` local, `HH:MM:SS` without a day; numbers unrounded in their shortest decimal form; TRUE and
+ * Shapes  times `YYYY-MM-DD HH:MM:SS` local, `HH:MM:SS` without a day, `YYYY-MM-DD` for a whole day shown as a date; percentages
+ *         with their sign; other numbers unrounded in their shortest decimal form; TRUE and
  *         FALSE; errors as shown (#N/A); formulas by the value that was kept with them.
  * Gaps    a cell without a value is empty.
  * Throws  TrendError `unsupported`, in words that name `label`, for damage and cells outside a sheet; what `write` throws.
@@ -164,8 +165,10 @@ class SheetText {
     if (kind === 'number' && PLAIN_NUMBER.test(this.value)) return this.value;
     const number = Number(this.value);
     if (Number.isNaN(number)) return this.value;
-    const time = kind === 'number' ? null : this.times.text(number, kind);
-    return time ?? String(number);
+    if (kind === 'number') return String(number);
+    // Kept as a fraction and shown as a percentage: the sign says which of the two the text is.
+    if (kind === 'percent') return `${Number((number * 100).toPrecision(15))}%`;
+    return this.times.text(number, kind) ?? String(number);
   }
 
   private damaged(what: string): TrendError {

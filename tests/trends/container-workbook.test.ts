@@ -57,7 +57,7 @@ describe('a workbook', () => {
         const sheet = book.addWorksheet('Trend');
         sheet.addRow(['Time', 'Clock']);
         for (const [stamp, format] of [
-          ['2026-01-01T00:00:00', 'yyyy-mm-dd'],
+          ['2026-01-01T00:00:00', 'yyyy-mm-dd hh:mm'],
           ['2025-12-31T23:59:59.600', 'm/d/yy h:mm'],
           ['2024-02-29T12:34:56', '[$-409]d-mmm-yyyy h:mm:ss AM/PM'],
           ['2026-03-08T02:15:00', '"am" dd.mm.yyyy\\, hh:mm'],
@@ -107,6 +107,24 @@ describe('a workbook', () => {
         '1e+21,5e-7',
         '',
       ].join('\n'),
+    );
+  });
+
+  it('keeps a date beside a clock as a date, a moment shown as a date whole, and percentages with their sign', async () => {
+    const text = await only(
+      await written((book) => {
+        const sheet = book.addWorksheet('Trend');
+        sheet.addRow(['Date', 'Clock', 'Load']);
+        sheet.addRow([at('2026-01-01T00:00:00'), 0, 0.07]);
+        sheet.addRow([at('2026-01-01T00:00:00'), 0.25, 1]);
+        sheet.addRow([at('2026-01-01T09:30:00'), 0.5, 0.123456]);
+        sheet.getColumn(1).numFmt = 'm/d/yyyy';
+        sheet.getColumn(2).numFmt = 'h:mm AM/PM';
+        sheet.getColumn(3).numFmt = '0%';
+      }),
+    );
+    expect(text).toBe(
+      'Date,Clock,Load\n2026-01-01,00:00:00,7%\n2026-01-01,06:00:00,100%\n2026-01-01 09:30:00,12:00:00,12.3456%\n',
     );
   });
 
@@ -197,7 +215,8 @@ describe('a workbook that is refused in words', () => {
 describe('number formats and serial times', () => {
   it.each([
     [0, undefined, 'number'],
-    [14, undefined, 'datetime'],
+    [10, undefined, 'percent'],
+    [14, undefined, 'date'],
     [22, undefined, 'datetime'],
     [20, undefined, 'time'],
     [46, undefined, 'elapsed'],
@@ -207,13 +226,15 @@ describe('number formats and serial times', () => {
     [164, '0.0\\ \\d', 'number'],
     [164, '[Red]0.0;[Blue]-0.0', 'number'],
     [164, '_-* #,##0.00_-;-* #,##0.00_-', 'number'],
-    [164, 'mmm-yy', 'datetime'],
-    [164, 'mmmm', 'datetime'],
+    [164, 'mmm-yy', 'date'],
+    [164, 'mmmm', 'date'],
     [164, 'mm:ss.0', 'time'],
     [164, 'h:mm AM/PM', 'time'],
     [164, '[h]:mm', 'elapsed'],
+    [164, '0.0%', 'percent'],
+    [164, '0.0" %"', 'number'],
     [164, 'yyyy\\-mm\\-dd\\Thh:mm:ss', 'datetime'],
-  ] as const)('format %i %s is a %s', (id, code, kind) => {
+  ] as const)('format %i %s is %s', (id, code, kind) => {
     expect(numberKind(id, code)).toBe(kind);
   });
 
