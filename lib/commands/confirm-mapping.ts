@@ -32,7 +32,7 @@ export async function confirmMapping(
   upload: { id: string; organizationId: string; plantId: string; status: string },
   mapping: ConfirmMapping,
 ): Promise<void> {
-  const { organizationId, plantId } = upload;
+  const { organizationId } = upload;
   if (!MAPPABLE.has(upload.status)) throw notWaiting(upload.status as UploadStatus);
   const preview = await readPreview(em, { organizationId, uploadId: upload.id });
   const confirmed = withDefaults(mapping);
