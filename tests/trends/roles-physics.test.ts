@@ -189,6 +189,45 @@ describe('units that nothing names', () => {
     expect(found.reason).toMatch(/kW a ton, which no machine does: check the unit/);
   });
 
+  test.each([
+    ['L/s', 1 / 15.8503],
+    ['m3/h', 1 / 4.4029],
+  ])('a unit’s flow and the plant’s are told to be in %s by the design flow of a unit', (label, factor) => {
+    const found = suggested({
+      'Pri CHWS T (°C)': (m) => (m.supplyF - 32) / 1.8,
+      'CH-1 Flow': (m) => m.units[0]!.flowGpm * factor,
+      'Pri CHW Flow': (m) => m.primaryGpm * factor,
+      'Sec CHW Flow': (m) => m.secondaryGpm * factor,
+    });
+    for (const name of ['CH-1 Flow', 'Pri CHW Flow', 'Sec CHW Flow']) {
+      expect(found[name]!.unit).toBe(label);
+      expect(found[name]!.confidence, found[name]!.reason).toBeGreaterThan(0.5);
+    }
+  });
+
+  test('power is told to be in kW or W by the size of a unit, and left open where that is not known', () => {
+    const columns: Columns = { 'CH-1 Power': unit(1, 'powerKw'), 'CH-2 Power': (m) => 1000 * m.units[1]!.powerKw };
+    const found = suggested(columns);
+    expect([found['CH-1 Power']!.unit, found['CH-2 Power']!.unit]).toEqual(['kW', 'W']);
+    const open = suggested({ 'CH-1 Power': unit(1, 'powerKw') }, { unitFlowGpm: undefined })['CH-1 Power']!;
+    expect(open.confidence).toBeLessThan(0.5);
+  });
+
+  test('a pressure difference of a metric file is in kPa, and of another is left open', () => {
+    const metric = suggested({ 'Pri CHWS T (°C)': (m) => (m.supplyF - 32) / 1.8, 'CHW DP': () => 110 })['CHW DP']!;
+    expect(metric.unit).toBe('kPa');
+    expect(metric.confidence).toBeGreaterThan(0.5);
+    expect(suggested({ 'Pri CHWS T (°F)': (m) => m.supplyF, 'CHW DP': () => 14 })['CHW DP']!.confidence).toBeLessThan(
+      0.5,
+    );
+  });
+
+  test('a named unit in which the water would be ice is a question', () => {
+    const found = suggested({ 'Pri CHWS T (°F)': (m) => (m.supplyF - 32) / 1.8 })['Pri CHWS T (°F)']!;
+    expect(found.confidence).toBeLessThan(0.5);
+    expect(found.reason).toContain('is no chilled water: check the unit');
+  });
+
   test('load from 0 to 1 is a fraction, from 0 to 100 a percentage', () => {
     const found = suggested({ 'CH-1 Load': (m) => m.units[0]!.loadPercent / 100, 'CH-2 Load': unit(2, 'loadPercent') });
     expect([found['CH-1 Load']!.unit, found['CH-2 Load']!.unit]).toEqual(['fraction', '%']);

@@ -1,6 +1,7 @@
 import { TREND_UNITS, type Quantity, type TrendUnitId } from '../../units';
 import type { PreviewOptions } from '../types';
 import { JUST_OPEN, says, type Draft } from './draft';
+import { stepSize } from './statistics';
 
 /** Chilled water between freezing point and coil outlet, in each unit; the three ranges do not meet. */
 const CHILLED_RANGE: readonly (readonly [unit: TrendUnitId, low: number, high: number])[] = [
@@ -10,6 +11,16 @@ const CHILLED_RANGE: readonly (readonly [unit: TrendUnitId, low: number, high: n
 ];
 /** A flow fits a unit when its largest value is within this factor of the plant's design flow, or of one unit's. */
 const FLOW_FACTOR = 2.5;
+/** The same for the flow of a single unit: the factors between the units are larger than its square, but for gpm and m3/h. */
+const UNIT_FLOW_FACTOR = 1.8;
+/** A step this near to one unit's design flow is a unit's. */
+const STEP_SHARE = 0.2;
+/** kW that a unit takes at design by its flow: 10 F, 24 gpm F a ton, 0.65 kW a ton. Common practice, no source. */
+const DESIGN_KW_PER_GPM = (10 / 24) * 0.65;
+/** Power within this factor of the design's is in that unit; between W and kW lies 1000. */
+const POWER_FACTOR = 8;
+/** Pressure differences of chilled water in kPa; in psi they are smaller. */
+const KPA_RANGE: readonly [low: number, high: number] = [20, 600];
 /** Power beyond this many kW is more likely in W. */
 const MOST_PLANT_KW = 20_000;
 
@@ -67,10 +78,20 @@ export function unitByValues(draft: Draft, hint: TrendUnitId | null, options: Pr
     return set(fraction ? 'fraction' : '%', 'values', fraction ? 'runs from 0 to 1' : '');
   }
   if (quantity === 'power') {
-    const watts = statistics.high > MOST_PLANT_KW;
     if (draft.name.kilowatts) return set('kW', 'named', '');
+    const watts = statistics.high > MOST_PLANT_KW;
+    const designKw = (options.unitFlowGpm ?? 0) * DESIGN_KW_PER_GPM;
+    if (designKw > 0 && !says(draft, 'pump')) {
+      const fits = (kilowatts: number) =>
+        kilowatts > designKw / POWER_FACTOR && kilowatts < designKw * POWER_FACTOR * options.unitCount;
+      if (fits(statistics.high)) return set('kW', 'values', 'kW by the design flow');
+      if (fits(statistics.high / 1000)) return set('W', 'values', 'W by the design flow');
+    }
     return set(watts ? 'W' : 'kW', 'open', 'no unit is named: kW or W');
   }
+  const metric = hint === 'degC' || hint === 'K';
+  if (metric && statistics.median >= KPA_RANGE[0] && statistics.median <= KPA_RANGE[1])
+    return set('kPa', 'values', 'kPa by its values, as the temperatures are metric');
   const range = `between ${number(statistics.low)} and ${number(statistics.high)}`;
   return set('psi', 'open', `${range}: could be psi, ft or kPa; choose the unit`);
 }
@@ -105,10 +126,25 @@ function flowUnit(draft: Draft, hint: TrendUnitId | null, options: PreviewOption
   const one = options.unitFlowGpm;
   const metric = hint === 'degC' || hint === 'K';
   if (!one || most === 0) return set(metric ? 'L/s' : 'gpm', 'open', 'no unit is named');
-  const fits = (['gpm', 'L/s', 'm3/h'] as const).filter((unit) => {
+  // A unit's own flow stays near its design; the plant's goes from one unit's to all of them.
+  const ofUnit = says(draft, 'chiller', 'evaporator');
+  const [least, largest] = ofUnit
+    ? [one / UNIT_FLOW_FACTOR, one * UNIT_FLOW_FACTOR]
+    : [one / FLOW_FACTOR, one * options.unitCount * FLOW_FACTOR];
+  const fits = (['gpm', 'L/s', 'm3/h', 'L/min'] as const).filter((unit) => {
     const mostGpm = TREND_UNITS[unit].toStored(most);
-    return mostGpm >= one / FLOW_FACTOR && mostGpm <= one * options.unitCount * FLOW_FACTOR;
+    return mostGpm >= least && mostGpm <= largest;
   });
+  const stepping = fits.filter((unit) => {
+    const oneUnit = one / TREND_UNITS[unit].toStored(1);
+    return Math.abs(stepSize(draft.statistics.values, oneUnit) - oneUnit) < oneUnit * STEP_SHARE;
+  });
+  if (fits.length > 1 && stepping.length === 1)
+    return set(
+      stepping[0]!,
+      'values',
+      `${TREND_UNITS[stepping[0]!].label} by its steps, each of one unit’s design flow`,
+    );
   // Metric temperatures go with metric flows.
   const likely = fits.filter((unit) => metric === (unit !== 'gpm'));
   const unit = likely[0] ?? fits[0] ?? 'gpm';
@@ -123,6 +159,18 @@ export function checkUnit(draft: Draft): string | null {
   return medianF < -60 || medianF > 250
     ? `half of its values are beyond ${number(draft.statistics.median)} ${TREND_UNITS[draft.unit].label}`
     : null;
+}
+
+/** Water that moves in a plant, glycol and stopped machines included, in F. */
+const WATER_F: readonly [low: number, high: number] = [20, 110];
+
+/** A named unit in which half of a water temperature's values would be ice or bath water. */
+export function checkWater(draft: Draft): string | null {
+  if (draft.unit === null || draft.statistics.count === 0) return null;
+  const medianF = TREND_UNITS[draft.unit].toStored(draft.statistics.median);
+  if (medianF >= WATER_F[0] && medianF <= WATER_F[1]) return null;
+  const label = TREND_UNITS[draft.unit].label;
+  return `its median of ${number(draft.statistics.median)} ${label} is no chilled water: check the unit`;
 }
 
 /** Confidence for a role whose unit is open. */

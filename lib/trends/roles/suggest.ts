@@ -7,7 +7,7 @@ import { roleByValues } from './by-values';
 import { weighTogether } from './context';
 import { doubt, JUST_OPEN, says, type Draft } from './draft';
 import { NUMBERED, piecesOf, readName, sharedPrefix } from './names';
-import { checkUnit, OPEN_UNIT_CONFIDENCE, quantityOf, unitByValues } from './quantity';
+import { checkUnit, checkWater, OPEN_UNIT_CONFIDENCE, quantityOf, unitByValues } from './quantity';
 import { refusal } from './refusals';
 import type { ColumnStatistics } from './statistics';
 
@@ -141,6 +141,8 @@ function matchUnit(draft: Draft, role: PointRoleName): void {
   if (draft.unitFrom === 'open') draft.unitOpen = true;
   const impossible = checkUnit(draft);
   if (impossible) doubt(draft, JUST_OPEN, impossible);
+  const ice = quantity === 'temperature' && !role.startsWith('outdoor') ? checkWater(draft) : null;
+  if (ice && !impossible) doubt(draft, JUST_OPEN, ice);
   if (draft.heading.text !== '' && draft.heading.unit === null)
     doubt(draft, JUST_OPEN, `the unit "${draft.heading.text}" is not known; choose one`);
   if (draft.statistics.words > 0) draft.confidence -= SOME_WORDS_MISSING;
