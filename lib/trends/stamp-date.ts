@@ -5,6 +5,9 @@ import type { TimestampForm } from './types';
 
 const DAYS_IN_MONTH = [31, 29, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31] as const;
 
+/** The nearest of the years is never farther than half of one. */
+const FARTHEST_MS = 184 * DAY_MS;
+
 const isLeapYear = (year: number): boolean => year % 4 === 0 && (year % 100 !== 0 || year % 400 === 0);
 
 /** Day of the week of a day counted from 1970-01-01, a Thursday: 0 = Sunday. */
@@ -204,6 +207,8 @@ export class DateScanner extends ClockScanner {
       bestMs = ms;
     }
     if (Number.isNaN(bestMs)) return false;
+    // 29 February that exists only in a far year: the first row's year is wrong.
+    if (!isFirst && this.weekday === -1 && Math.abs(bestMs - this.heldMs) > FARTHEST_MS) return false;
     this.dateMs = bestMs;
     return this.remember(key, month, day, isNamed);
   }

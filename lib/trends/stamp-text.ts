@@ -2,7 +2,7 @@ import type { TimestampForm } from './types';
 
 const two = (value: number) => String(value).padStart(2, '0');
 
-/** A wall time (counted as if it were UTC) as the file itself writes it, for sentences: `07/24/2026 03:10`. */
+/** A wall time (counted as if it were UTC) as the file itself writes it, for sentences: `07/24/2026 03:10`; always with its year. */
 export function stampText(localMs: number, form: TimestampForm): string {
   return `${dateText(localMs, form)} ${clockText(localMs)}`;
 }
@@ -10,8 +10,8 @@ export function stampText(localMs: number, form: TimestampForm): string {
 function dateText(localMs: number, form: TimestampForm): string {
   const date = new Date(localMs);
   const [year, month, day] = [date.getUTCFullYear(), two(date.getUTCMonth() + 1), two(date.getUTCDate())];
-  if (form === 'month/day/year') return `${month}/${day}/${year}`;
-  return form === 'day/month/year' ? `${day}/${month}/${year}` : `${year}-${month}-${day}`;
+  if (form.startsWith('month')) return `${month}/${day}/${year}`;
+  return form.startsWith('day') ? `${day}/${month}/${year}` : `${year}-${month}-${day}`;
 }
 
 /** `03:10`, with seconds only where there are any. */

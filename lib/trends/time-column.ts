@@ -57,14 +57,14 @@ export function findTime(
   const columns = names.map((name, index) => ({ name, index, texts: data.map(({ cells }) => cells[index] ?? '') }));
   const clocks = columns.filter(({ texts }) => shareOf(texts, (text) => CLOCK_ALONE.test(text.trim())) >= TIME_SHARE);
   const candidates = candidatesOf(columns, clocks.length > 0, context);
-  const best = candidates[0];
+  const best = candidates[0] ?? dayNumbers(columns, clocks, context);
   if (!best) {
     const clockNames = clocks.map(({ name }) => name);
     throw noTime(columns, clockNames);
   }
   const clock = best.reading.hasTime ? undefined : nearest(clocks, best.index);
   const cells = clock ? [best.index, clock.index] : [best.index];
-  const joined = clock ? best.texts.map((text, i) => `${text} ${clock.texts[i] ?? ''}`) : null;
+  const joined = clock ? joinedTexts(best, clock) : null;
   const reading = (joined && bestReading(joined, best.name, context)) ?? best.reading;
   const plan: TimestampPlan = { columns: cells.map((cell) => names[cell]!), form: reading.form };
   if (reading.year !== null) plan.year = reading.year;
@@ -78,6 +78,20 @@ export function findTime(
   const others = candidates.map(({ index }) => index).filter((index) => !cells.includes(index));
   return { plan, doubts, cells, others };
 }
+
+/** A column with a spreadsheet's number of one day all along, which is a time only together with the clock beside it. */
+function dayNumbers(columns: readonly Column[], clocks: readonly Column[], context: TimeContext): Candidate | null {
+  for (const column of columns) {
+    const clock = nearest(clocks, column.index);
+    if (!clock || clocks.includes(column) || !TIME_WORDS.test(column.name)) continue;
+    const reading = bestReading(joinedTexts(column, clock), column.name, context);
+    if (reading?.form === 'spreadsheet-serial') return { ...column, reading: { ...reading, hasTime: false } };
+  }
+  return null;
+}
+
+const joinedTexts = (date: Column, clock: Column): string[] =>
+  date.texts.map((text, i) => `${text} ${clock.texts[i] ?? ''}`);
 
 /** Columns that hold times, the likeliest first. */
 function candidatesOf(columns: readonly Column[], hasClock: boolean, context: TimeContext): Candidate[] {
