@@ -154,7 +154,7 @@ export const TREND_UNITS: Readonly<Record<TrendUnitId, TrendUnit>> = {
     id: 'L/min',
     quantity: 'flow',
     label: 'L/min',
-    spellings: ['l/min', 'lpm', 'l/mn', 'liters-per-minute', 'litres per minute'],
+    spellings: ['l/min', 'lpm', 'l/mn', 'liters-per-minute', 'litres per minute', 'liters/min', 'litres/min'],
     toStored: (value) => gpmFromLitresPerSecond(value / 60),
   },
   kW: {

@@ -1,6 +1,10 @@
 import fc from 'fast-check';
 import Papa from 'papaparse';
 import { describe, expect, test } from 'vitest';
+import { existsSync, readFileSync } from 'node:fs';
+import path from 'node:path';
+import { ProblemLog } from '@/lib/trends/problems';
+import { RowShape, splitSplicedRow } from '@/lib/trends/row-shape';
 import { lastRowEnd, linesOfRow, newlineOf, parseRows, RowCutter, wholeRows } from '@/lib/trends/rows';
 
 /** Rows and stray quotation marks of a text given in pieces, with blocks of a few characters. */
@@ -101,5 +105,109 @@ describe('line ends', () => {
       ['1', '2'],
     ]);
     expect(wholeRows('a,b\n1,2\n3,', ',', true)).toHaveLength(3);
+  });
+});
+
+describe('two records on one line', () => {
+  const isTime = (cell: string) =>
+    /^\d{4}-\d\d-\d\d \d\d:\d\d$/.test(cell) || /^\d\d\.\d\d\.\d{4} \d\d:\d\d$/.test(cell);
+  const one = ['2026-07-20 00:05', '44.1', '950'];
+  const two = ['2026-07-20 00:06', '44.2', '960'];
+
+  test.each<[string, string[], string[][] | null]>([
+    ['two whole ones are both read', [...one, ...two], [one, two]],
+    ['three are all read', [...one, ...two, ...one], [one, two, one]],
+    ['a torn one before a whole one is left out', [...one.slice(0, 2), ...two], [two]],
+    ['a whole one before a torn one is read', [...one, ...two.slice(0, 2)], [one]],
+    ['of two torn ones nothing is read', [...one.slice(0, 2), ...two.slice(0, 1)], []],
+    [
+      'a time behind what is left of a torn cell begins a record',
+      ['2026-07-20 00:05', `4#x${two[0]!}`, ...two.slice(1)],
+      [two],
+    ],
+    [
+      'digits before the time leave open where it begins',
+      ['2026-07-20 00:05', `44.1${two[0]!}`, ...two.slice(1)],
+      null,
+    ],
+    ['a row that is merely long is not spliced', [...one, '7', '8', '9'], null],
+    ['another form of time is a value', [...one, '20.07.2026 00:06', '1', '2'], null],
+    ['a row without a time is not spliced', ['x', ...two, '1', '2'], null],
+  ])('%s', (_, cells, records) => {
+    expect(splitSplicedRow(cells, 3, isTime)).toEqual(records);
+  });
+
+  test('rows that end with a delimiter keep their empty last cell', () => {
+    expect(splitSplicedRow([...one, ...two, ''], 4, isTime)).toEqual([
+      [...one, ''],
+      [...two, ''],
+    ]);
+  });
+
+  test('where the time is not the first cell, only exactly two records are told apart', () => {
+    const named = (record: string[]) => ['P1', ...record];
+    expect(splitSplicedRow([...named(one), ...named(two)], 4, isTime, 1)).toEqual([named(one), named(two)]);
+    expect(splitSplicedRow([...named(one).slice(0, 3), ...named(two)], 4, isTime, 1)).toBeNull();
+  });
+
+  test('records of any numbers, whole or torn at a cell, are told apart without a wrong one', () => {
+    const cell = fc.double({ min: -99, max: 999, noNaN: true }).map((value) => value.toFixed(1));
+    const record = fc
+      .tuple(fc.integer({ min: 10, max: 59 }), fc.array(cell, { minLength: 4, maxLength: 4 }))
+      .map(([minute, cells]) => [`2026-07-20 00:${minute}`, ...cells]);
+    fc.assert(
+      fc.property(
+        fc.array(fc.tuple(record, fc.integer({ min: 1, max: 5 })), { minLength: 2, maxLength: 4 }),
+        (records) => {
+          const line = records.flatMap(([cells, kept]) => cells.slice(0, kept));
+          const whole = records.flatMap(([cells, kept]) => (kept === 5 ? [cells] : []));
+          expect(splitSplicedRow(line, 5, isTime)).toEqual(whole);
+        },
+      ),
+    );
+  });
+
+  test('they are counted by what became of them, with the first row, and what was done', () => {
+    const problems = new ProblemLog();
+    const shape = new RowShape([one, two], 3, problems);
+    shape.unsplice([...one, ...two], 5, isTime);
+    shape.unsplice([...one.slice(0, 2), ...two], 7, isTime);
+    shape.unsplice([...one.slice(0, 2), ...two], 8, isTime);
+    expect(shape.unsplice(one, 9, isTime)).toBeNull();
+    expect(problems.list()).toMatchObject([
+      {
+        code: 'spliced-row',
+        row: 5,
+        count: 1,
+        message: 'Two records stand on one line: the end of the line between them was lost. Both were read.',
+      },
+      {
+        row: 7,
+        count: 2,
+        message:
+          'Two records stand on one line: the end of the line between them was lost. The whole one was read; what is left of the other was left out.',
+      },
+    ]);
+  });
+
+  test('rows with a second time of their own are never taken apart', () => {
+    const withEnd = ['2026-07-20 00:05', '2026-07-20 00:06', '44.1'];
+    const shape = new RowShape([withEnd, withEnd], 3, new ProblemLog());
+    expect(shape.unsplice([...withEnd, '7'], 5, isTime)).toBeNull();
+  });
+
+  // Open data beside the project; sources and licences are in shared/data/README.md.
+  const data = path.resolve(import.meta.dirname, '../../../shared/data/messy_csv/solar_logger');
+  test.each([
+    ['20170622.csv', 221, '22.06.2017 03:42'],
+    ['20180815.csv', 1194, '15.08.2018 19:54'],
+  ])('in a real logger’s %s, row %d still holds the whole record of %s', (name, row, time) => {
+    if (!existsSync(data)) return expect(existsSync(data)).toBe(false);
+    const lines = readFileSync(path.join(data, name), 'latin1').replaceAll('\0', '').split('\r\n');
+    const records = splitSplicedRow(lines[row - 1]!.split('\t'), 29, isTime);
+    expect(records).toHaveLength(1);
+    expect(records![0]).toHaveLength(29);
+    expect(records![0]!.slice(0, 1)).toEqual([time]);
+    expect(records![0]![26]).toBe(time.slice(11).replace(/^0/, ''));
   });
 });
