@@ -1,13 +1,13 @@
 import type { EntityManager } from '@mikro-orm/postgresql';
 import { queryOne } from '../db/sql';
 import { notFound, problem } from '../http/problem';
-import type { Preview, UploadStatus } from '../schemas/upload';
+import { ConfirmMapping, type Preview, type UploadStatus } from '../schemas/upload';
 
 /** A preview as the import job leaves it: what the API shows, and the heading's fingerprint. */
 export type StoredPreview = Preview & { fingerprint: string };
 
 /**
- * What was recognised in an upload and the suggestion for each of its columns.
+ * What was recognised in an upload, the suggestion for each of its columns and, once it has been read, how that was done.
  *
  * Throws  a 409 problem in words while there is none: the file is still on its way, or could not be read.
  */
@@ -15,13 +15,16 @@ export async function readPreview(
   em: EntityManager,
   input: { organizationId: string; uploadId: string },
 ): Promise<StoredPreview> {
-  const row = await queryOne<{ status: UploadStatus; preview: StoredPreview | null }>(
+  const row = await queryOne<{ status: UploadStatus; preview: StoredPreview | null; confirmed: unknown }>(
     em,
-    `select status, preview from upload where id = $1 and organization_id = $2 and removed_at is null`,
+    `select status, preview, confirmed from upload where id = $1 and organization_id = $2 and removed_at is null`,
     [input.uploadId, input.organizationId],
   );
   if (!row) throw notFound('upload');
-  if (row.preview) return withTables(row.preview);
+  if (row.preview) {
+    const { success, data: confirmed } = ConfirmMapping.safeParse(row.confirmed);
+    return { ...withTables(row.preview), ...(success ? { confirmed } : {}) };
+  }
   throw problem(409, 'Not there yet', WHY_NOT[row.status]);
 }
 

@@ -102,19 +102,7 @@ export const PreviewColumn = z.object({
   /** Answered by an earlier file of this plant. */
   known: z.boolean().optional(),
 });
-export const Preview = z.object({
-  tables: z.array(PreviewTable),
-  dialect: Dialect,
-  timestamp: TimestampPlan,
-  timeZone: z.string(),
-  stepMinutes: z.number().nullable(),
-  columns: z.array(PreviewColumn),
-  rows: z.array(z.array(z.string())),
-  firstRows: z.number().int(),
-  problems: z.array(UploadProblem),
-});
-export type Preview = z.infer<typeof Preview>;
-
+export type PreviewColumn = z.infer<typeof PreviewColumn>;
 /** The shape of a preview: keys a mapping does not need are ignored. */
 export const ConfirmMapping = z.object({
   timestamp: TimestampPlan,
@@ -134,3 +122,18 @@ export const ConfirmMapping = z.object({
   remember: z.boolean().default(true),
 });
 export type ConfirmMapping = z.infer<typeof ConfirmMapping>;
+
+export const Preview = z.object({
+  tables: z.array(PreviewTable),
+  dialect: Dialect,
+  timestamp: TimestampPlan,
+  timeZone: z.string(),
+  stepMinutes: z.number().nullable(),
+  columns: z.array(PreviewColumn),
+  rows: z.array(z.array(z.string())),
+  firstRows: z.number().int(),
+  problems: z.array(UploadProblem),
+  /** How the upload was read: what a person confirmed, or an earlier file's answers; absent until there is one. */
+  confirmed: ConfirmMapping.optional(),
+});
+export type Preview = z.infer<typeof Preview>;
