@@ -17,6 +17,11 @@ export class DayBuffer {
     this.values = new Float64Array(FIRST_ROWS * columns);
   }
 
+  /** Whether every row so far is later than the one before it. */
+  get isInOrder(): boolean {
+    return this.strictlyRising;
+  }
+
   /** Adds a row and returns where its first value belongs in `values`. */
   addRow(timeMs: number, row: number): number {
     if (this.count === this.rows.length) this.grow();
@@ -79,13 +84,18 @@ export interface DayTail {
 
 /** Works on a day that is not settled yet, too. Time is -Infinity where a column has no cell at all. */
 export function tailOf(day: DayBuffer): DayTail {
-  const timesMs = new Float64Array(day.columns).fill(Number.NEGATIVE_INFINITY);
-  const values = new Float64Array(day.columns).fill(Number.NaN);
-  const rows = new Uint32Array(day.columns);
-  for (let i = 0; i < day.count; i++) {
-    for (let c = 0; c < day.columns; c++) {
-      const value = day.values[i * day.columns + c]!;
-      if (value === BLANK || day.timesMs[i]! < timesMs[c]!) continue;
+  const { columns, count } = day;
+  const timesMs = new Float64Array(columns).fill(Number.NEGATIVE_INFINITY);
+  const values = new Float64Array(columns).fill(Number.NaN);
+  const rows = new Uint32Array(columns);
+  let missing = columns;
+  // From the end, so that a day in order is done after a few rows.
+  for (let i = count - 1; i >= 0 && (missing > 0 || !day.isInOrder); i--) {
+    for (let c = 0; c < columns; c++) {
+      const value = day.values[i * columns + c]!;
+      // Of rows at one time the later one counts, which is met first.
+      if (value === BLANK || day.timesMs[i]! <= timesMs[c]!) continue;
+      if (timesMs[c] === Number.NEGATIVE_INFINITY) missing--;
       timesMs[c] = day.timesMs[i]!;
       values[c] = value;
       rows[c] = day.rows[i]!;
