@@ -36,7 +36,7 @@ function byQuantity(draft: Draft, options: PreviewOptions): NamedRole | null {
     case 'flow':
       return flowRole(draft);
     case 'power':
-      return powerRole(draft);
+      return powerRole(draft, options);
     case 'status':
       return statusRole(draft, options);
     case 'percent':
@@ -156,7 +156,7 @@ function flowRole(draft: Draft): NamedRole | null {
     : null;
 }
 
-function powerRole(draft: Draft): NamedRole | null {
+function powerRole(draft: Draft, options: PreviewOptions): NamedRole | null {
   const secondaryPump = (says(draft, 'pump') && onSecondary(draft)) || draft.name.setpointOrPump !== null;
   if (secondaryPump || (onSecondary(draft) && !says(draft, 'chiller')))
     return role(
@@ -165,6 +165,8 @@ function powerRole(draft: Draft): NamedRole | null {
       ['secondary', 'pump', 'power'],
       pumpNote(draft),
     );
+  if (pumpSide(draft, options) === 'secondary')
+    return role('distributionPumpPower', LIKELY, ['pump', 'power'], 'a pump numbered beyond the units');
   if (says(draft, 'pump'))
     return role(
       'ignore',
@@ -253,7 +255,10 @@ export function unitIndexes(drafts: readonly Draft[], options: PreviewOptions): 
       const number = says(draft, concept) ? draft.name.index : concept === 'chiller' ? draft.name.looseNumber : null;
       return number === null || result.has(draft) ? [] : { draft, number };
     });
-    const numbers = numbered.filter(({ draft }) => draft.name.index !== null).map(({ number }) => number);
+    const said = numbered.filter(({ draft }) => draft.name.index !== null);
+    // Loose numbers are a guess: they count only where no chiller is numbered, and where they could be units.
+    const loose = numbered.filter(({ number }) => number <= options.unitCount);
+    const numbers = (said.length > 0 ? said : loose).map(({ number }) => number);
     const count = numberingOf(
       [...new Set(numbers)],
       concept === 'branch' ? Number.POSITIVE_INFINITY : options.unitCount,

@@ -15,7 +15,12 @@ const GUESSED = 0.42;
 
 /** Which flow is which: by the sum of the units, by steps with their states, by what is left; and the bypass as a difference. */
 export function weighFlows(drafts: readonly Draft[]): void {
-  for (const draft of drafts.filter(isOpenFlow)) settleFlow(draft, drafts);
+  for (const draft of drafts.filter(isOpenFlow)) {
+    // A column without a role has no unit, but is compared in the one it came in.
+    draft.unit ??= draft.unitGiven ?? 'gpm';
+    settleFlow(draft, drafts);
+    if (draft.role === 'ignore') draft.unit = null;
+  }
   for (const draft of drafts) {
     if (draft.role === 'primaryFlow' && says(draft, 'primary')) {
       const shown = showsPrimary(draft, drafts);
@@ -41,8 +46,6 @@ function settleFlow(draft: Draft, drafts: readonly Draft[]): void {
   const set = (role: Draft['role'], confidence: number, clause: string) => {
     draft.role = role;
     draft.confidence = named ? confidence : Math.min(confidence, GUESSED);
-    // A unit is kept even where it is only the likely one: the role needs one.
-    draft.unit ??= 'gpm';
     draft.shown.unshift(clause);
   };
   if (shown) return set('primaryFlow', TOLD, `${shown}: primary flow`);

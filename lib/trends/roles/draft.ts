@@ -18,6 +18,8 @@ export interface Draft {
   table: number;
   quantity: Quantity | null;
   unit: TrendUnitId | null;
+  /** The unit as heading or unit row name it, kept while `unit` is not. */
+  unitGiven: TrendUnitId | null;
   /** How sure the unit is: named somewhere, fitting the values, or open. */
   unitFrom: 'named' | 'values' | 'open';
   role: MappedRole;

@@ -75,6 +75,7 @@ function startDrafts(candidates: readonly Candidate[]): Draft[] {
       table: table ?? 0,
       quantity: null,
       unit,
+      unitGiven: unit,
       unitFrom: unit ? 'named' : 'open',
       role: 'ignore',
       unitIndex: null,
@@ -157,7 +158,8 @@ function placeUnit(draft: Draft, role: PointRoleName, unitIndex: number | null, 
   if (!indexed) return;
   draft.unitIndex = unitIndex;
   if (indexed === 'branch') return;
-  if (unitIndex === null) {
+  const oneAndLoose = options.unitCount === 1 && draft.name.index === null;
+  if (unitIndex === null || unitIndex < 1 || oneAndLoose) {
     draft.unitIndex = options.unitCount === 1 ? 1 : null;
     if (options.unitCount > 1) doubt(draft, JUST_OPEN, 'no unit number in the name: choose the unit');
   } else if (unitIndex > options.unitCount) {
