@@ -7,6 +7,7 @@ const MOST_NAMED = 3;
 export const SKIPPED = {
   system: 'left there by an operating system',
   name: 'by its name no trend log',
+  link: 'a link to another file',
   empty: 'empty',
   hidden: 'a hidden sheet',
   short: 'a sheet with fewer than two rows',

@@ -5,10 +5,12 @@ import { sizeInWords } from '../commands/upload-limit';
 const FREE_BYTES = 10 * 1024 * 1024;
 /** Trend text and workbook XML shrink to a fifth or a thirtieth; deflate itself can reach a thousandth. */
 const MOST_TIMES_LARGER = 200;
+const MOST_FILES = 2000;
 
 /** What one upload may become when its containers are unpacked; counted over all of them. */
 export class UnpackBudget {
   private inflatedBytes = 0;
+  private files = 0;
 
   constructor(
     readonly limitBytes: number,
@@ -26,6 +28,15 @@ export class UnpackBudget {
   addStored(bytes: number): void {
     this.storedBytes += bytes;
     if (this.storedBytes > this.limitBytes) throw this.tooLarge();
+  }
+
+  /** One more file that is written, kept or not. */
+  addFile(): void {
+    if (++this.files <= MOST_FILES) return;
+    throw new TrendError(
+      'unsupported',
+      `The upload has more than ${MOST_FILES.toLocaleString('en-US')} files once unpacked, the limit of one upload. Split it and send the parts one by one.`,
+    );
   }
 
   /** Gives back what was kept only for a while. */

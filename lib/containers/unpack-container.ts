@@ -35,8 +35,9 @@ interface Unpacking {
 const HEAD_BYTES = 64 * 1024;
 const GZIP = [0x1f, 0x8b];
 const SYSTEM_FILE = /(^|\/)(__MACOSX\/|\.DS_Store$|\._[^/]*$|Thumbs\.db$|desktop\.ini$)/i;
+/** Pictures, documents, programs, and the notes that come with an export. */
 const NO_TREND =
-  /\.(png|jpe?g|gif|bmp|webp|svg|ico|tiff?|heic|pdf|docx?|pptx?|rtf|html?|xml|json|exe|dll|bat|cmd|ps1|sh|py|js|jar|mp[34]|wav|avi|mov)$/i;
+  /(?:^|\/)(?:read[ _-]?me|licen[cs]e)(?:\.(?:txt|md))?$|\.(png|jpe?g|gif|bmp|webp|svg|ico|tiff?|heic|pdf|md|docx?|pptx?|rtf|html?|xml|json|exe|dll|bat|cmd|ps1|sh|py|js|jar|mp[34]|wav|avi|mov)$/i;
 
 /**
  * Unpacks a zip archive, or a workbook, into text files: each member of the archive that is text, gzip inside it unpacked; each
@@ -89,6 +90,7 @@ const innerName = (label: string, container: string): string =>
 function whySkipped(member: ZipMember): string | null {
   if (SYSTEM_FILE.test(member.path)) return SKIPPED.system;
   if (NO_TREND.test(member.path)) return SKIPPED.name;
+  if (member.isLink) return SKIPPED.link;
   return member.sizeBytes === 0 ? SKIPPED.empty : null;
 }
 
@@ -100,26 +102,35 @@ async function unpackMember(
   skipped: SkippedMembers,
 ): Promise<TrendProblem[]> {
   const { budget } = unpacking;
-  let { head, rest } = await withHead(archive.read(member, label, budget));
+  let { head, rest, close } = await withHead(archive.read(member, label, budget));
   if (GZIP.every((byte, i) => head[i] === byte)) {
     const packed = member.entry.compressedSize;
-    ({ head, rest } = await withHead(gunzipped(rest, label, packed, budget)));
+    ({ head, rest, close } = await withHead(gunzipped(rest, label, packed, budget)));
   }
   const name = unpacking.names.unique(label);
   if (isZip(head)) return unpackInner(unpacking, name, rest);
   const why = whyNoText(head);
   if (why !== null) {
     skipped.add(why, innerName(label, skipped.container));
-    await rest.return(undefined);
+    await close();
     return [];
   }
+  budget.addFile();
   await copy(rest, unpacking.sink.begin(name), budget);
   unpacking.kept++;
   return [];
 }
 
+interface Looked {
+  head: Buffer;
+  /** The whole stream, the head included. */
+  rest: AsyncGenerator<Buffer>;
+  /** Lets go of a stream that is not read. */
+  close: () => Promise<unknown>;
+}
+
 /** Looks at the first bytes of a stream without taking them out of it. */
-async function withHead(source: AsyncGenerator<Buffer>): Promise<{ head: Buffer; rest: AsyncGenerator<Buffer> }> {
+async function withHead(source: AsyncGenerator<Buffer>): Promise<Looked> {
   const parts: Buffer[] = [];
   let length = 0;
   while (length < HEAD_BYTES) {
@@ -136,7 +147,7 @@ async function withHead(source: AsyncGenerator<Buffer>): Promise<{ head: Buffer;
       await source.return(undefined);
     }
   }
-  return { head: Buffer.concat(parts), rest: whole() };
+  return { head: Buffer.concat(parts), rest: whole(), close: () => source.return(undefined) };
 }
 
 async function* gunzipped(
@@ -190,6 +201,7 @@ async function unpackInner(
   content: AsyncIterable<Buffer>,
 ): Promise<TrendProblem[]> {
   const { budget, sink } = unpacking;
+  budget.addFile();
   const writer = sink.begin(name);
   let size = 0;
   for await (const piece of content) {
@@ -225,6 +237,7 @@ async function unpackWorkbook(
       skipped.add(SKIPPED.hidden, sheet.name);
       continue;
     }
+    budget.addFile();
     const writer = sink.begin(label);
     let sheetBytes = 0;
     const { rows } = await sheetToCsv(label, parts, archive.read(sheet.member, label, budget), async (text) => {

@@ -1,4 +1,5 @@
 import { SaxesParser } from 'saxes';
+import { TextStream, type Encoding } from '../trends/encoding';
 import { TrendError } from '../trends/types';
 
 /** Longest stretch of XML without an element's start, end or text: a cell holds 32,767 characters at the most. */
@@ -52,30 +53,32 @@ export async function readXml(label: string, input: AsyncIterable<Uint8Array>, h
   parser.on('text', text);
   parser.on('cdata', text);
 
-  let decoder: TextDecoder | undefined;
+  let decoder: TextStream | undefined;
   const write = (piece: string) => {
     seen += piece.length;
     parser.write(piece);
     if (seen - lastEventAt > MOST_SILENT_CHARACTERS) throw damagedPart(label);
   };
   for await (const bytes of input) {
-    decoder ??= new TextDecoder(encodingOf(bytes));
-    write(decoder.decode(bytes, { stream: true }));
+    decoder ??= new TextStream(encodingOf(bytes));
+    write(decoder.decode(bytes));
     await handlers.piece?.();
   }
-  write(decoder?.decode() ?? '');
+  write(decoder?.end() ?? '');
   parser.close();
   await handlers.piece?.();
 }
 
 /** Workbook parts are UTF-8, or UTF-16 with a mark. */
-function encodingOf(head: Uint8Array): string {
+function encodingOf(head: Uint8Array): Encoding {
   if (head[0] === 0xff && head[1] === 0xfe) return 'utf-16le';
   if (head[0] === 0xfe && head[1] === 0xff) return 'utf-16be';
   return 'utf-8';
 }
 
 const localName = (name: string): string => {
+  // Cells and values, nearly all of a sheet.
+  if (name.length === 1) return name;
   const colon = name.indexOf(':');
   return colon < 0 ? name : name.slice(colon + 1);
 };

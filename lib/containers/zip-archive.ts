@@ -16,6 +16,7 @@ export interface ZipMember {
   /** As the archive has it; not yet safe to show. */
   path: string;
   isDirectory: boolean;
+  isLink: boolean;
   sizeBytes: number;
   entry: Entry;
 }
@@ -160,10 +161,15 @@ async function listMembers(zip: ZipFile): Promise<ZipMember[]> {
   const members: ZipMember[] = [];
   for await (const entry of zip.eachEntry()) {
     const path = entryName(entry);
-    members.push({ path, isDirectory: path.endsWith('/'), sizeBytes: entry.uncompressedSize, entry });
+    const isDirectory = path.endsWith('/');
+    members.push({ path, isDirectory, isLink: isLink(entry), sizeBytes: entry.uncompressedSize, entry });
   }
   return members;
 }
+
+/** A symbolic link, which only archives made on Unix-like systems have: its content is a path. */
+const isLink = (entry: Entry): boolean =>
+  entry.versionMadeBy >> 8 === 3 && ((entry.externalFileAttributes >>> 16) & 0xf000) === 0xa000;
 
 /** Members that share bytes make a small archive endless. */
 function refuseOverlap(name: string, members: readonly ZipMember[]): void {

@@ -139,7 +139,9 @@ describe('unpacking a received upload', () => {
     let writes = 0;
     await unpackUpload(
       undisturbed,
-      calm(async () => void writes++),
+      calm(async () => {
+        writes++;
+      }),
     );
     expect(writes).toBeGreaterThan(4);
 

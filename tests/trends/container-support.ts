@@ -1,4 +1,4 @@
-import { crc32 as builtInCrc32, deflateRawSync } from 'node:zlib';
+import { deflateRawSync } from 'node:zlib';
 import type { ChunkSource } from '@/lib/containers/chunked-bytes';
 import { crc32 } from '@/lib/containers/crc32';
 import { UnpackBudget } from '@/lib/containers/unpack-budget';
@@ -15,11 +15,11 @@ export interface ZipPart {
   crc?: number;
   /** What the archive says the size is. */
   size?: number;
+  /** Unix mode, such as 0o120777 of a link. */
+  mode?: number;
   /** Points at the bytes of an earlier part instead of having its own. */
   sameBytesAs?: number;
 }
-
-export const hasBuiltInCrc = typeof builtInCrc32 === 'function';
 
 /** A zip archive byte by byte, so that every field can be made wrong. */
 export function zipOf(parts: readonly ZipPart[], zip64 = false): Buffer {
@@ -57,10 +57,11 @@ export function zipOf(parts: readonly ZipPart[], zip64 = false): Buffer {
     }
     const entry = Buffer.alloc(46);
     entry.writeUInt32LE(0x02014b50, 0);
-    entry.writeUInt16LE(20, 4);
+    entry.writeUInt16LE(part.mode === undefined ? 20 : 0x0314, 4);
     common.copy(entry, 6);
     entry.writeUInt16LE(name.length, 28);
     entry.writeUInt16LE(extra.length, 30);
+    entry.writeUInt32LE((part.mode ?? 0) * 0x10000, 38);
     entry.writeUInt32LE(offset, 42);
     directory.push(entry, name, extra);
   }
