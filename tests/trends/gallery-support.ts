@@ -4,12 +4,19 @@ import { gunzipSync } from 'node:zlib';
 import type { Fixture } from '@/fixtures/trends/fixture';
 import type { PlantRecord } from '@/fixtures/trends/record';
 import { writtenUnit, type Dress } from '@/fixtures/trends/write-record';
-import { createTrendReader, previewDrop, type ReadPlan, type TrendPreview, type TrendProblem } from '@/lib/trends';
+import {
+  createTrendReader,
+  previewDrop,
+  type Dialect,
+  type ReadPlan,
+  type TrendPreview,
+  type TrendProblem,
+} from '@/lib/trends';
 import { TREND_UNITS } from '@/lib/units';
 import { unpack } from './container-support';
 import { OPTIONS } from './preview-support';
 
-const FOLDER = path.resolve(import.meta.dirname, '../../fixtures/trends/files');
+export const FOLDER = path.resolve(import.meta.dirname, '../../fixtures/trends/files');
 /** The fixtures' day of reading: dates without a year are of the one before it. */
 export const NOW_MS = Date.parse('2026-12-01T12:00Z');
 
@@ -129,4 +136,16 @@ export function decisions(preview: TrendPreview): string[] {
     ...columns.map(({ column, role, unit, confidence }) => `${column}: ${role} ${unit} ${confidence}`),
     ...asked.map(({ code }) => code),
   ];
+}
+
+/** The dialect in which a fixture is written. */
+export function dialectOf({ dress }: Fixture): Pick<Dialect, 'encoding' | 'delimiter' | 'decimal'> {
+  const { delimiter, decimal, encoding } = dress;
+  const names: Readonly<Record<string, Dialect['encoding']>> = {
+    'latin-1': 'windows-1252',
+    'windows-1252': 'windows-1252',
+  };
+  const utf16 = /^utf-16[lb]e/.exec(encoding)?.[0] as Dialect['encoding'] | undefined;
+  // Nothing in the bytes of plain ASCII tells its encoding, and UTF-8 it is.
+  return { encoding: names[encoding] ?? utf16 ?? 'utf-8', delimiter, decimal };
 }

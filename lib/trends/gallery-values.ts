@@ -1,0 +1,85 @@
+import type { ExportShape } from './gallery';
+
+export const VALUE_SHAPES: readonly ExportShape[] = [
+  { id: 'word-bad', shape: 'Bad', example: '07/20/2026 06:15,Bad,54.5' },
+  { id: 'word-nan', shape: 'NaN', example: '07/20/2026 06:15,NaN,54.5' },
+  { id: 'word-dashes', shape: 'Dashes', example: '07/20/2026 06:15,---,54.5' },
+  { id: 'word-not-available', shape: '#N/A', example: '07/20/2026 06:15,#N/A,54.5' },
+  { id: 'word-null', shape: 'null', example: '07/20/2026 06:15,null,54.5' },
+  { id: 'states-on-off', shape: 'On and off in words', example: '862,823,On,Off' },
+  { id: 'states-true-false', shape: 'True and false', example: '862,823,TRUE,FALSE' },
+  { id: 'states-running', shape: 'Running and stopped', example: '862,823,Running,Stopped' },
+  { id: 'glued-units', shape: 'Units behind the numbers', example: '43.9 °F,53.6 °F' },
+  { id: 'sentinel-9999', shape: '-9999 in place of a reading', example: '44.0,-9999,862' },
+  {
+    id: 'sentinel-888',
+    shape: '888.8 in place of a reading',
+    example: '44.0,888.8,44.0',
+    note: 'Other such numbers are found from the column.',
+  },
+  { id: 'zero-bytes', shape: 'Zero bytes left by a logger', example: '07/20/2026 07:00,44.0' },
+  {
+    id: 'spliced-lines',
+    shape: 'Two records on one line',
+    example: '07/20/2026 06:50,43.9,',
+    note: 'The whole one is read where that can be told.',
+  },
+  { id: 'short-rows', shape: 'Rows with too few cells', example: '07/20/2026 06:35,44.0,55.5', note: 'Left out.' },
+  { id: 'long-rows', shape: 'Rows with too many cells', example: '866,1053,54.1', note: 'Left out.' },
+  { id: 'duplicate-rows', shape: 'The same row twice', example: '07/20/2026 06:25,44.0' },
+  {
+    id: 'duplicate-times',
+    shape: 'The same time twice, each with a part of the readings',
+    example: '07/20/2026 06:00,43.9,53.6,43.9,54.1,,\n07/20/2026 06:00,,,,,862,823',
+  },
+  { id: 'out-of-order', shape: 'Rows out of order', example: '07/20/2026 07:40,43.8' },
+  {
+    id: 'change-of-value',
+    shape: 'A log of changes, a row a reading',
+    example: '07/20/2026 06:10,CHW Primary Flow (gpm),866,ok',
+    note: 'A value stands until the next one, for its longest age at most; nothing is interpolated.',
+  },
+  {
+    id: 'change-of-value-wide',
+    shape: 'A log of changes, a column a point',
+    example: '07/20/2026 06:05,,,,,,,,',
+  },
+  {
+    id: 'sub-minute',
+    shape: 'Several readings a minute',
+    example: '2026-07-20T06:00:15',
+    note: 'Averaged, weighted by time.',
+  },
+  {
+    id: 'log-disabled',
+    shape: 'Records that the log was off',
+    example: 'CHW Primary Supply Temp (degF),log-disabled,ok',
+    note: 'What was held ends there.',
+  },
+];
+
+export const UNIT_SHAPES: readonly ExportShape[] = [
+  { id: 'unit-degf', shape: '°F', example: 'CHW Primary Supply Temp (Deg F)' },
+  { id: 'unit-degc', shape: '°C', example: 'CHW Primary Supply Temp (degC)' },
+  { id: 'unit-kelvin', shape: 'K', example: 'CHW Primary Supply Temp (K)' },
+  { id: 'unit-gpm', shape: 'US gpm', example: 'CHW Primary Flow (GPM)' },
+  { id: 'unit-l-s', shape: 'L/s', example: 'CHW Primary Flow (l/s)' },
+  { id: 'unit-m3-h', shape: 'm³/h', example: 'CHW Primary Flow (m3/h)' },
+  { id: 'unit-l-min', shape: 'L/min', example: 'CHW Primary Flow (L/min)' },
+  { id: 'unit-psi', shape: 'psi', example: 'CHW Differential Pressure (psi)' },
+  { id: 'unit-kpa', shape: 'kPa', example: 'CHW Differential Pressure (kPa)' },
+  { id: 'unit-kw', shape: 'kW', example: 'Plant Power (kW)' },
+  { id: 'unit-percent', shape: '%', example: 'Chiller 1 Load (%)' },
+  {
+    id: 'unit-tons',
+    shape: 'tons',
+    example: 'Plant Load (tons)',
+    note: 'Told from electric power and left out: the load is worked out from flow and temperatures.',
+  },
+  {
+    id: 'units-from-values',
+    shape: 'No unit anywhere',
+    example: 'Timestamp,CHW Primary Supply Temp,CHW Primary Return Temp',
+    note: 'Told from the values, the units’ design flow and the balance of the loop.',
+  },
+];
