@@ -174,6 +174,17 @@ describe('how a column is held', () => {
     expect(rhythmOf(minutes(...seconds)).heartbeatMs).toBe(20 * SECOND_MS);
   });
 
+  test('a logger of 5 minutes that is up to 40 seconds early or late is believed for 14 minutes, not for hours', () => {
+    let at = 0;
+    const late = Array.from(
+      { length: 280 },
+      (_, i) => (at += 5 + (((i * 7919) % 81) - 40) / 60 + (i === 90 ? 360 : 0)),
+    );
+    const rhythm = rhythmOf(minutes(...late));
+    expect(rhythm.usualMs).toBe(0);
+    expect(heldForMs('temperature', rhythm.heartbeatMs) / MINUTE_MS).toBeCloseTo(14.2, 0);
+  });
+
   const pace = { isRegular: true, holdMs: 5 * MINUTE_MS };
   const column = { quantity: 'status' as const, ownRows: false };
   const manner = (cells: readonly number[], before?: readonly number[], point = column, rows = pace) => {
