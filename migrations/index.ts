@@ -5,6 +5,7 @@ import { Migration20261201000400Results } from './migration-20261201000400-resul
 import { Migration20261201000500Alerts } from './migration-20261201000500-alerts';
 import { Migration20261201000600MailSuppression } from './migration-20261201000600-mail-suppression';
 import { Migration20261201000700Calibration } from './migration-20261201000700-calibration';
+import { Migration20261201000800Unpacking } from './migration-20261201000800-unpacking';
 
 /** In order of application; listed by import so that a bundled program carries them. */
 export const MIGRATIONS = [
@@ -15,4 +16,5 @@ export const MIGRATIONS = [
   { name: '20261201000500-alerts', class: Migration20261201000500Alerts },
   { name: '20261201000600-mail-suppression', class: Migration20261201000600MailSuppression },
   { name: '20261201000700-calibration', class: Migration20261201000700Calibration },
+  { name: '20261201000800-unpacking', class: Migration20261201000800Unpacking },
 ];

@@ -1,13 +1,18 @@
+import { createHash } from 'node:crypto';
 import { gzipSync } from 'node:zlib';
 import { spawn, type ChildProcess } from 'node:child_process';
 import pg from 'pg';
 import { analysePlant } from '@/jobs/analyse-plant.job';
 import { importUpload } from '@/jobs/import-upload.job';
 import { WorkerProgram } from '@/jobs/worker-program';
+import type { Access } from '@/lib/auth/access';
+import { confirmMapping } from '@/lib/commands/confirm-mapping';
 import { enqueue } from '@/lib/db/enqueue';
 import { closeOrm, configureOrm } from '@/lib/db/orm';
 import { withTenant } from '@/lib/db/tenant';
 import { log } from '@/lib/log';
+import { readPreview } from '@/lib/queries/read-preview';
+import { ConfirmMapping, type PreviewColumn } from '@/lib/schemas/upload';
 import { createTestDatabase } from '../support/database';
 
 const CHUNK_BYTES = 1 << 20;
@@ -82,18 +87,20 @@ export function spawnWorker(scene: JobScene): ChildProcess {
 }
 
 /** Stores a file as received, under the next sequence number, and enqueues its import. Returns the upload's id. */
-export async function receive(scene: JobScene, filename: string, text: string): Promise<string> {
-  const bytes = Buffer.from(text);
+export async function receive(scene: JobScene, filename: string, content: string | Uint8Array): Promise<string> {
+  const bytes = Buffer.from(content);
+  const sha256 = createHash('sha256').update(bytes).digest('hex');
   const { rows } = await scene.owner.query<{ id: string }>(
     `with next as (update plant set next_upload_seq = next_upload_seq + 1 where id = $2 returning next_upload_seq - 1 as seq)
-     insert into upload (organization_id, plant_id, upload_seq, filename, files, size_bytes, status)
-     select $1, $2, seq, $3, $4, $5, 'received' from next returning id`,
+     insert into upload (organization_id, plant_id, upload_seq, filename, files, size_bytes, sha256, status)
+     select $1, $2, seq, $3, $4, $5, $6, 'received' from next returning id`,
     [
       scene.organizationId,
       scene.plantId,
       filename,
-      JSON.stringify([{ name: filename, sizeBytes: bytes.length, sha256: '', gzip: false }]),
+      JSON.stringify([{ name: filename, sizeBytes: bytes.length, sha256, gzip: false }]),
       bytes.length,
+      sha256,
     ],
   );
   const id = rows[0]?.id ?? '';
@@ -115,6 +122,34 @@ export const enqueueImport = (scene: JobScene, uploadId: string): Promise<void> 
   withTenant({ organizationIds: [scene.organizationId] }, (em) =>
     enqueue(em, 'import-upload', { organizationId: scene.organizationId, uploadId }),
   );
+
+/** Confirms through the command itself, as the mapping page does, with the preview's columns changed as a test needs it. */
+export async function confirmColumns(
+  scene: JobScene,
+  uploadId: string,
+  change: (column: PreviewColumn) => Partial<PreviewColumn> = () => ({}),
+): Promise<void> {
+  const { organizationId, plantId } = scene;
+  await withTenant({ organizationIds: [organizationId] }, async (em) => {
+    const preview = await readPreview(em, { organizationId, uploadId });
+    const { status } = await uploadState(scene, uploadId);
+    const columns = preview.columns.map((column) => ({ ...column, ...change(column) }));
+    const mapping = ConfirmMapping.parse({ ...preview, columns, remember: true });
+    await confirmMapping(em, NOBODY, { id: uploadId, organizationId, plantId, status }, mapping);
+  });
+}
+
+/** A worker's own hand: the command records who acted, and here nobody did. */
+const NOBODY: Access = {
+  kind: 'session',
+  userId: null,
+  tokenId: null,
+  scope: 'session',
+  ingestPlantId: null,
+  onlyPlantId: null,
+  memberships: [],
+  organizationIds: [],
+};
 
 /** Confirms the suggestion as it stands, remembered or not, as the mapping page would. */
 export async function confirmSuggestion(scene: JobScene, uploadId: string, remember = true): Promise<void> {
