@@ -58,7 +58,7 @@ export const TEXT_SHAPES: readonly ExportShape[] = [
     shape: 'Decimal comma in quoted, comma-separated cells',
     example: '"07/20/2026 06:00","43,9","53,6"',
   },
-  { id: 'thousands', shape: 'Thousands separated by commas', example: '44.0,57.3,46.8,57.3,864,"1,173"' },
+  { id: 'thousands', shape: 'Thousands separated by commas', example: '43.9,57.3,46.8,57.3,864,"1,102"' },
   {
     id: 'thousands-points',
     shape: 'Thousands separated by points, decimal comma',
@@ -76,7 +76,7 @@ export const TEXT_SHAPES: readonly ExportShape[] = [
   {
     id: 'windows-1252',
     shape: 'Windows-1252',
-    example: 'Trend – “Pellmarsh”\nTimestamp,CHW Primary Supply Temp (°F)',
+    example: 'Trend of “Pellmarsh”\nTimestamp,CHW – Primary Supply Temp (°F)',
   },
   { id: 'latin-1', shape: 'Latin-1', example: 'Datum & Uhrzeit;CHW Primary Supply Temp (°C)' },
   { id: 'line-ends-cr', shape: 'Lines that end with a carriage return alone', example: '07/20/2026 06:00,43.9,53.6' },

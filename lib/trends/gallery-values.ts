@@ -21,11 +21,11 @@ export const VALUE_SHAPES: readonly ExportShape[] = [
   {
     id: 'spliced-lines',
     shape: 'Two records on one line',
-    example: '07/20/2026 06:50,43.9,',
+    example: '07/20/2026 06:50,44.0,56.4,07/20/2026 06:55,44.0',
     note: 'The whole one is read where that can be told.',
   },
   { id: 'short-rows', shape: 'Rows with too few cells', example: '07/20/2026 06:35,44.0,55.5', note: 'Left out.' },
-  { id: 'long-rows', shape: 'Rows with too many cells', example: '866,1053,54.1', note: 'Left out.' },
+  { id: 'long-rows', shape: 'Rows with too many cells', example: '866,1006,54.1', note: 'Left out.' },
   { id: 'duplicate-rows', shape: 'The same row twice', example: '07/20/2026 06:25,44.0' },
   {
     id: 'duplicate-times',
