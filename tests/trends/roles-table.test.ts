@@ -314,7 +314,7 @@ const outcomes: Outcome[] = Object.entries(FILES).flatMap(([file, rows]) => {
   const drafts = suggestedOf(rows.map(([heading, , value, , unitCell]) => [heading, value, unitCell]));
   return rows.map(([heading, role, , unitIndex], i) => {
     const draft = drafts[i]!;
-    const right = draft.role === role && draft.unitIndex === (unitIndex ?? null) && draft.unit !== undefined;
+    const right = draft.role === role && draft.unitIndex === (unitIndex ?? null);
     const got = `${draft.role}${draft.unitIndex === null ? '' : ` ${draft.unitIndex}`}`;
     return {
       heading,
