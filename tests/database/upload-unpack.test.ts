@@ -22,8 +22,6 @@ const PARTS: ZipPart[] = [
 
 beforeAll(async () => {
   scene = await setJobScene();
-  // Storing members is a right the worker needs beyond reading and deleting chunks; granted again it changes nothing.
-  await scene.owner.query('grant insert on upload_chunk to slackwater_worker');
 });
 afterAll(() => scene.close());
 beforeEach(() => scene.owner.query('delete from upload'));
