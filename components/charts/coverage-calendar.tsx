@@ -1,7 +1,10 @@
 'use client';
+import { useState, type KeyboardEvent } from 'react';
 import { formatPercent } from '@/lib/client/format';
 import { addLocalDays } from '@/lib/client/format-time';
-import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
+import { CoverageRowBars } from './coverage-row';
+import { CoverageTable } from './coverage-table';
+import { dayName, weekStarts } from './coverage-shares';
 import { useWidth } from './use-width';
 
 export interface CoverageRow {
@@ -14,145 +17,113 @@ export interface CoverageCalendarProps {
   /** First local day, YYYY-MM-DD. */
   from: string;
   rows: readonly CoverageRow[];
-  /** A gap was chosen: what would fill it. */
-  onPick?: (key: string, day: string) => void;
+  /** What is known of where a day came from; stands behind its share in the reading. */
+  describe?: (day: string) => string;
 }
 
-const BAR_PX = 16;
-const FULL_SHARE = 0.95;
-const THIN_SHARE = 0.9;
+interface Place {
+  row: number;
+  day: number;
+}
 
-const share = (days: readonly (number | null)[]): number | null => {
-  if (days.length === 0 || days.every((day) => day === null)) return null;
-  return days.reduce<number>((sum, day) => sum + (day ?? 0), 0) / days.length;
-};
-
-const dayName = (day: string): string =>
-  new Intl.DateTimeFormat('en-GB', { day: 'numeric', month: 'short', timeZone: 'UTC' }).format(Date.parse(day));
-
-/** One row a point, one bar a day; its height is the share of the day that arrived and passed. Blank is missing. */
-export function CoverageCalendar({ from, rows, onPick }: CoverageCalendarProps) {
+/**
+ * One row a point, one bar a day; its height is the share of the day that arrived and passed. Blank is missing. The pointer, a tap
+ * or the arrow keys read a day out under the bars.
+ */
+export function CoverageCalendar({ from, rows, describe }: CoverageCalendarProps) {
+  const [place, setPlace] = useState<Place | null>(null);
+  const [held, setHeld] = useState(false);
   const count = Math.max(0, ...rows.map((row) => row.days.length));
   const days = Array.from({ length: count }, (_, index) => addLocalDays(from, index));
-  const weeks = days.filter((day, index) => index === 0 || new Date(`${day}T00:00:00Z`).getUTCDay() === 1);
+  const weeks = weekStarts(days);
   const [box, widthPx] = useWidth(1140);
   const most = Math.max(1, Math.floor(widthPx / 60));
   const every = Math.max(1, Math.ceil(weeks.length / most));
   const at = (day: string) => (days.indexOf(day) / Math.max(1, count)) * 100;
+  const here = place === null ? undefined : rows[place.row];
+  const day = place === null ? undefined : days[place.day];
+  const move = (event: KeyboardEvent) => {
+    const next = moved(event.key, place ?? { row: 0, day: count - 1 }, rows.length, count);
+    if (next === undefined) return;
+    event.preventDefault();
+    setHeld(next !== null);
+    setPlace(next);
+  };
   return (
     <div>
       <div
-        aria-hidden="true"
-        className="grid grid-cols-[150px_minmax(0,1fr)_52px] phone:grid-cols-[120px_minmax(0,1fr)_40px]"
+        role="group"
+        tabIndex={0}
+        aria-label="Coverage by point and day: arrow keys move by day and point, Escape leaves"
+        onKeyDown={move}
+        onPointerLeave={() => {
+          if (!held) setPlace(null);
+        }}
+        className="grid grid-cols-[150px_minmax(0,1fr)_52px] phone:grid-cols-[104px_minmax(0,1fr)_40px]"
       >
-        <div ref={box} className="relative col-start-2 h-5 text-micro text-ink-2">
+        <div aria-hidden="true" ref={box} className="relative col-start-2 h-5 text-micro text-ink-2">
           {weeks
             .filter((_, index) => index % every === 0)
-            .map((day) => (
-              <span key={day} className="absolute pl-0.5 whitespace-nowrap" style={{ left: `${at(day)}%` }}>
-                {dayName(day)}
+            .map((each) => (
+              <span key={each} className="absolute pl-0.5 whitespace-nowrap" style={{ left: `${at(each)}%` }}>
+                {dayName(each)}
               </span>
             ))}
         </div>
-        {rows.map((row) => (
-          <Row key={row.key} {...{ row, days, weeks, at, widthPx, onPick }} />
+        {rows.map((row, index) => (
+          <CoverageRowBars
+            key={row.key}
+            row={row}
+            days={days}
+            weeks={weeks}
+            widthPx={widthPx}
+            marked={place?.row === index ? place.day : null}
+            onPoint={(pointed, isHeld) => {
+              // A day that was tapped stays until another one is.
+              if (held && !isHeld) return;
+              setHeld(isHeld);
+              setPlace({ row: index, day: pointed });
+            }}
+          />
         ))}
       </div>
+      <p role="status" className="mt-2 min-h-(--t-body-line) text-ink-2 phone:min-h-[3lh]">
+        {here === undefined || day === undefined ? (
+          <span aria-hidden="true">Point at a day, or tap it, to read it.</span>
+        ) : (
+          <>
+            <b className="text-ink">{here.label}</b>, {dayName(day, true)}: {shareWords(here.days[place?.day ?? 0])}
+            {describe === undefined ? '' : ` ${describe(day)}`}
+          </>
+        )}
+      </p>
       <CoverageTable rows={rows} days={days} weeks={weeks} />
     </div>
   );
 }
 
-interface RowProps {
-  row: CoverageRow;
-  days: readonly string[];
-  weeks: readonly string[];
-  at: (day: string) => number;
-  widthPx: number;
-  onPick?: (key: string, day: string) => void;
-}
+const shareWords = (share: number | null | undefined): string =>
+  share == null || share === 0 ? 'nothing arrived.' : `${formatPercent(share)}\u00a0% of the day arrived.`;
 
-function Row({ row, days, weeks, at, widthPx, onPick }: RowProps) {
-  const whole = share(row.days);
-  const stepPx = widthPx / Math.max(1, days.length);
-  return (
-    <>
-      <span className="col-start-1 truncate text-small font-semibold">{row.label}</span>
-      <svg width="100%" height="24" viewBox={`0 0 ${widthPx} 24`} className="block">
-        {weeks.map((day) => (
-          <line
-            key={day}
-            x1={(at(day) / 100) * widthPx + 0.5}
-            x2={(at(day) / 100) * widthPx + 0.5}
-            y1="0"
-            y2="24"
-            stroke="var(--grid)"
-          />
-        ))}
-        <line x1="0" x2={widthPx} y1="18.5" y2="18.5" stroke="var(--grid)" />
-        {row.days.map((value, index) => {
-          const day = days[index];
-          if (day === undefined) return null;
-          const height = (value ?? 0) * BAR_PX;
-          return (
-            <g
-              key={day}
-              onClick={() => onPick?.(row.key, day)}
-              className={onPick === undefined ? '' : 'cursor-pointer'}
-            >
-              <rect x={index * stepPx} y="2" width={stepPx} height={BAR_PX} fill="transparent" />
-              <rect
-                x={index * stepPx + 0.5}
-                y={18 - height}
-                width={Math.max(0.8, stepPx - 1)}
-                height={height}
-                fill={(value ?? 0) < FULL_SHARE ? 'var(--ink3)' : 'var(--ink2)'}
-              />
-            </g>
-          );
-        })}
-      </svg>
-      <span className={`text-end text-micro ${whole !== null && whole < THIN_SHARE ? 'font-semibold' : 'text-ink-2'}`}>
-        {whole === null ? '-' : `${formatPercent(whole)}\u00a0%`}
-      </span>
-    </>
-  );
-}
-
-/** The same by week, for readers who cannot see the bars. */
-function CoverageTable({
-  rows,
-  days,
-  weeks,
-}: {
-  rows: readonly CoverageRow[];
-  days: readonly string[];
-  weeks: readonly string[];
-}) {
-  const starts = weeks.map((week) => days.indexOf(week));
-  return (
-    <div className="sr-only">
-      <Table bare caption="Coverage: share of each week that arrived and passed, by point">
-        <thead>
-          <tr>
-            <HeadCell>point</HeadCell>
-            {weeks.map((week) => (
-              <HeadCell key={week}>week of {dayName(week)}</HeadCell>
-            ))}
-          </tr>
-        </thead>
-        <tbody>
-          {rows.map((row) => (
-            <tr key={row.key}>
-              <RowHead>{row.label}</RowHead>
-              {weeks.map((week, index) => {
-                const part = share(row.days.slice(starts[index] ?? 0, starts[index + 1] ?? days.length));
-                return <Cell key={week}>{part === null ? 'none' : `${formatPercent(part)} %`}</Cell>;
-              })}
-            </tr>
-          ))}
-        </tbody>
-      </Table>
-    </div>
-  );
+/** Where a key leads: undefined for a key that is none of ours, null to leave. */
+function moved(key: string, { row, day }: Place, rows: number, days: number): Place | null | undefined {
+  const within = (value: number, size: number) => Math.min(size - 1, Math.max(0, value));
+  switch (key) {
+    case 'ArrowLeft':
+      return { row, day: within(day - 1, days) };
+    case 'ArrowRight':
+      return { row, day: within(day + 1, days) };
+    case 'ArrowUp':
+      return { row: within(row - 1, rows), day };
+    case 'ArrowDown':
+      return { row: within(row + 1, rows), day };
+    case 'Home':
+      return { row, day: 0 };
+    case 'End':
+      return { row, day: days - 1 };
+    case 'Escape':
+      return null;
+    default:
+      return undefined;
+  }
 }

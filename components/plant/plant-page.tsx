@@ -15,6 +15,7 @@ import { formatDayTime, formatPeriod, isoInstant } from '@/lib/client/format-tim
 import { daysQuery, plantQuery, tideQuery } from '@/lib/client/queries';
 import type { Plant } from '@/lib/schemas/plant';
 import { KERNEL_VERSION } from '@/lib/hydronics/types';
+import { FeedBlock } from './feed-block';
 import { PeriodLower } from './period-lower';
 import { PeriodPicker } from './period-picker';
 import { coverageShare, plantLead } from './plant-words';
@@ -95,6 +96,7 @@ function PlantPeriod({ plant, mayAcknowledge }: { plant: Plant; mayAcknowledge: 
         </div>
         <PeriodLower plant={plant} period={period} tide={tide.data ?? null} mayAcknowledge={mayAcknowledge} />
       </TimeViewProvider>
+      <FeedBlock plantId={plant.id} />
       {plant.assumed.length > 0 ? (
         <p className="mt-7.5 max-w-[92ch] text-small text-ink-2">
           {plant.assumed.length} design {plant.assumed.length === 1 ? 'number is' : 'numbers are'} the product’s own

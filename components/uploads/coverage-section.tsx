@@ -6,12 +6,20 @@ import { ErrorState, LoadingWords } from '@/components/ui/states';
 import { addLocalDays, formatPeriod, localDay, startOfLocalDay } from '@/lib/client/format-time';
 import { coverageQuery } from '@/lib/client/queries';
 import type { Plant } from '@/lib/schemas/plant';
+import type { Upload } from '@/lib/schemas/upload';
+import { filesOfDay } from './uploads-words';
 
 /** Days shown: eight weeks that end with the last day of data. */
 const SHOWN_DAYS = 56;
 
 /** How much of each day arrived, point by point. */
-export function CoverageSection({ plant }: { plant: Plant & { dataThrough: string } }) {
+export function CoverageSection({
+  plant,
+  uploads,
+}: {
+  plant: Plant & { dataThrough: string };
+  uploads: readonly Upload[];
+}) {
   const { timeZone } = plant;
   const to = addLocalDays(localDay(Date.parse(plant.dataThrough), timeZone), 1);
   const from = addLocalDays(to, -SHOWN_DAYS);
@@ -30,6 +38,7 @@ export function CoverageSection({ plant }: { plant: Plant & { dataThrough: strin
       ) : (
         <CoverageCalendar
           from={data.days[0] ?? from}
+          describe={(day) => filesOfDay(uploads, day, timeZone)}
           rows={data.points.map((point) => ({
             key: `${point.role}.${point.unitIndex}.${point.ordinal}`,
             label: point.label,

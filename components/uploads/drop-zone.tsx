@@ -1,6 +1,7 @@
 'use client';
 import { Upload as UploadIcon } from 'lucide-react';
 import { useEffect, useRef, useState } from 'react';
+import { CHOOSABLE, droppedFiles } from '@/lib/client/dropped-files';
 import type { UploadLimit } from './use-sending';
 
 export interface DropZoneProps {
@@ -37,7 +38,8 @@ export function DropZone({ plantName, limit, onFiles }: DropZoneProps) {
       event.preventDefault();
       depth = 0;
       setOver(false);
-      onFiles([...(event.dataTransfer?.files ?? [])]);
+      if (event.dataTransfer === null) return;
+      void droppedFiles(event.dataTransfer).then(onFiles);
     };
     window.addEventListener('dragenter', enter);
     window.addEventListener('dragleave', leave);
@@ -56,9 +58,10 @@ export function DropZone({ plantName, limit, onFiles }: DropZoneProps) {
       <div className="flex min-h-20 items-center gap-6 border border-dashed border-ink px-7 py-4 phone:gap-4 phone:px-4">
         <UploadIcon size={20} strokeWidth={1.5} aria-hidden="true" className="shrink-0" />
         <div>
-          <p className="text-[15px] font-semibold">Drop files anywhere on this page</p>
+          <p className="text-[15px] font-semibold">Drop files or a folder anywhere on this page</p>
           <p className="text-ink-2">
-            CSV or TSV, plain or gzip; several with one heading at once. Up to {limit.words}.{' '}
+            CSV, TSV, TXT or XLSX, plain or in ZIP or GZ; several files or a whole folder at once; a column a point, a
+            row a reading, or a file a point. Up to {limit.words}.{' '}
             <button type="button" className="link text-ink phone:min-h-11" onClick={() => input.current?.click()}>
               Choose files
             </button>
@@ -71,7 +74,7 @@ export function DropZone({ plantName, limit, onFiles }: DropZoneProps) {
           aria-label="Trend files"
           className="sr-only"
           tabIndex={-1}
-          accept=".csv,.tsv,.txt,.gz,text/csv,text/tab-separated-values,text/plain,application/gzip"
+          accept={CHOOSABLE}
           onChange={(event) => {
             onFiles([...(event.target.files ?? [])]);
             event.target.value = ''; // the same file may be chosen again

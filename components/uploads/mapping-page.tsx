@@ -6,10 +6,14 @@ import { useEffect } from 'react';
 import { Page } from '@/components/shell/app-shell';
 import { plantPath } from '@/components/shell/tabs';
 import { PageHead } from '@/components/ui/page-head';
-import { ErrorState, LoadingWords } from '@/components/ui/states';
+import { ErrorState, LoadingWords, Notice } from '@/components/ui/states';
+import { formatNumber } from '@/lib/client/format';
+import { formatPeriod } from '@/lib/client/format-time';
 import { plantQuery, previewQuery, uploadQuery } from '@/lib/client/queries';
+import { dialectWords, shapeWords } from '@/lib/client/table-words';
 import type { Preview, Upload } from '@/lib/schemas/upload';
 import { MappingForm } from './mapping-columns';
+import { SURE_ENOUGH } from './mapping-form';
 import { STATUS_WORDS } from './uploads-words';
 
 export interface MappingPageProps {
@@ -19,6 +23,9 @@ export interface MappingPageProps {
 }
 
 const NOT_READ_YET: readonly Upload['status'][] = ['receiving', 'received'];
+/** Read once: a change has the stored file read again. */
+const READ: readonly Upload['status'][] = ['done', 'failed'];
+const MAPPABLE: readonly Upload['status'][] = ['needs-mapping', ...READ];
 
 /** What each column of a file is: suggested, with the reason, for a person to confirm. */
 export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps) {
@@ -46,9 +53,18 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
           </>
         }
         title="Mapping"
-        lead={preview ? lead(preview) : 'The first rows are being read.'}
-        block={preview ? dialectBlock(preview, plant?.stepMinutes) : undefined}
+        lead={
+          preview
+            ? lead(preview, upload !== undefined && READ.includes(upload.status))
+            : 'The first rows are being read.'
+        }
+        block={preview ? titleBlock(preview, plant?.stepMinutes) : undefined}
       />
+      {preview && upload && READ.includes(upload.status) && mayConfirm ? (
+        <div className="mb-7.5">
+          <Notice>{againWords(upload, plant?.timeZone ?? 'UTC')}</Notice>
+        </div>
+      ) : null}
       {error ? (
         <ErrorState onRetry={() => void refetch()}>{error.message}</ErrorState>
       ) : preview && upload && plant ? (
@@ -57,13 +73,13 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
           upload={upload}
           preview={preview}
           unitCount={plant.design.productionUnits.length}
-          mayConfirm={mayConfirm && upload.status === 'needs-mapping'}
+          mayConfirm={mayConfirm && MAPPABLE.includes(upload.status)}
           closedBecause={
-            upload.status === 'needs-mapping'
-              ? mayConfirm
+            !mayConfirm
+              ? 'An engineer or the owner of this organization can confirm this.'
+              : MAPPABLE.includes(upload.status)
                 ? null
-                : 'An engineer or the owner of this organization can confirm this.'
-              : `This file is ${STATUS_WORDS[upload.status]}: its columns cannot be changed any more. Take it out and send it again to map it anew.`
+                : `This file is ${STATUS_WORDS[upload.status]}: how it is read can be changed once that is over.`
           }
         />
       ) : (
@@ -73,31 +89,54 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
   );
 }
 
-function lead(preview: Preview): string {
-  const { columns } = preview;
-  const open = columns.filter((column) => column.confidence < 0.5).length;
-  const out = columns.filter((column) => column.confidence >= 0.5 && column.role === 'ignore').length;
-  const sure = columns.length - open - out;
-  const parts = [
-    `${sure} recognised`,
-    ...(out > 0 ? [`${out} left out`] : []),
-    ...(open > 0 ? [`${open} to decide`] : []),
-  ];
-  return `${columns.length} columns; ${parts.join(', ')}. A heading seen once on this plant maps itself the next time.`;
+/** What a change does to a file that was read already. */
+function againWords({ from, to }: Upload, timeZone: string): string {
+  const period = from === null || to === null ? null : formatPeriod(Date.parse(from), Date.parse(to) + 1, timeZone);
+  const days = period === null ? 'the days it holds are' : `${period} is`;
+  return `Change what is wrong and confirm: the stored file is read again with the new answers, ${days} filled anew, and the results are worked out again. Until that is done these days stand without this file’s values. Nothing has to be sent again.`;
 }
 
-const DELIMITERS: Readonly<Record<string, string>> = { ',': 'comma', ';': 'semicolon', '\t': 'tab', '|': 'bar' };
+function lead(preview: Preview, read: boolean): string {
+  const { columns, confirmed } = preview;
+  const noun = preview.tables.every(({ shape }) => shape.kind === 'long') ? 'point' : 'column';
+  const counted = (count: number) => `${formatNumber(count)} ${count === 1 ? noun : `${noun}s`}`;
+  if (read && confirmed) {
+    const used = confirmed.columns.filter(({ role }) => role !== 'ignore').length;
+    const out = columns.length - used;
+    return `${counted(columns.length)}; ${formatNumber(used)} read as below${out > 0 ? `, ${formatNumber(out)} left out` : ''}.`;
+  }
+  const known = columns.filter((column) => column.known === true).length;
+  const open = columns.filter((column) => column.confidence < SURE_ENOUGH).length;
+  const out = columns.filter(
+    ({ confidence, role, known: isKnown }) => confidence >= SURE_ENOUGH && role === 'ignore' && isKnown !== true,
+  ).length;
+  const sure = columns.length - open - out - known;
+  const parts = [
+    ...(known > 0 ? [`${formatNumber(known)} as in earlier files`] : []),
+    ...(sure > 0 || known === 0 ? [`${formatNumber(sure)} recognised`] : []),
+    ...(out > 0 ? [`${formatNumber(out)} left out`] : []),
+    ...(open > 0 ? [`${formatNumber(open)} to decide`] : []),
+  ];
+  const next =
+    known > 0
+      ? 'Only what is new in this heading is asked.'
+      : 'A heading seen once on this plant maps itself the next time.';
+  return `${counted(columns.length)}; ${parts.join(', ')}. ${next}`;
+}
 
-function dialectBlock({ dialect, timestamp, timeZone, stepMinutes }: Preview, plantStepMinutes: number | undefined) {
-  const before = dialect.headerRow - 1;
-  const preamble = before > 0 ? `, ${before} ${before === 1 ? 'line' : 'lines'} before the heading` : '';
-  const step = stepMinutes === null ? 'unknown' : `${stepMinutes} min`;
+/** What the file is, for the corner of the page. */
+function titleBlock(preview: Preview, plantStepMinutes: number | undefined) {
+  const { tables, timeZone, stepMinutes } = preview;
+  const [first] = tables;
+  const step =
+    stepMinutes === null ? 'unknown' : `${formatNumber(stepMinutes, { decimals: stepMinutes % 1 === 0 ? 0 : 2 })} min`;
+  const files = tables.reduce((sum, table) => sum + table.files.length, 0);
   return [
-    {
-      term: 'dialect',
-      value: `${DELIMITERS[dialect.delimiter] ?? dialect.delimiter}, ${dialect.encoding}, decimal ${dialect.decimal === ',' ? 'comma' : 'point'}${preamble}`,
-    },
-    { term: 'time', value: `“${timestamp.columns.join('” and “')}”, ${timestamp.form}` },
+    ...(tables.length > 1 ? [{ term: 'headings', value: `${tables.length}, in ${files} files` }] : []),
+    ...(tables.length === 1 && files > 1 ? [{ term: 'files', value: `${files} with one heading` }] : []),
+    ...(tables.length === 1 && first ? [{ term: 'written', value: dialectWords(first) }] : []),
+    ...(tables.length === 1 && first ? [{ term: 'shape', value: shapeWords(first) }] : []),
+    ...(first && tables.length === 1 ? [{ term: 'time', value: `“${first.timestamp.columns.join('” and “')}”` }] : []),
     { term: 'zone', value: timeZone },
     {
       term: 'step',

@@ -1,4 +1,5 @@
 'use client';
+import { memo } from 'react';
 import { ConfidenceBar } from '@/components/charts/confidence-bar';
 import { Sparkline } from '@/components/charts/sparkline';
 import { Select } from '@/components/ui/select';
@@ -7,7 +8,7 @@ import { EN_DASH, formatNumber, MISSING } from '@/lib/client/format';
 import { IGNORE_ROLE, pointRole, type MappedRole } from '@/lib/point-roles';
 import type { Preview } from '@/lib/schemas/upload';
 import { TREND_UNITS } from '@/lib/units';
-import { ROLE_OPTIONS, unitsFor, withRole, type ColumnAnswer } from './mapping-form';
+import { isOpen, ROLE_OPTIONS, unitsFor, withRole, type ColumnAnswer } from './mapping-form';
 
 export interface MappingRowProps {
   column: Preview['columns'][number];
@@ -21,11 +22,21 @@ export interface MappingRowProps {
 const printed = (value: number | null): string =>
   value === null ? MISSING : formatNumber(value, { decimals: Math.abs(value) >= 100 ? 0 : 1 });
 
-/** One column of the file: the data itself, the role, the unit, why, and how sure. */
-export function MappingRow({ column, answer, clash, unitCount, disabled, onChange }: MappingRowProps) {
+/**
+ * One column of the file: the data itself, the role, the unit, why, and how sure. Drawn anew only when something of its own has
+ * changed: its lists of choices are the dearest part of the page.
+ */
+export const MappingRow = memo(function MappingRow({
+  column,
+  answer,
+  clash,
+  unitCount,
+  disabled,
+  onChange,
+}: MappingRowProps) {
   const { role } = answer;
   const named = role !== null && role !== IGNORE_ROLE ? pointRole(role) : null;
-  const open = role === null || (named !== null && answer.unit === null);
+  const open = isOpen(answer);
   const numbers = Array.from({ length: Math.max(unitCount, answer.unitIndex ?? 1, 1) }, (_, index) =>
     String(index + 1),
   );
@@ -91,4 +102,4 @@ export function MappingRow({ column, answer, clash, unitCount, disabled, onChang
       </td>
     </tr>
   );
-}
+});

@@ -3,6 +3,7 @@ import { ProgressBar } from '@/components/ui/progress-bar';
 import { Cell, RowHead } from '@/components/ui/table';
 import { Tag } from '@/components/ui/tag';
 import { formatBytes } from '@/lib/client/format';
+import { filesWords } from '@/lib/client/table-words';
 import type { SendingFile } from './use-sending';
 
 export const ROW_ON_PHONE =
@@ -12,7 +13,12 @@ export const ROW_ON_PHONE =
 export function SendingRow({ file, onStop }: { file: SendingFile; onStop: () => void }) {
   return (
     <tr className={ROW_ON_PHONE}>
-      <RowHead className="font-semibold!">{file.name}</RowHead>
+      <RowHead className="font-semibold! break-all">
+        {file.name}
+        {file.names.length > 1 ? (
+          <span className="block font-normal break-words text-ink-2">{filesWords(file.names, 6)}</span>
+        ) : null}
+      </RowHead>
       <Cell numeric>{formatBytes(file.sizeBytes)}</Cell>
       {file.failure === null ? (
         <td colSpan={5}>

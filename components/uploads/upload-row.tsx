@@ -1,4 +1,5 @@
 'use client';
+import { useQuery } from '@tanstack/react-query';
 import { Check } from 'lucide-react';
 import Link from 'next/link';
 import { useId, useState } from 'react';
@@ -9,6 +10,7 @@ import { Cell, RowHead } from '@/components/ui/table';
 import { Tag } from '@/components/ui/tag';
 import { formatBytes, formatNumber, MISSING } from '@/lib/client/format';
 import { formatDayTime, formatPeriod } from '@/lib/client/format-time';
+import { previewQuery } from '@/lib/client/queries';
 import type { Upload } from '@/lib/schemas/upload';
 import { ProblemTable } from './problem-table';
 import { RemoveUpload } from './remove-upload';
@@ -30,7 +32,7 @@ export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
   return (
     <>
       <tr className={ROW_ON_PHONE} data-upload={upload.id} data-status={upload.status}>
-        <RowHead className="font-semibold! break-all">{upload.filename}</RowHead>
+        <RowHead className="font-semibold! break-words [overflow-wrap:anywhere]">{upload.filename}</RowHead>
         <Cell numeric>{upload.sizeBytes === 0 ? MISSING : formatBytes(upload.sizeBytes)}</Cell>
         <td>
           <State upload={upload} />
@@ -59,14 +61,20 @@ export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
           {formatDayTime(Date.parse(upload.createdAt), timeZone)}
         </Cell>
         <Cell numeric>
-          {upload.status === 'needs-mapping' && may.map ? (
-            <Link href={mapping} className="link mr-3.5 font-semibold">
-              map
-            </Link>
-          ) : null}
+          {may.map ? <MapLink upload={upload} href={mapping} /> : null}
           {may.remove ? <RemoveUpload plantId={plantId} upload={upload} timeZone={timeZone} /> : null}
         </Cell>
       </tr>
+      {upload.problems.filter(isNews).map((problem, index) => (
+        <tr key={index} className="phone:block" data-notice={problem.code}>
+          <td colSpan={8} className="phone:block">
+            <div className="border-l-[3px] border-ink pl-4">
+              <Tag variant={problem.severity === 'error' ? 'reversed' : 'outlined'}>{NEWS[problem.code]}</Tag>{' '}
+              {problem.message}
+            </div>
+          </td>
+        </tr>
+      ))}
       {open && upload.problems.length > 0 ? (
         <tr id={details} className="phone:block">
           <td colSpan={8} className="phone:block">
@@ -75,6 +83,34 @@ export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
         </tr>
       ) : null}
     </>
+  );
+}
+
+/** What a person has to hear without opening anything. */
+const NEWS: Readonly<Record<string, string>> = {
+  'same-file': 'same file again',
+  'file-left-out': 'left out',
+  'column-gone': 'column gone',
+  'clock-offset': 'clock off?',
+};
+const isNews = ({ code }: Upload['problems'][number]): boolean => NEWS[code] !== undefined;
+
+/** To the mapping: to be made, or, once the file was read, to be changed. */
+function MapLink({ upload, href }: { upload: Upload; href: string }) {
+  const failed = upload.status === 'failed';
+  // Of a file that failed only the server knows whether its columns were recognised before.
+  const preview = useQuery({ ...previewQuery(upload.id), enabled: failed, retry: false });
+  if (upload.status === 'needs-mapping')
+    return (
+      <Link href={href} className="link mr-3.5 font-semibold">
+        map
+      </Link>
+    );
+  if (upload.status !== 'done' && !(failed && preview.data)) return null;
+  return (
+    <Link href={href} className="link mr-3.5" aria-label={`change the mapping of ${upload.filename}`}>
+      change mapping
+    </Link>
   );
 }
 

@@ -8,6 +8,7 @@ import { formatDayTime } from '@/lib/client/format-time';
 import { plantQuery, uploadsQuery } from '@/lib/client/queries';
 import { CoverageSection } from './coverage-section';
 import { DropZone } from './drop-zone';
+import { FeedSection } from './feed-section';
 import { UploadTable } from './upload-table';
 import { uploadsLead } from './uploads-words';
 import { useFreshRecord } from './use-fresh-record';
@@ -16,7 +17,7 @@ import { useSending, type UploadLimit } from './use-sending';
 export interface UploadsPageProps {
   plantId: string;
   limit: UploadLimit;
-  may: { upload: boolean; map: boolean; remove: boolean };
+  may: { upload: boolean; map: boolean; remove: boolean; manageTokens: boolean };
 }
 
 /** Files of a plant: drop, progress, what was read and what was not, and the way back. */
@@ -59,7 +60,10 @@ export function UploadsPage({ plantId, limit, may }: UploadsPageProps) {
           <UploadTable plantId={plantId} timeZone={zone} uploads={data.items} sending={sending} may={may} />
         )}
       </Section>
-      {plant?.dataThrough == null ? null : <CoverageSection plant={{ ...plant, dataThrough: plant.dataThrough }} />}
+      {plant?.dataThrough == null ? null : (
+        <CoverageSection plant={{ ...plant, dataThrough: plant.dataThrough }} uploads={data?.items ?? []} />
+      )}
+      {may.upload ? <FeedSection plantId={plantId} timeZone={zone} mayManage={may.manageTokens} /> : null}
     </Page>
   );
 }

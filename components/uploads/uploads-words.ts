@@ -1,4 +1,5 @@
-import { formatDayTime } from '@/lib/client/format-time';
+import { addLocalDays, formatDayTime, startOfLocalDay } from '@/lib/client/format-time';
+import { filesWords } from '@/lib/client/table-words';
 import { inWords } from '@/components/plants/plants-words';
 import type { Upload } from '@/lib/schemas/upload';
 
@@ -37,3 +38,20 @@ export const STATUS_WORDS: Readonly<Record<Upload['status'], string>> = {
   done: 'done',
   failed: 'failed',
 };
+
+/** The files that hold times of a local day, the latest first: where two have a value, that one counts. */
+export function filesOfDay(uploads: readonly Upload[], day: string, timeZone: string): string {
+  const start = startOfLocalDay(day, timeZone);
+  const end = startOfLocalDay(addLocalDays(day, 1), timeZone);
+  const names = uploads
+    .filter(
+      ({ from, to, samplesStored }) =>
+        from !== null && to !== null && samplesStored > 0 && Date.parse(from) < end && Date.parse(to) >= start,
+    )
+    .sort((a, b) => b.createdAt.localeCompare(a.createdAt))
+    .map(({ filename }) => filename);
+  if (names.length === 0) return '';
+  return names.length === 1
+    ? `From ${names[0] ?? ''}.`
+    : `Files that reach into it, the latest first: ${filesWords(names)}.`;
+}

@@ -4,11 +4,14 @@ import { useCallback, useRef, useState } from 'react';
 import { uploadsQuery } from '@/lib/client/queries';
 import { sendUpload } from '@/lib/client/send-upload';
 import { formatBytes } from '@/lib/client/format';
+import { sortOut } from '@/lib/client/dropped-files';
 
 /** A drop on its way out of this browser, or one that did not get through. */
 export interface SendingFile {
   key: number;
   name: string;
+  /** Every file of the drop by name. */
+  names: readonly string[];
   sizeBytes: number;
   /** Share that has left, 0 to 1. */
   share: number;
@@ -44,16 +47,23 @@ export function useSending(plantId: string, limit: UploadLimit): Sending {
 
   const send = useCallback(
     (chosen: readonly File[]) => {
-      if (chosen.length === 0) return;
+      const { good, refused } = sortOut(chosen);
+      const told = refused.map(({ file, why }): SendingFile => {
+        const { name, size: sizeBytes } = file;
+        return { key: next.current++, name, names: [name], sizeBytes, share: 0, failure: why };
+      });
+      if (told.length > 0) setFiles((now) => [...told, ...now]);
+      if (good.length === 0) return;
       const key = next.current++;
-      const sizeBytes = chosen.reduce((sum, file) => sum + file.size, 0);
-      const name = chosen.length === 1 ? (chosen[0]?.name ?? 'file') : `${chosen.length} files`;
-      const refused = refusalOf(chosen, limit);
-      setFiles((now) => [{ key, name, sizeBytes, share: 0, failure: refused }, ...now]);
-      if (refused !== null) return;
+      const sizeBytes = good.reduce((sum, file) => sum + file.size, 0);
+      const names = good.map(({ name }) => name);
+      const name = names.length === 1 ? (names[0] ?? 'file') : `${names.length} files`;
+      const failure = overLimit(sizeBytes, limit);
+      setFiles((now) => [{ key, name, names, sizeBytes, share: 0, failure }, ...now]);
+      if (failure !== null) return;
       const stop = new AbortController();
       stops.current.set(key, stop);
-      sendUpload(plantId, chosen, (share) => change(key, { share }), stop.signal)
+      sendUpload(plantId, good, (share) => change(key, { share }), stop.signal)
         .then(async () => {
           await queries.invalidateQueries({ queryKey: uploadsQuery(plantId).queryKey });
           change(key, null);
@@ -83,12 +93,8 @@ export function useSending(plantId: string, limit: UploadLimit): Sending {
   return { files, send, stop };
 }
 
-/** What this browser can tell before anything is sent: a folder or empty file, or one over the limit. */
-function refusalOf(files: readonly File[], limit: UploadLimit): string | null {
-  const empty = files.find((file) => file.size === 0);
-  if (empty) return `"${empty.name}" is empty. Export it again, with at least one row of data.`;
-  const total = files.reduce((sum, file) => sum + file.size, 0);
-  if (total > limit.bytes)
-    return `${formatBytes(total)} is over the limit of ${limit.words}. Export a shorter period, or compress the file with gzip.`;
-  return null;
+/** What this browser can tell of all files together before anything is sent. */
+function overLimit(sizeBytes: number, limit: UploadLimit): string | null {
+  if (sizeBytes <= limit.bytes) return null;
+  return `${formatBytes(sizeBytes)} is over the limit of ${limit.words}. Export a shorter period, or compress the file with gzip.`;
 }

@@ -24,7 +24,12 @@ export default async function Uploads({ params }: { params: Promise<{ plantId: s
       <UploadsPage
         plantId={plant.id}
         limit={{ bytes: uploadLimitBytes(), words: sizeInWords(uploadLimitBytes()) }}
-        may={{ upload: may['upload.create'], map: may['mapping.confirm'], remove: may['upload.remove'] }}
+        may={{
+          upload: may['upload.create'],
+          map: may['mapping.confirm'],
+          remove: may['upload.remove'],
+          manageTokens: may['token.manage'],
+        }}
       />
     </Hydrated>
   );
