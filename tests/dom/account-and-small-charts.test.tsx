@@ -137,12 +137,11 @@ test('confidence under one half is dotted: a person has to decide', () => {
   expect(container.querySelector('rect')?.getAttribute('fill')).not.toBe('url(#dots)');
 });
 
-test('coverage is a table by week for readers, bold under nine tenths, and a gap can be asked about', () => {
-  const onPick = vi.fn();
+test('coverage is a table by week for readers, bold under nine tenths; a day is read by key, by pointer and by tap', () => {
   const { container } = render(
     <CoverageCalendar
       from="2026-07-13"
-      onPick={onPick}
+      describe={(day) => `From ${day}.csv.`}
       rows={[
         { key: 'a', label: 'Primary flow', days: [1, 1, 1, 1, 1, 1, 1, 0.5] },
         { key: 'b', label: 'Bypass temperature', days: Array.from({ length: 8 }, () => null) },
@@ -153,7 +152,19 @@ test('coverage is a table by week for readers, bold under nine tenths, and a gap
   expect(plain(within(table).getByRole('row', { name: /Primary flow/ }).textContent)).toBe('Primary flow100 %50 %');
   expect(within(table).getByRole('row', { name: /Bypass/ }).textContent).toContain('none');
   expect(screen.getByText((text) => plain(text) === '94 %').className).not.toContain('font-semibold');
-  const last = container.querySelectorAll('svg')[0]?.querySelectorAll('g')[7];
-  if (last) fireEvent.click(last);
-  expect(onPick).toHaveBeenCalledWith('a', '2026-07-20');
+  const calendar = screen.getByRole('group', { name: /Coverage by point and day/ });
+  const reading = () => plain(screen.getByRole('status').textContent);
+  fireEvent.keyDown(calendar, { key: 'End' });
+  expect(reading()).toBe('Primary flow, Mon 20 Jul: 50 % of the day arrived. From 2026-07-20.csv.');
+  fireEvent.keyDown(calendar, { key: 'ArrowDown' });
+  expect(reading()).toBe('Bypass temperature, Mon 20 Jul: nothing arrived. From 2026-07-20.csv.');
+  fireEvent.keyDown(calendar, { key: 'Escape' });
+  expect(reading()).toBe('Point at a day, or tap it, to read it.');
+  const bars = container.querySelectorAll('svg')[0] as SVGSVGElement;
+  vi.spyOn(bars, 'getBoundingClientRect').mockReturnValue(new DOMRect(0, 0, 80, 24));
+  fireEvent.pointerDown(bars, { clientX: 25 });
+  expect(reading()).toContain('Primary flow, Wed 15 Jul: 100 %');
+  // A day that was tapped stays while the pointer moves on.
+  fireEvent.pointerMove(bars, { clientX: 55 });
+  expect(reading()).toContain('Wed 15 Jul');
 });
