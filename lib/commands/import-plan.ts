@@ -81,9 +81,10 @@ function dropPlan(
   stepMinutes: number,
 ): DropPlan {
   const answered = new Map(confirmed.columns.map((column) => [column.column, column]));
-  const columns = preview.columns.map(
-    ({ column }): ColumnMapping => answered.get(column) ?? { column, role: IGNORE_ROLE, unit: null },
-  );
+  const columns = preview.columns.map(({ column, sentinels }): ColumnMapping => {
+    const answer = answered.get(column);
+    return answer ? { ...answer, sentinels } : { column, role: IGNORE_ROLE, unit: null };
+  });
   const place = new Map(columns.map(({ column }, index) => [column, index]));
   const plans = preview.tables.flatMap((table, index) => {
     const names = table.names.filter(({ column }) => place.has(column));
@@ -181,6 +182,7 @@ async function previewHints(plant: Plant): Promise<Omit<PreviewOptions, 'complet
   const { model } = plantModelFromSettings(PlantSettings.parse(stored.settings), plant.arrangement as Arrangement);
   return {
     timeZone: plant.timeZone,
+    nowMs: Date.now(),
     unitCount: model.units.length,
     unitFlowGpm: model.units[0]?.flowGpm,
     productionSupplyF: model.productionSupplyF,

@@ -101,6 +101,8 @@ export const PreviewColumn = z.object({
   table: z.number().int().optional(),
   /** Answered by an earlier file of this plant. */
   known: z.boolean().optional(),
+  /** Numbers that stand in place of a reading. */
+  sentinels: z.array(z.number()).optional(),
 });
 export type PreviewColumn = z.infer<typeof PreviewColumn>;
 /** The shape of a preview: keys a mapping does not need are ignored. */

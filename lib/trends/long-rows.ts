@@ -2,7 +2,7 @@ import { columnNames, plainName, type ColumnPlaces } from './headings';
 import { detached, quoted, type ProblemLog } from './problems';
 import { StatusReader } from './status-reader';
 import { Timeline } from './timeline';
-import type { StampParser } from './timestamps';
+import { StampParser } from './timestamps';
 import { TrendError, type DayOfColumn, type ReadPlan, type TableShape, type TrendProblem } from './types';
 import { ValueReader } from './values';
 import type { RowSink } from './wide-rows';
@@ -20,6 +20,8 @@ const MOST_REMEMBERED = 4096;
 interface Point {
   timeline: Timeline;
   values: ValueReader;
+  /** Of its own: times that lean on the row before lean on the point's last. */
+  stamp: StampParser;
 }
 
 /** One row a reading. Each point has its own sequence of times, since change-of-value points come when they please. */
@@ -33,6 +35,8 @@ export class LongRows implements RowSink {
   private valueCell = 0;
   private status: StatusReader | null = null;
   private dayReadings = 0;
+  /** Whose reading the row under way is. */
+  private point: Point | null = null;
 
   constructor(
     private readonly plan: ReadPlan,
@@ -40,12 +44,13 @@ export class LongRows implements RowSink {
     private readonly problems: ProblemLog,
   ) {
     this.byName = new Map(plan.columns.map(({ column }, i) => [column, i]));
-    this.points = plan.columns.map(({ column, role, unit }, i) =>
+    this.points = plan.columns.map(({ column, role, unit, sentinels }, i) =>
       role === 'ignore'
         ? null
         : {
-            timeline: new Timeline(plan, [{ plan: i, unit: unit! }], problems),
-            values: new ValueReader(column, unit!, plan.dialect.decimal, problems),
+            timeline: new Timeline(plan, [{ plan: i, unit: unit!, name: column, ownRows: true }], problems),
+            values: new ValueReader(column, unit!, plan.dialect.decimal, problems, { sentinels }),
+            stamp: StampParser.of(plan.timestamp, plan.dialect.decimal),
           },
     );
     this.dayReadings = this.points.filter((point) => point !== null).length * MINUTES_OF_DAY;
@@ -67,13 +72,19 @@ export class LongRows implements RowSink {
     return { time, read: [], width: names.length, timeHeading: heading[time[0]!]?.trim() ?? '' };
   }
 
-  take(cells: readonly string[], row: number, stamp: StampParser): void {
+  stampFor(cells: readonly string[], row: number): StampParser | null {
+    this.point = this.pointOf(cells[this.pointCell] ?? '', row);
+    return this.point?.stamp ?? null;
+  }
+
+  take(cells: readonly string[], row: number, stamp: StampParser): boolean {
     this.rowsRead++;
-    const point = this.pointOf(cells[this.pointCell] ?? '', row);
-    if (!point) return;
+    const { point } = this;
+    if (!point) return true;
     const value = this.valueOf(point, cells, row);
     const values = point.timeline.addRow(stamp, row);
     values[point.timeline.days.base] = value;
+    return true;
   }
 
   private valueOf(point: Point, cells: readonly string[], row: number): number {
@@ -109,7 +120,9 @@ export class LongRows implements RowSink {
   }
 
   takeAll(): DayOfColumn[] {
-    return this.points.flatMap((point) => point?.timeline.days.takeAll() ?? []);
+    // A point that is logged on change holds to the file's last instant, not only to its own.
+    const { lastMs } = this;
+    return this.points.flatMap((point) => point?.timeline.days.takeAll(lastMs) ?? []);
   }
 
   private readonly timelines = (): Timeline[] => this.points.flatMap((point) => (point ? [point.timeline] : []));

@@ -22,6 +22,8 @@ const MOST_POINTS = 20_000;
 
 interface Kept extends ScannedPoint {
   every: number;
+  /** Of its own: times that lean on the row before lean on the point's last. */
+  stamp: StampParser;
 }
 
 /**
@@ -32,15 +34,13 @@ export class PointScan {
   private readonly points = new Map<string, Kept>();
   private readonly text: TextStream;
   private readonly cutter: RowCutter;
-  private readonly stamp: StampParser;
   private nextRow = 1;
   private upper: readonly string[] = [];
   private readonly cell = { point: -1, value: -1, unit: -1, time: [] as number[] };
 
   constructor(private readonly table: FileTable) {
-    const { dialect, time } = table;
+    const { dialect } = table;
     this.text = new TextStream(dialect.encoding);
-    this.stamp = new StampParser(time.plan.form, dialect.decimal);
     if (dialect.headerRow === 0) this.place(table.names);
     this.cutter = new RowCutter(
       dialect.delimiter,
@@ -95,8 +95,8 @@ export class PointScan {
     if (point.count++ % point.every !== 0) return;
     const [first, second] = this.cell.time;
     const time = second === undefined ? (cells[first!] ?? '') : `${cells[first!] ?? ''} ${cells[second] ?? ''}`;
-    if (!this.stamp.parse(time)) return;
-    point.timesMs.push(this.stamp.ms);
+    if (!point.stamp.parse(time)) return;
+    point.timesMs.push(point.stamp.ms);
     point.cells.push(detached(cells[this.cell.value] ?? ''));
     if (point.cells.length >= MOST_KEPT) thin(point);
   }
@@ -108,7 +108,9 @@ export class PointScan {
     for (const point of name === cell ? [] : this.points.values()) {
       if (point.name === name) return point;
     }
-    const point = { name: detached(name), count: 0, unitCell: detached(unitCell), timesMs: [], cells: [], every: 1 };
+    const stamp = StampParser.of(this.table.time.plan, this.table.dialect.decimal);
+    const kept = { count: 0, timesMs: [], cells: [], every: 1, stamp };
+    const point: Kept = { name: detached(name), unitCell: detached(unitCell), ...kept };
     this.points.set(detached(cell), point);
     return point;
   }

@@ -1,10 +1,13 @@
 import { createHash } from 'node:crypto';
+import { clockDoubts, type ClockDoubt } from './clock-doubts';
 import { dropTables, type DropFile, type DropTable } from './drop';
+import type { NumberedRow } from './dialect';
 import type { Encoding } from './encoding';
 import { PointScan, type ScannedPoint } from './point-scan';
 import { createTrendReader } from './reader';
 import { sentenceOf, suggestRoles, type Candidate } from './roles/suggest';
 import { columnStatistics, evenSamples } from './roles/statistics';
+import { detectSentinels } from './sentinels';
 import { recogniseFile, type FileTable } from './table';
 import { StampParser } from './timestamps';
 import {
@@ -59,7 +62,8 @@ export function previewDrop(heads: readonly FileHead[], options: PreviewOptions)
   if (files.length === 0)
     throw refusal ?? new TrendError('empty', 'The upload holds no file. Choose a file and send it again.');
   const tables = dropTables(files);
-  const columns = suggestColumns(tables, options);
+  const { columns, clocks } = suggestColumns(tables, options);
+  for (const { message } of clocks) problems.push({ code: 'clock-offset', severity: 'warning', message, count: 1 });
   const shown = tables.map((table, index) => tablePreview(table, columns, index));
   const [first] = shown;
   for (const table of tables) problems.push(...tableProblems(table, columns, tables.indexOf(table), options));
@@ -118,19 +122,30 @@ function tablePreview(table: DropTable, columns: readonly ColumnPreview[], index
 }
 
 /** Role, unit and reason of every column of the drop, judged together. */
-function suggestColumns(tables: readonly DropTable[], options: PreviewOptions): ColumnPreview[] {
+function suggestColumns(
+  tables: readonly DropTable[],
+  options: PreviewOptions,
+): { columns: ColumnPreview[]; clocks: ClockDoubt[] } {
   const several = tables.length > 1;
-  const found = tables.flatMap((table, index) =>
-    table.names.map((name) => ({ ...candidateOf(table, name, index, several), furtherTime: isTime(table, name.cell) })),
-  );
+  const found = tables.flatMap((table, index) => {
+    const rows = table.files.flatMap((file) => file.table.data).slice(0, MOST_ROWS);
+    // One array a table: columns of shared rows share their times.
+    const times =
+      several && table.files[0]!.table.shape.kind === 'wide' ? timesOf(table.files[0]!.table, rows) : undefined;
+    return table.names.map((name) => ({
+      ...candidateOf(table, name, index, rows, times),
+      furtherTime: isTime(table, name.cell),
+    }));
+  });
   const roles = suggestRoles(found, options);
-  return found.map(({ column, statistics, table, furtherTime }, i) => {
+  const columns = found.map(({ column, statistics, sentinels, table, furtherTime }, i): ColumnPreview => {
     const shared = {
       column,
       samples: evenSamples(statistics.values, MOST_SAMPLES),
       low: statistics.count === 0 ? null : statistics.low,
       high: statistics.count === 0 ? null : statistics.high,
       table,
+      ...(sentinels.length === 0 ? {} : { sentinels }),
     };
     if (furtherTime) {
       const reason = 'A further column of times.';
@@ -142,6 +157,7 @@ function suggestColumns(tables: readonly DropTable[], options: PreviewOptions): 
     const unit = role === 'ignore' ? null : draft.unit;
     return { ...shared, role, unit, unitIndex, confidence, reason: sentenceOf(draft) };
   });
+  return { columns, clocks: several ? clockDoubts(roles) : [] };
 }
 
 const isTime = ({ files }: DropTable, cell: string): boolean =>
@@ -152,8 +168,9 @@ function candidateOf(
   { files }: DropTable,
   { cell, column }: { cell: string; column: string },
   table: number,
-  several: boolean,
-): Candidate & { table: number; timesMs?: Float64Array } {
+  rows: readonly NumberedRow[],
+  times: Float64Array | undefined,
+): Candidate & { table: number; sentinels: number[] } {
   const first = files[0]!.table;
   const { decimal } = first.dialect;
   const long = first.shape.kind === 'long';
@@ -161,20 +178,20 @@ function candidateOf(
   const scanned = files.flatMap(({ points }) => points.filter(({ name }) => name === cell));
   const unitCell = long ? (scanned[0]?.unitCell ?? '') : (first.units?.[place] ?? '');
   const unit = unitOfHeading(long ? column : cell).unit ?? unitOfCell(unitCell);
-  const rows = long ? [] : files.flatMap((file) => file.table.data).slice(0, MOST_ROWS);
   const cells = long ? scanned.flatMap((point) => point.cells) : rows.map((row) => row.cells[place] ?? '');
-  const timesMs = long
-    ? Float64Array.from(scanned.flatMap((point) => point.timesMs))
-    : several
-      ? timesOf(first, rows)
-      : undefined;
+  const timesMs = long ? Float64Array.from(scanned.flatMap((point) => point.timesMs)) : times;
   // A heading that does not name the point may still name its unit: "Value (°F)".
   const headed = !long && cell !== column && unit && unitCell === '' ? unit : unitCell;
-  return { column, unitCell: headed, statistics: columnStatistics(cells, decimal, unit), timesMs, table };
+  const all = columnStatistics(cells, decimal, unit);
+  const sentinels = detectSentinels(all.values, unit);
+  // What stands in place of a reading says nothing of the column.
+  const real = cells.map((text, i) => (sentinels.includes(all.values[i] ?? Number.NaN) ? '' : text));
+  const statistics = sentinels.length === 0 ? all : columnStatistics(real, decimal, unit);
+  return { column, unitCell: headed, statistics, sentinels, timesMs, table };
 }
 
-function timesOf(table: FileTable, rows: FileTable['data']): Float64Array {
-  const parser = new StampParser(table.time.plan.form, table.dialect.decimal);
+function timesOf(table: FileTable, rows: readonly NumberedRow[]): Float64Array {
+  const parser = StampParser.of(table.time.plan, table.dialect.decimal);
   return Float64Array.from(rows, ({ cells }) =>
     parser.parse(table.time.cells.map((cell) => cells[cell] ?? '').join(' ')) ? parser.ms : Number.NaN,
   );

@@ -4,6 +4,7 @@ import { LongRows } from './long-rows';
 import { ProblemLog, quoted } from './problems';
 import { RowShape, SHAPE_ROWS } from './row-shape';
 import { BLOCK_CHARACTERS, isBlankRow, linesOfRow, parseRows, RowCutter, type Newline } from './rows';
+import { DayMonthWitness } from './time-witness';
 import { StampParser } from './timestamps';
 import {
   TrendError,
@@ -49,8 +50,10 @@ class PlanReader implements TrendReader {
   private readonly problems = new ProblemLog();
   private readonly text: TextStream;
   private readonly cutter: RowCutter;
-  private readonly stamp: StampParser;
   private readonly rows: RowSink;
+  private readonly witness: DayMonthWitness;
+  /** Asked whether a cell is a time, apart from the rows' own: times may lean on the row before. */
+  private readonly probe: StampParser;
   /** Row number of the next block's first line. */
   private nextRow = 1;
   private upperHeading: readonly string[] = [];
@@ -71,7 +74,8 @@ class PlanReader implements TrendReader {
         throw new RangeError(`createTrendReader: column "${column}" is to be read but has no unit`);
     }
     this.text = new TextStream(dialect.encoding);
-    this.stamp = new StampParser(timestamp.form, dialect.decimal);
+    this.probe = StampParser.of(timestamp, dialect.decimal);
+    this.witness = new DayMonthWitness(timestamp.form, dialect.decimal);
     this.rows = shape?.kind === 'long' ? new LongRows(plan, shape, this.problems) : new WideRows(plan, this.problems);
     this.cutter = new RowCutter(
       dialect.delimiter,
@@ -97,6 +101,9 @@ class PlanReader implements TrendReader {
     this.cutter.end();
     this.learnShape();
     this.requirePlaces(this.nextRow);
+    if (this.witness.isMisreadAtEnd) throw this.witness.error();
+    this.noteDayOrMonth();
+    this.noteZeroBytes();
     return this.rows.takeAll();
   }
 
@@ -159,12 +166,31 @@ class PlanReader implements TrendReader {
   }
 
   private readRow(cells: readonly string[], row: number, places: ColumnPlaces, shape: RowShape): void {
-    if (!shape.accepts(cells, row)) return;
+    const records = shape.fits(cells) ? null : shape.unsplice(cells, row, this.isTime, places.time[0]);
+    if (records) for (const record of records) this.readRecord(record, row, places);
+    else if (shape.accepts(cells, row) && !this.readRecord(cells, row, places)) {
+      for (const record of shape.unsplice(cells, row, this.isTime, places.time[0]) ?? [])
+        this.readRecord(record, row, places);
+    }
+  }
+
+  private readonly isTime = (cell: string): boolean => this.probe.parse(cell);
+
+  /** False when the row turned out to hold more than one record. */
+  private readRecord(cells: readonly string[], row: number, places: ColumnPlaces): boolean {
+    const stamp = this.rows.stampFor(cells, row);
+    if (!stamp) return true;
     const [first, second] = places.time;
     const date = cells[first!] ?? '';
     const time = second === undefined ? date : `${date} ${cells[second] ?? ''}`;
-    if (this.stamp.parse(time)) this.rows.take(cells, row, this.stamp);
-    else this.noteBadTime(time, date, row, places);
+    if (stamp.parse(time)) {
+      this.witness.accept(stamp);
+      return this.rows.take(cells, row, stamp);
+    }
+    this.witness.refuse(time, row);
+    if (this.witness.isMisread) throw this.witness.error();
+    this.noteBadTime(time, date, row, places);
+    return true;
   }
 
   private noteBadTime(time: string, date: string, row: number, places: ColumnPlaces): void {
@@ -179,6 +205,22 @@ class PlanReader implements TrendReader {
         ? 'The time is empty. The row was left out.'
         : `${quoted(time)} is not ${FORM_WORDS[this.plan.timestamp.form]}. The row was left out.`;
     this.problems.add({ code: 'bad-time', severity: 'error', row, column, message });
+  }
+
+  private noteDayOrMonth(): void {
+    const warning = this.witness.warning();
+    if (warning === null) return;
+    const row = this.witness.firstRow ?? this.plan.dialect.firstDataRow;
+    const column = this.plan.timestamp.columns[0];
+    this.problems.add({ code: 'day-or-month', severity: 'warning', row, column, message: () => warning });
+  }
+
+  private noteZeroBytes(): void {
+    const count = this.cutter.zeroBytes;
+    if (count === 0) return;
+    const message = () =>
+      'The file holds zero bytes, as when a logger loses its power while it writes. They were dropped.';
+    this.problems.add({ code: 'zero-bytes', severity: 'warning', row: this.plan.dialect.firstDataRow, count, message });
   }
 
   private noteStrayQuote(row: number): void {

@@ -98,6 +98,8 @@ export class RowCutter {
   private pieces: string[] = [];
   private length = 0;
   private newline: Newline | null = null;
+  /** Zero bytes met and dropped: a logger that lost its power while it wrote leaves them. */
+  zeroBytes = 0;
 
   /**
    * `onBlock` gets whole rows with tidy line ends. `onStrayQuote` gets the number of line ends between the last block
@@ -128,6 +130,7 @@ export class RowCutter {
     const newline = this.newline;
     // A line feed may follow in the next piece: keep a trailing carriage return back, so that pairs stay together.
     const held = !final && newline === '\n' && text.endsWith('\r') ? '\r' : '';
+    if (text.includes('\0')) this.zeroBytes += text.split('\0').length - 1;
     text = tidyText(held ? text.slice(0, -1) : text, newline);
     for (;;) {
       const { end, strayQuote } = lastRowEnd(text, this.delimiter, newline, final);

@@ -1,6 +1,7 @@
 import { cellKind } from './cells';
 import { isMissingWord, stateOfWord } from './cell-text';
 import type { NumberedRow } from './dialect';
+import { statusMeaning } from './status-words';
 import type { TableShape } from './types';
 import { unitOfCell } from './unit-text';
 
@@ -77,10 +78,16 @@ const nameOf = (names: readonly string[], columns: readonly Column[], words: Reg
   return found && names[found.index];
 };
 
-/** The status of each reading, where a table holds a single point. */
+/** The status of each reading, where a table holds a single point: words that say how good it is, not whether a unit runs. */
 function statusBesideOne(names: readonly string[], used: readonly Column[]): string | null {
   const readings = used.filter(({ numbers, words }) => numbers + words > 0);
-  const status = used.find(({ name, numbers }) => STATUS_WORDS.test(name) && numbers === 0);
+  const status = used.find(
+    ({ name, numbers, words, names: texts }) =>
+      STATUS_WORDS.test(name) &&
+      numbers === 0 &&
+      (words === 0 || texts.size > 0) &&
+      [...texts.keys()].some((text) => statusMeaning(text) !== 'unknown'),
+  );
   return status && readings.filter((column) => column !== status).length === 1 ? names[status.index]! : null;
 }
 

@@ -30,7 +30,7 @@ export function recogniseFile(head: Uint8Array, options: PreviewOptions): FileTa
   const text = new TextDecoder(encoding).decode(head, { stream: !options.complete });
   const { dialect, heading, units, preamble, data } = recogniseTable(text, options.complete);
   const names = columnNames(heading);
-  const time = findTime(names, data, options.timeZone, dialect.decimal);
+  const time = findTime(names, data, options.timeZone, dialect.decimal, { nowMs: options.nowMs });
   const shape = shapeOf(names, data, time.cells);
   const long = shape.kind === 'long';
   return {
@@ -53,12 +53,14 @@ function usualStep(
   decimal: '.' | ',',
   pointCell: number,
 ): number | null {
-  const parser = new StampParser(time.plan.form, decimal);
   const step = new StepCounter();
   const previous = new Map<string, number>();
+  const parsers = new Map<string, StampParser>();
   for (const { cells } of data) {
-    if (!parser.parse(time.cells.map((cell) => cells[cell] ?? '').join(' '))) continue;
     const point = cells[pointCell] ?? '';
+    const parser = parsers.get(point) ?? StampParser.of(time.plan, decimal);
+    parsers.set(point, parser);
+    if (!parser.parse(time.cells.map((cell) => cells[cell] ?? '').join(' '))) continue;
     const before = previous.get(point);
     if (before !== undefined) step.add(parser.ms - before);
     previous.set(point, parser.ms);

@@ -3,6 +3,7 @@ import { StampWriter } from './gaps';
 import type { ProblemLog } from './problems';
 import { StepCounter } from './step';
 import { stampText } from './stamp-text';
+import { shiftOf } from './time-stamps';
 import { MINUTE_MS, type StampParser } from './timestamps';
 import type { DayOfColumn, ReadPlan, TrendProblem } from './types';
 import { LocalClock } from './zone-offsets';
@@ -28,7 +29,7 @@ export class Timeline {
     private readonly problems: ProblemLog,
   ) {
     this.clock = new LocalClock(plan.timeZone);
-    this.shiftMs = shiftOf(plan);
+    this.shiftMs = shiftOf(plan.timestamp, (plan.sourceStepMinutes ?? 0) * MINUTE_MS);
     const stamps = new StampWriter(this.clock, plan.timestamp);
     this.days = new DayStore(columns, plan.stepMinutes, this.step, problems, stamps);
   }
@@ -87,13 +88,4 @@ export class Timeline {
     };
     this.problems.add({ code: 'missing-hour', severity: 'warning', row, column: columns[0], message });
   }
-}
-
-/**
- * What is added to each time: the shift that was asked for, and for stamps at the end of their interval one step back (where
- * the step is not known, just out of the next interval).
- */
-function shiftOf({ timestamp, sourceStepMinutes }: ReadPlan): number {
-  const back = timestamp.stamps === 'end' ? (sourceStepMinutes ? sourceStepMinutes * MINUTE_MS : 1) : 0;
-  return (timestamp.shiftMinutes ?? 0) * MINUTE_MS - back;
 }

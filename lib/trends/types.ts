@@ -57,6 +57,8 @@ export interface ColumnMapping {
   unit: TrendUnitId | null;
   /** From 1; for roles that belong to one of several units or branches. */
   unitIndex?: number | null;
+  /** Numbers that stand in place of a reading in this column, in the file's unit. */
+  sentinels?: number[];
 }
 
 export interface ColumnPreview extends ColumnMapping {
@@ -121,6 +123,8 @@ export interface TrendPreview {
 
 /** What a preview has to know of the plant besides the file. */
 export interface PreviewOptions {
+  /** Now: dates without a year are taken for the latest that are not in the future. Left out, they cannot be read. */
+  nowMs?: number;
   /** Whether the head is the whole file; otherwise its last, cut row is left aside. */
   complete: boolean;
   timeZone: string;

@@ -285,12 +285,8 @@ describe('a body that is no trend log', () => {
     expect(await refusal(raw(csv(10), { type: 'multipart/form-data' }))).toMatchObject({ status: 400 });
   });
 
-  it('is refused with what to do instead: a workbook, a ZIP file, one of these packed in gzip', async () => {
-    const workbook = Buffer.concat([Buffer.from([0x50, 0x4b, 3, 4]), randomBytes(4000)]);
+  it('is refused with what to do instead when gzip is packed in gzip', async () => {
     const words = { status: 415, detail: expect.stringMatching(/export it as CSV/) as string };
-    expect(await refusal(form([{ name: 'week.xlsx', content: workbook }]))).toMatchObject(words);
-    expect(await refusal(raw(workbook))).toMatchObject(words);
-    expect(await refusal(raw(gzipSync(workbook)))).toMatchObject(words);
     expect(await refusal(raw(gzipSync(gzipSync(csv(100)))))).toMatchObject(words);
   });
 

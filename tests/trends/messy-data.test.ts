@@ -32,9 +32,9 @@ describe('open data beside the project', () => {
     };
 
     test.each([
-      ['20170622.csv', 1435],
+      ['20170622.csv', 1436],
       ['20171029.csv', 1440],
-      ['20180815.csv', 1437],
+      ['20180815.csv', 1438],
     ])('%s is recognised and read', (name, rows) => {
       const { preview, report } = read(name);
       expect(preview.dialect).toMatchObject({
@@ -50,18 +50,17 @@ describe('open data beside the project', () => {
       });
       expect(preview.columns[0]).toMatchObject({ column: 'Temperatur Sensor 1 [ °C]' });
       expect(report.rowsRead).toBe(rows);
-      expect(report.problems.every(({ code }) => ['long-row', 'gap', 'repeated-hour'].includes(code))).toBe(true);
+      expect(
+        report.problems.every(({ code }) => ['spliced-row', 'gap', 'repeated-hour', 'zero-bytes'].includes(code)),
+      ).toBe(true);
     });
 
-    test('two records on one line and the zero bytes before them cost that line and nothing else', () => {
+    test('of two records on one line the whole one is read; it and the zero bytes are said', () => {
       const { report } = read('20170622.csv');
-      expect(report.problems.filter(({ code }) => code === 'long-row')).toEqual([
-        expect.objectContaining({
-          row: 221,
-          count: 1,
-          message: 'The row has 33 cells where other rows have 29. Left out.',
-        }),
+      expect(report.problems.filter(({ code }) => code === 'spliced-row')).toEqual([
+        expect.objectContaining({ row: 221, count: 1, severity: 'warning' }),
       ]);
+      expect(report.problems.map(({ code }) => code)).toContain('zero-bytes');
     });
 
     test('its day of 25 hours lies on two UTC days, and both passes through the repeated hour are told apart', () => {
@@ -80,8 +79,10 @@ describe('open data beside the project', () => {
   describe('a laboratory plant with primary and secondary flow', () => {
     const original = Buffer.from(file('nist_ibal/csv/Tucson_Shift_Default.csv')).toString('latin1');
 
-    test('is refused as it is, because its times have no year', () => {
-      expect(() => previewOf(original)).toThrow(/The times in column "date_time" have no year/);
+    test('is read as it is: the year is proposed and asked, the newest that is not in the future', () => {
+      const preview = previewOf(original, { unitFlowGpm: 18, nowMs: Date.UTC(2026, 8, 15) });
+      expect(preview.timestamp).toMatchObject({ columns: ['date_time'], form: 'month/day', year: 2026 });
+      expect(preview.problems.map(({ code }) => code)).toContain('no-year');
     });
 
     const dated = original.replace(/^(\d\d\/\d\d) {2}/gm, '2026/$1  ');
@@ -90,10 +91,10 @@ describe('open data beside the project', () => {
 
     test('with a year, hour 24 ends its day and all 1,440 minutes are one day', () => {
       expect(preview).toMatchObject({
-        timestamp: { columns: ['date_time'], form: 'year/month/day' },
+        timestamp: { columns: ['date_time'], form: 'year/month/day', stamps: 'end' },
         stepMinutes: 1,
         firstRows: 1440,
-        problems: [],
+        problems: [expect.objectContaining({ code: 'end-stamps' })],
       });
     });
 
@@ -111,8 +112,9 @@ describe('open data beside the project', () => {
       expect(of(column).confidence).toBeGreaterThan(0.6);
     });
 
-    test('what its names leave open is left to a person: kW or W, psi or ft, the sensor behind pump 3', () => {
-      for (const column of ['ch1_power', 'pump3_dp', 'pump3_out_rtd']) expect(of(column).confidence).toBeLessThan(0.5);
+    test('power in W is told by the energy balance; psi or ft, and the sensor behind pump 3, are left to a person', () => {
+      expect(of('ch1_power')).toMatchObject({ role: 'unitPower', unit: 'W', unitIndex: 1 });
+      for (const column of ['pump3_dp', 'pump3_out_rtd']) expect(of(column).confidence).toBeLessThan(0.5);
     });
   });
 

@@ -129,8 +129,10 @@ describe('where the time stands', () => {
     ['spreadsheet serials', ['46223', '46223.0034722', '46223.0069444', '46223.0104167'], 'spreadsheet-serial'],
   ])('%s', (_, times, form) => {
     const preview = previewOf(withTimes(times));
-    expect(preview.timestamp).toEqual({ columns: ['Time'], form });
-    expect(preview.problems.filter(({ code }) => code !== 'missing-hour')).toEqual([]);
+    // Days that end with hour 24 and never begin with 00:00 are stamped at their ends.
+    const ends = _ === 'hour 24' ? { stamps: 'end' } : {};
+    expect(preview.timestamp).toEqual({ columns: ['Time'], form, ...ends });
+    expect(preview.problems.filter(({ code }) => code !== 'missing-hour' && code !== 'end-stamps')).toEqual([]);
   });
 
   test('one ambiguous day is read as the zone has it, and the doubt is a warning', () => {

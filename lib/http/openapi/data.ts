@@ -64,7 +64,7 @@ export const UPLOAD_OPERATIONS: readonly Operation[] = [
     method: 'post',
     path: '/plants/{plantId}/uploads',
     summary:
-      'Send a file, or several of one drop in one form. The body streams; gzip is unpacked. A raw body takes its name from `filename`.',
+      'Send a file, or several of one drop in one form. The body streams; gzip is unpacked; zip archives and workbooks are unpacked by the worker. A raw body takes its name from `filename`.',
     who: 'owner, engineer; scopes ingest and manage',
     params: PlantParams,
     query: UploadQuery,
@@ -73,6 +73,8 @@ export const UPLOAD_OPERATIONS: readonly Operation[] = [
       'text/csv': { schema: z.string() },
       'text/plain': { schema: z.string() },
       'application/gzip': { schema: file },
+      'application/zip': { schema: file },
+      'application/vnd.openxmlformats-officedocument.spreadsheetml.sheet': { schema: file },
       'application/octet-stream': { schema: file },
     },
     idempotent: true,
