@@ -43,13 +43,12 @@ const valuesOf = ({ low, high, decimals, unit }: Point, rows: number) => {
 };
 
 const records: fc.Arbitrary<PlantRecord> = fc
-  .tuple(fc.integer({ min: 12, max: 30 }), fc.subarray([...POINTS], { minLength: 2 }))
+  .tuple(fc.integer({ min: 12, max: 20 }), fc.subarray([...POINTS], { minLength: 3, maxLength: 5 }))
   .chain(([rows, points]) =>
     fc
       .tuple(...points.map((each) => valuesOf(each, rows)))
       .map((values) => ({ columns: points.map((each, i) => ({ ...each, values: values[i]! })) })),
-  )
-  .map((record) => ({ ...record, columns: record.columns.map((column) => ({ ...column })) }));
+  );
 
 const UNITS: readonly Dress['units'][] = [
   {},
@@ -64,7 +63,7 @@ const STATE_WORDS: readonly Dress['states'][] = [
   ['stopped', 'running'],
 ];
 const ZONES = ['America/New_York', 'Europe/Berlin', 'Asia/Kolkata', 'UTC', 'Australia/Sydney'];
-const BAD_WORDS = ['Bad', 'NaN', '---', '#N/A', 'null', ''];
+const BAD_WORDS = ['Bad', 'NaN', '---', '#N/A', 'null'];
 const PREAMBLES: readonly string[][] = [[], ['Trend report'], ['Site: Pellmarsh Works', 'Interval: 5 minutes', '']];
 
 /** Delimiter, decimal sign and grouping that can stand together without quotes around every number. */
@@ -81,6 +80,9 @@ const START_MS = fc
   .record({ day: fc.integer({ min: 0, max: 900 }), slot: fc.integer({ min: 0, max: 287 }) })
   .map(({ day, slot }) => Date.UTC(2024, 0, 1 + day) + slot * 300_000)
   .filter((ms) => [0, 1, 4, 5, 6, 7, 11].includes(new Date(ms).getUTCMonth()));
+
+/** Thousands of cases in some seconds: records are small. */
+const RUNS = 1500;
 
 interface Case {
   record: PlantRecord;
@@ -109,8 +111,8 @@ const cases: fc.Arbitrary<Case> = fc
   })
   .map(({ record, numbers, stepMinutes, word, newestFirst, shape, unitAt, ...rest }) => {
     const wide = shape === 'wide';
-    // A number with a comma or point that could be both is only written where something else tells.
-    const isTold = rest.stamp !== 'time-only' && rest.stamp !== 'no-year';
+    // What goes on from the row before only reads forward.
+    const mayReverse = rest.stamp !== 'time-only' && rest.stamp !== 'no-year';
     const dress: Dress = {
       ...PLAIN,
       ...rest,
@@ -118,12 +120,15 @@ const cases: fc.Arbitrary<Case> = fc
       shape,
       unitAt: wide ? unitAt : 'heading',
       stepMs: stepMinutes * 60_000,
+      startMs: rest.startMs - (rest.startMs % (stepMinutes * 60_000)),
       timeHeadings: rest.stamp === 'split' ? ['Date', 'Time'] : ['Timestamp'],
       preamble: [...rest.preamble],
       cell: (text) => (text === '' ? word : text),
-      lines: (lines) => (newestFirst && isTold ? [...lines].reverse() : lines),
+      lines: (lines) => (newestFirst && mayReverse ? [...lines].reverse() : lines),
     };
-    return { record, dress, word };
+    // Only whole numbers: nothing in the file tells a group of three digits from three digits behind the decimal sign.
+    const isWhole = record.columns.every((column) => writtenUnit(column, dress)[1] === 0 || column.unit === 'on/off');
+    return { record, dress: isWhole ? { ...dress, thousands: '' } : dress, word };
   });
 
 /** What a person confirms: the suggestion of how to read, with the roles that are known here, and each unit as suggested. */
@@ -151,18 +156,53 @@ function dayOrMonth({ stamp }: Dress, form: ReadPlan['timestamp']['form']): Read
 const show = ({ record, dress }: Case): string =>
   JSON.stringify({ ...dress, text: new TextDecoder().decode(writeRecord(record, { ...dress, encoding: 'utf-8' })) });
 
-function check(each: Case): void {
+/** A record as a log of changes: what did not change is not written. */
+const changes = cases.map(({ record, dress }): Case => {
+  const columns = record.columns.map((column) => {
+    const known = column.values.filter((value) => !Number.isNaN(value));
+    // Each value stands for some rows.
+    const values = column.values.map((_, row) => known[Math.floor(row / 3) % Math.max(1, known.length)] ?? column.low);
+    return { ...column, values };
+  });
+  return { record: { columns }, dress: { ...dress, onChange: true }, word: '' };
+});
+
+function check(each: Case, isAllowed: (wrong: string) => boolean = () => false): void {
   const { record, dress } = each;
   const texts = [{ name: 'trend.csv', bytes: writeRecord(record, dress) }];
   const options = { timeZone: dress.timeZone, nowMs: dress.startMs + 40 * 86_400_000 };
   const preview = previewTexts(texts, options);
   const read = readConfirmed(texts, preview, dress.stepMs / 60_000, (plan) => confirm(each, preview, plan));
-  const wrong = differences(record, dress, read);
+  const wrong = differences(record, dress, read).filter((text) => !isAllowed(text));
   if (wrong.length > 0) throw new Error(`${wrong.slice(0, 4).join('\n')}\n${show(each)}`);
 }
 
 describe('a plant record in any dress', () => {
   test('reads back to the same numbers, to the written digits', () => {
-    fc.assert(fc.property(cases, check), { numRuns: 1500 });
-  }, 60_000);
+    fc.assert(
+      fc.property(cases, (each) => check(each)),
+      { numRuns: RUNS },
+    );
+  }, 120_000);
+
+  test('that was logged on change reads back to the same numbers or to none, never to others', () => {
+    // With so few rows a value may be taken for one that is logged at a distance, and then does not stand so long.
+    const isMissing = (wrong: string) => wrong.endsWith('was read as undefined');
+    fc.assert(
+      fc.property(changes, (each) => check(each, isMissing)),
+      { numRuns: RUNS / 3 },
+    );
+  }, 120_000);
+
+  test('a chiller’s status beside one other point is a point, not the status of its readings', () => {
+    const values = Array.from({ length: 24 }, (_, row) => (row < 12 ? 0 : 1));
+    const [flow, status] = [POINTS[4]!, POINTS[5]!];
+    const record = {
+      columns: [
+        { ...flow, values: values.map((on, row) => 400 * on + 450 + row) },
+        { ...status, values },
+      ],
+    };
+    check({ record, dress: { ...PLAIN, states: ['stopped', 'running'] }, word: '' });
+  });
 });
