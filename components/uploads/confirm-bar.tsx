@@ -4,6 +4,7 @@ import { Checkbox } from '@/components/ui/field';
 import { formatNumber } from '@/lib/client/format';
 
 export interface ConfirmBarProps {
+  noun: 'column' | 'point';
   openCount: number;
   /** What is wrong with how the times are read. */
   wrong: string | null;
@@ -19,7 +20,7 @@ export interface ConfirmBarProps {
 
 /** What is still open, undo, and the button that confirms. */
 export function ConfirmBar(props: ConfirmBarProps) {
-  const { openCount, wrong, again, changed, ready, busy, remember, onRemember, onUndo } = props;
+  const { noun, openCount, wrong, again, changed, ready, busy, remember, onRemember, onUndo } = props;
   return (
     <div className="mt-3 flex flex-wrap items-center justify-between gap-x-6 gap-y-3">
       <Checkbox checked={remember} onChange={onRemember}>
@@ -28,12 +29,12 @@ export function ConfirmBar(props: ConfirmBarProps) {
       <div className="flex flex-wrap items-center gap-2.5">
         <span role="status" className="mr-2 text-ink-2">
           {openCount > 0
-            ? `${formatNumber(openCount)} ${openCount === 1 ? 'column still needs' : 'columns still need'} a role, a unit or “leave out”`
+            ? `${formatNumber(openCount)} ${openCount === 1 ? `${noun} still needs` : `${noun}s still need`} a role, a unit or “leave out”`
             : wrong !== null
               ? `${wrong}.`
               : again && !changed
                 ? 'As it was read; nothing is changed yet.'
-                : 'Every column is decided.'}
+                : `Every ${noun} is decided.`}
         </span>
         <Button onClick={onUndo} disabled={!changed}>
           <Undo2 size={16} strokeWidth={1.5} aria-hidden="true" />

@@ -1,6 +1,7 @@
 'use client';
 import { Upload as UploadIcon } from 'lucide-react';
 import { useEffect, useRef, useState } from 'react';
+import { TextButton } from '@/components/ui/button';
 import { CHOOSABLE, droppedFiles } from '@/lib/client/dropped-files';
 import type { UploadLimit } from './use-sending';
 
@@ -62,9 +63,9 @@ export function DropZone({ plantName, limit, onFiles }: DropZoneProps) {
           <p className="text-ink-2">
             CSV, TSV, TXT or XLSX, plain or in ZIP or GZ; several files or a whole folder at once; a column a point, a
             row a reading, or a file a point. Up to {limit.words}.{' '}
-            <button type="button" className="link text-ink phone:min-h-11" onClick={() => input.current?.click()}>
+            <TextButton className="text-ink" onClick={() => input.current?.click()}>
               Choose files
-            </button>
+            </TextButton>
           </p>
         </div>
         <input

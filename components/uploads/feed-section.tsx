@@ -48,7 +48,7 @@ export function FeedSection({ plantId, timeZone, mayManage }: FeedSectionProps) 
           <pre
             aria-label="Line that uploads a file"
             tabIndex={0}
-            className="overflow-x-auto border-l-[3px] border-ink bg-tint px-3.5 py-2.5 text-small leading-5 break-all whitespace-pre-wrap"
+            className="overflow-x-auto border-l-[3px] border-ink bg-tint px-3.5 py-2.5 text-small leading-5 [overflow-wrap:anywhere] whitespace-pre-wrap"
           >
             {line}
           </pre>

@@ -13,7 +13,7 @@ import { previewQuery, uploadQuery, uploadsQuery } from '@/lib/client/queries';
 import { filesWords } from '@/lib/client/table-words';
 import type { Preview, Upload } from '@/lib/schemas/upload';
 import { ConfirmBar } from './confirm-bar';
-import { mappingBody, openColumns, timesProblem, withoutOpen, type ColumnAnswer } from './mapping-form';
+import { mappingBody, nounOf, openColumns, timesProblem, withoutOpen, type ColumnAnswer } from './mapping-form';
 import { MappingList } from './mapping-list';
 import { isTimeDoubt } from './mapping-times';
 import { ProblemTable } from './problem-table';
@@ -77,7 +77,10 @@ export function MappingForm({ plantId, upload, preview, unitCount, mayConfirm, c
         onTimes={(times, field) => change((now) => ({ ...now, times }), field)}
         onZone={(timeZone) => change((now) => ({ ...now, timeZone }), 'zone')}
       />
-      <Section title="Columns" sub="suggested role, why, and the data itself">
+      <Section
+        title={nounOf(preview) === 'point' ? 'Points' : 'Columns'}
+        sub="suggested role, why, and the data itself"
+      >
         <MappingList
           preview={preview}
           answers={answers.columns}
@@ -89,6 +92,7 @@ export function MappingForm({ plantId, upload, preview, unitCount, mayConfirm, c
         />
         {closedBecause === null ? (
           <ConfirmBar
+            noun={nounOf(preview)}
             openCount={open.length}
             wrong={wrong}
             again={again}

@@ -80,6 +80,10 @@ export const unitsFor = (role: PointRoleName): TrendUnitId[] =>
 export const isOpen = ({ role, unit }: ColumnAnswer): boolean =>
   role === null || (role !== IGNORE_ROLE && unit === null);
 
+/** What is mapped: columns, or, where every table has a row a reading, points. */
+export const nounOf = ({ tables }: Preview): 'column' | 'point' =>
+  tables.every(({ shape }) => shape.kind === 'long') ? 'point' : 'column';
+
 /** Columns that still lack a role or a unit. */
 export const openColumns = (answers: readonly ColumnAnswer[]): ColumnAnswer[] => answers.filter(isOpen);
 

@@ -6,7 +6,7 @@ import { usePhone } from '@/components/ui/use-phone';
 import { EN_DASH, formatNumber } from '@/lib/client/format';
 import { dialectWords, filesWords, shapeWords } from '@/lib/client/table-words';
 import type { Preview } from '@/lib/schemas/upload';
-import { clashWords, openColumns, roleCounts, type ColumnAnswer } from './mapping-form';
+import { clashWords, nounOf, openColumns, roleCounts, type ColumnAnswer } from './mapping-form';
 import { MappingRow } from './mapping-row';
 import { ROWS_A_PAGE, useMappingList, type ListedRow, type MappingList as Listing } from './use-mapping-list';
 
@@ -31,6 +31,7 @@ export function MappingList(props: MappingListProps) {
   const list = useMappingList(preview, answers, phone, foldKnown);
   const counts = roleCounts(answers);
   const open = openColumns(answers).length;
+  const noun = nounOf(preview);
   const long = preview.columns.length >= WORTH_A_FILTER;
   return (
     <>
@@ -39,7 +40,7 @@ export function MappingList(props: MappingListProps) {
           {long ? (
             <Input
               type="search"
-              aria-label="Find columns by name or role"
+              aria-label={`Find ${noun}s by name or role`}
               placeholder="find by name or role"
               value={list.filter}
               onChange={(event) => list.setFilter(event.target.value)}
@@ -57,7 +58,7 @@ export function MappingList(props: MappingListProps) {
           {list.known > 0 ? (
             <TextButton aria-expanded={list.showsKnown} onClick={() => list.setShowsKnown(!list.showsKnown)}>
               {list.showsKnown ? 'fold away ' : ''}
-              {formatNumber(list.known)} {list.known === 1 ? 'column' : 'columns'} read as in earlier files
+              {formatNumber(list.known)} {list.known === 1 ? noun : `${noun}s`} read as in earlier files
             </TextButton>
           ) : null}
         </div>
@@ -69,7 +70,7 @@ export function MappingList(props: MappingListProps) {
       >
         <thead className="phone:sr-only">
           <tr>
-            <HeadCell>{preview.tables.every(({ shape }) => shape.kind === 'long') ? 'point' : 'column'}</HeadCell>
+            <HeadCell>{noun}</HeadCell>
             <HeadCell>first rows</HeadCell>
             <HeadCell numeric>low to high</HeadCell>
             <HeadCell>role</HeadCell>
@@ -101,7 +102,7 @@ export function MappingList(props: MappingListProps) {
       </Table>
       {list.rows.length === 0 ? (
         <p className="py-2.5 text-ink-2">
-          {list.filter !== '' || list.onlyOpen ? 'No column is like that.' : 'Nothing here is new.'}
+          {list.filter !== '' || list.onlyOpen ? 'None is like that.' : 'Nothing here is new.'}
         </p>
       ) : null}
       <Pager list={list} />

@@ -13,7 +13,7 @@ import { plantQuery, previewQuery, uploadQuery } from '@/lib/client/queries';
 import { dialectWords, shapeWords } from '@/lib/client/table-words';
 import type { Preview, Upload } from '@/lib/schemas/upload';
 import { MappingForm } from './mapping-columns';
-import { SURE_ENOUGH } from './mapping-form';
+import { nounOf, SURE_ENOUGH } from './mapping-form';
 import { STATUS_WORDS } from './uploads-words';
 
 export interface MappingPageProps {
@@ -98,7 +98,7 @@ function againWords({ from, to }: Upload, timeZone: string): string {
 
 function lead(preview: Preview, read: boolean): string {
   const { columns, confirmed } = preview;
-  const noun = preview.tables.every(({ shape }) => shape.kind === 'long') ? 'point' : 'column';
+  const noun = nounOf(preview);
   const counted = (count: number) => `${formatNumber(count)} ${count === 1 ? noun : `${noun}s`}`;
   if (read && confirmed) {
     const used = confirmed.columns.filter(({ role }) => role !== 'ignore').length;

@@ -44,13 +44,15 @@ export const MappingRow = memo(function MappingRow({
     <tr
       data-selected={open}
       data-column={column.column}
-      className="phone:grid phone:grid-cols-[minmax(0,1fr)_auto] phone:gap-x-3 phone:gap-y-1.5 phone:border-b phone:border-rule phone:px-2 phone:py-3 phone:[&>*]:border-0! phone:[&>*]:p-0!"
+      className="[&>*]:align-middle! phone:grid phone:grid-cols-[minmax(0,1fr)_auto] phone:gap-x-3 phone:gap-y-1.5 phone:border-b phone:border-rule phone:px-2 phone:py-3 phone:[&>*]:border-0! phone:[&>*]:p-0!"
     >
-      <RowHead className="font-semibold! break-all">{column.column}</RowHead>
-      <td className="phone:row-start-2">
+      <RowHead className="font-semibold! break-words [overflow-wrap:anywhere] phone:col-start-1 phone:row-start-1">
+        {column.column}
+      </RowHead>
+      <td className="phone:col-span-2 phone:row-start-2">
         <Sparkline values={column.samples} dim={role === IGNORE_ROLE} label={`The values of ${column.column}`} />
       </td>
-      <Cell numeric className="text-ink-2 phone:row-start-1">
+      <Cell numeric className="text-ink-2 phone:col-start-2 phone:row-start-1">
         {column.low === null ? MISSING : `${printed(column.low)} ${EN_DASH} ${printed(column.high)}`}
       </Cell>
       <td className="phone:col-span-2">

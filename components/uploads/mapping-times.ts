@@ -164,6 +164,8 @@ export interface TimeExample {
   counted: string | null;
   /** The text says its own offset from UTC: the zone does not matter to it. */
   hasOffset: boolean;
+  /** Days from now: no reading can be. */
+  ahead: boolean;
 }
 
 /** What the first row's time means as answered; null when there is no row to show it on. */
@@ -172,7 +174,7 @@ export function timeExample(table: Table, answer: TimeAnswer, timeZone: string, 
   if (text === undefined) return null;
   const stamp = readStamp(text, answer.form, table, answer.year);
   if (stamp === null || (needsYear(answer.form) && answer.year === null))
-    return { text, read: null, counted: null, hasOffset: false };
+    return { text, read: null, counted: null, hasOffset: false, ahead: false };
   const wallMs = (stamp.hasOffset ? wallOfInstant(stamp.ms, timeZone) : stamp.ms) + answer.shiftMinutes * 60_000;
   const backMinutes = answer.stamps === 'end' ? (table.stepMinutes ?? 0) : 0;
   return {
@@ -180,6 +182,7 @@ export function timeExample(table: Table, answer: TimeAnswer, timeZone: string, 
     read: wallWords(wallMs),
     counted: backMinutes > 0 ? wallWords(wallMs - backMinutes * 60_000) : null,
     hasOffset: stamp.hasOffset,
+    ahead: wallMs > Date.now() + 2 * DAY_MS,
   };
 }
 

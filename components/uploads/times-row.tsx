@@ -222,6 +222,7 @@ function OrderQuestion({ preview, index, answer, timeZone, disabled, orders, onC
           <span>
             <b>{form.startsWith('day') ? 'Day first' : 'Month first'}</b>: “<i>{texts[0]}</i>” is{' '}
             {readAs(form, 0) ?? 'not a time'}
+            {timeExample(table, { ...answer, form }, timeZone)?.ahead === true ? ', which lies ahead' : ''}
             {texts.length > 1 ? (
               <span className="text-ink-2">
                 ; row {table.dialect.firstDataRow + texts.length - 1} is {readAs(form, -1) ?? 'not a time'}

@@ -33,22 +33,24 @@ export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
     <>
       <tr className={ROW_ON_PHONE} data-upload={upload.id} data-status={upload.status}>
         <RowHead className="font-semibold! break-words [overflow-wrap:anywhere]">{upload.filename}</RowHead>
-        <Cell numeric>{upload.sizeBytes === 0 ? MISSING : formatBytes(upload.sizeBytes)}</Cell>
+        <Cell numeric className={upload.sizeBytes === 0 ? 'phone:hidden' : ''}>
+          {upload.sizeBytes === 0 ? MISSING : formatBytes(upload.sizeBytes)}
+        </Cell>
         <td>
           <State upload={upload} />
         </td>
-        <td className="phone:text-end">
+        <td className={upload.rowsRead > 0 ? 'phone:text-end' : 'phone:hidden'}>
           {upload.rowsRead > 0 ? `${formatNumber(upload.rowsRead)} rows` : MISSING}
           {upload.samplesStored > 0 ? (
             <span className="text-ink-2">, {formatNumber(upload.samplesStored)} values</span>
           ) : null}
         </td>
-        <td>
+        <td className={upload.from === null ? 'phone:hidden' : ''}>
           {upload.from !== null && upload.to !== null
             ? formatPeriod(Date.parse(upload.from), Date.parse(upload.to) + 1, timeZone)
             : MISSING}
         </td>
-        <td className="phone:text-end">
+        <td className={upload.problems.length === 0 ? 'phone:hidden' : 'phone:text-end'}>
           {upload.problems.length === 0 ? (
             MISSING
           ) : (
