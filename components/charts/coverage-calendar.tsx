@@ -59,9 +59,9 @@ export function CoverageCalendar({ from, rows, describe }: CoverageCalendarProps
         onPointerLeave={() => {
           if (!held) setPlace(null);
         }}
-        className="grid grid-cols-[150px_minmax(0,1fr)_52px] phone:grid-cols-[104px_minmax(0,1fr)_40px]"
+        className="grid grid-cols-[184px_minmax(0,1fr)_52px] phone:grid-cols-[minmax(0,1fr)_44px]"
       >
-        <div aria-hidden="true" ref={box} className="relative col-start-2 h-5 text-micro text-ink-2">
+        <div aria-hidden="true" ref={box} className="relative col-start-2 h-5 text-micro text-ink-2 phone:col-start-1">
           {weeks
             .filter((_, index) => index % every === 0)
             .map((each) => (

@@ -30,7 +30,11 @@ export function CoverageRowBars({ row, days, weeks, widthPx, marked, onPoint }: 
   };
   return (
     <>
-      <span aria-hidden="true" title={row.label} className="narrow col-start-1 truncate pr-2 text-small font-semibold">
+      <span
+        aria-hidden="true"
+        title={row.label}
+        className="narrow col-start-1 truncate pr-2 text-small font-semibold phone:col-span-2 phone:mt-1"
+      >
         {row.label}
       </span>
       <svg
@@ -39,7 +43,7 @@ export function CoverageRowBars({ row, days, weeks, widthPx, marked, onPoint }: 
         height="24"
         viewBox={`0 0 ${widthPx} 24`}
         preserveAspectRatio="none"
-        className="block cursor-crosshair"
+        className="block cursor-crosshair phone:col-start-1"
         onPointerMove={point(false)}
         onPointerDown={point(true)}
       >

@@ -93,7 +93,7 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
 function againWords({ from, to }: Upload, timeZone: string): string {
   const period = from === null || to === null ? null : formatPeriod(Date.parse(from), Date.parse(to) + 1, timeZone);
   const days = period === null ? 'the days it holds are' : `${period} is`;
-  return `Change what is wrong and confirm: the stored file is read again with the new answers, ${days} filled anew, and the results are worked out again. Until that is done these days stand without this file’s values. Nothing has to be sent again.`;
+  return `Change what is wrong and confirm: the stored file is read again with the new answers, ${days} filled anew, and the results are worked out again. Until that is done the record stands without this file’s values. Nothing has to be sent again.`;
 }
 
 function lead(preview: Preview, read: boolean): string {

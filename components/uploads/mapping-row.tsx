@@ -1,5 +1,5 @@
 'use client';
-import { memo } from 'react';
+import { memo, useState } from 'react';
 import { ConfidenceBar } from '@/components/charts/confidence-bar';
 import { Sparkline } from '@/components/charts/sparkline';
 import { Select } from '@/components/ui/select';
@@ -8,7 +8,7 @@ import { EN_DASH, formatNumber, MISSING } from '@/lib/client/format';
 import { IGNORE_ROLE, pointRole, type MappedRole } from '@/lib/point-roles';
 import type { Preview } from '@/lib/schemas/upload';
 import { TREND_UNITS } from '@/lib/units';
-import { isOpen, ROLE_OPTIONS, unitsFor, withRole, type ColumnAnswer } from './mapping-form';
+import { isOpen, roleLabel, ROLE_OPTIONS, unitsFor, withRole, type ColumnAnswer } from './mapping-form';
 
 export interface MappingRowProps {
   column: Preview['columns'][number];
@@ -18,6 +18,9 @@ export interface MappingRowProps {
   disabled: boolean;
   onChange: (answer: ColumnAnswer) => void;
 }
+
+const chosen = <Value extends string>(value: Value | null, label: string): { value: Value; label: string }[] =>
+  value === null ? [] : [{ value, label }];
 
 const printed = (value: number | null): string =>
   value === null ? MISSING : formatNumber(value, { decimals: Math.abs(value) >= 100 ? 0 : 1 });
@@ -35,6 +38,9 @@ export const MappingRow = memo(function MappingRow({
   onChange,
 }: MappingRowProps) {
   const { role } = answer;
+  // Until someone comes near, each list holds its chosen entry alone: forty rows of full lists take seconds to draw.
+  const [awake, setAwake] = useState(false);
+  const wake = () => setAwake(true);
   const named = role !== null && role !== IGNORE_ROLE ? pointRole(role) : null;
   const open = isOpen(answer);
   const numbers = Array.from({ length: Math.max(unitCount, answer.unitIndex ?? 1, 1) }, (_, index) =>
@@ -42,6 +48,8 @@ export const MappingRow = memo(function MappingRow({
   );
   return (
     <tr
+      onPointerEnter={wake}
+      onFocus={wake}
       data-selected={open}
       data-column={column.column}
       className="[&>*]:align-middle! phone:grid phone:grid-cols-[minmax(0,1fr)_auto] phone:gap-x-3 phone:gap-y-1.5 phone:border-b phone:border-rule phone:px-2 phone:py-3 phone:[&>*]:border-0! phone:[&>*]:p-0!"
@@ -58,7 +66,7 @@ export const MappingRow = memo(function MappingRow({
       <td className="phone:col-span-2">
         <Select<MappedRole>
           value={role}
-          options={ROLE_OPTIONS}
+          options={awake ? ROLE_OPTIONS : chosen(role, roleLabel(role))}
           placeholder="choose a role"
           disabled={disabled}
           aria-label={`Role of ${column.column}`}
@@ -74,7 +82,11 @@ export const MappingRow = memo(function MappingRow({
             {named.quantity === 'status' ? null : (
               <Select
                 value={answer.unit}
-                options={unitsFor(role).map((id) => ({ value: id, label: TREND_UNITS[id].label }))}
+                options={
+                  awake
+                    ? unitsFor(role).map((id) => ({ value: id, label: TREND_UNITS[id].label }))
+                    : chosen(answer.unit, answer.unit === null ? '' : TREND_UNITS[answer.unit].label)
+                }
                 placeholder="choose"
                 disabled={disabled}
                 aria-label={`Unit of ${column.column}`}

@@ -221,9 +221,10 @@ function readsBothWays(table: Table): boolean {
   return other !== undefined && text !== undefined && readStamp(text, other, table, year ?? null) !== null;
 }
 
-function tableOfClock({ columns }: Preview, { column, message }: Pick<Problem, 'column' | 'message'>): number | null {
-  const name = column ?? /^"([^"]+)"/.exec(message)?.[1];
-  return columns.find((each) => each.column === name)?.table ?? null;
+/** The table whose clock a doubt is about: its sentence begins with one of the table's columns. */
+function tableOfClock({ columns }: Preview, { column, message }: Pick<Problem, 'column' | 'message'>): number {
+  const about = columns.find((each) => each.column === column || message.startsWith(`"${each.column}" `));
+  return about?.table ?? 0;
 }
 
 /** The shift that a doubt about two clocks proposes, in minutes; null when its sentence names none. */

@@ -121,8 +121,8 @@ function State({ upload }: { upload: Upload }) {
   switch (upload.status) {
     case 'done':
       return (
-        <span className="inline-flex items-center gap-1.5">
-          <Check size={16} strokeWidth={1.5} aria-hidden="true" />
+        <span className="whitespace-nowrap">
+          <Check size={16} strokeWidth={1.5} aria-hidden="true" className="mr-1.5 -mt-0.5 inline align-middle" />
           {words}
         </span>
       );
