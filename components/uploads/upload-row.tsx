@@ -59,10 +59,10 @@ export function UploadRow({ plantId, timeZone, upload, may }: UploadRowProps) {
             </TextButton>
           )}
         </td>
-        <Cell numeric className="text-ink-2 phone:text-start!">
+        <Cell numeric className="text-ink-2 phone:col-start-1 phone:text-start!">
           {formatDayTime(Date.parse(upload.createdAt), timeZone)}
         </Cell>
-        <Cell numeric>
+        <Cell numeric className="phone:col-start-2">
           {may.map ? <MapLink upload={upload} href={mapping} /> : null}
           {may.remove ? <RemoveUpload plantId={plantId} upload={upload} timeZone={timeZone} /> : null}
         </Cell>
