@@ -1,10 +1,10 @@
 import fc from 'fast-check';
-import { describe, expect, test } from 'vitest';
+import { describe, test } from 'vitest';
 import type { PlantRecord, RecordColumn } from '@/fixtures/trends/record';
 import { STAMP_NAMES } from '@/fixtures/trends/stamps';
 import { headingOf, PLAIN, TEXT_ENCODINGS, writeRecord, writtenUnit, type Dress } from '@/fixtures/trends/write-record';
 import type { ReadPlan, TrendPreview } from '@/lib/trends';
-import { TREND_UNITS, type TrendUnitId } from '@/lib/units';
+import type { TrendUnitId } from '@/lib/units';
 import { differences, previewTexts, readConfirmed } from './gallery-support';
 
 // The writer is the fixtures' (fixtures/trends/write-record.ts): it shares nothing with the reader but the list of units.
