@@ -8,7 +8,8 @@ class MeasuringObserver implements ResizeObserver {
   constructor(private readonly callback: ResizeObserverCallback) {}
   observe(target: Element): void {
     const contentRect = new DOMRect(0, 0, MEASURED_WIDTH_PX, 300);
-    const entry = { target, contentRect, borderBoxSize: [], contentBoxSize: [], devicePixelContentBoxSize: [] };
+    const size = [{ inlineSize: MEASURED_WIDTH_PX, blockSize: 300 }];
+    const entry = { target, contentRect, borderBoxSize: size, contentBoxSize: size, devicePixelContentBoxSize: size };
     queueMicrotask(() => this.callback([entry], this));
   }
   unobserve(): void {
