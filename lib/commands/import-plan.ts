@@ -7,7 +7,7 @@ import { PlantSettings } from '../schemas/plant';
 import { ConfirmMapping, Preview } from '../schemas/upload';
 import { PointScan, type ScannedPoint } from '../trends/point-scan';
 import { previewDrop, type FileHead } from '../trends/preview';
-import { recogniseFile } from '../trends/table';
+import { recogniseFile, type FileTable } from '../trends/table';
 import {
   TrendError,
   type ColumnMapping,
@@ -136,23 +136,23 @@ async function previewFiles(
     signal.throwIfAborted();
     const head = (await readChunk(plant.organizationId, upload.id, file.index, 0)) ?? new Uint8Array();
     const complete = file.sizeBytes <= head.length;
-    const points = complete ? undefined : await pointsOf(upload, plant, file, head, hints, signal);
-    heads.push({ name: file.name, head, complete, points });
+    const table = complete ? undefined : (tableOf(head, hints) ?? undefined);
+    const points =
+      table?.shape.kind === 'long' ? await scanPoints(upload, plant, file, head, table, signal) : undefined;
+    heads.push({ name: file.name, head, complete, table, points });
   }
   return previewDrop(heads, { ...hints, complete: false });
 }
 
-/** The points of a file that has a row a reading, from all of it; undefined for any other. */
-async function pointsOf(
+/** The points of a file that has a row a reading, from all of it. */
+async function scanPoints(
   upload: Upload,
   plant: Plant,
   file: TextFile,
   head: Uint8Array,
-  hints: Omit<PreviewOptions, 'complete'>,
+  table: FileTable,
   signal: AbortSignal,
-): Promise<ScannedPoint[] | undefined> {
-  const table = tableOf(head, hints);
-  if (table?.shape.kind !== 'long') return undefined;
+): Promise<ScannedPoint[]> {
   const scan = new PointScan(table);
   scan.push(head);
   for (let seq = 1; ; seq++) {

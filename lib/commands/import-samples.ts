@@ -46,7 +46,7 @@ export async function importSamples(
 
   const points = await inTenant((em) => ensurePoints(em, owner, plan.columns));
 
-  const written = new Set<string>();
+  const stored = new Set<string>();
   const write = async (file: FilePlan, days: readonly DayOfColumn[], rowsRead: number, progress: number) => {
     const incoming = days.flatMap((each): PointDay[] => {
       const pointId = points[file.columns[each.column] ?? -1];
@@ -54,13 +54,13 @@ export async function importSamples(
     });
     await inTenant(async (em) => {
       const again = new Set(
-        incoming.filter((each) => written.has(`${each.day}/${each.pointId}`)).map((each) => each.day),
+        incoming.filter((each) => stored.has(`${each.day}/${each.pointId}`)).map((each) => each.day),
       );
       if (again.size > 0) mergeInto(incoming, await readLayers(em, owner, [...again]));
       await writeLayers(em, owner, incoming);
       await query(em, `update upload set rows_read = $2, progress = $3 where id = $1`, [upload.id, rowsRead, progress]);
     });
-    for (const each of incoming) written.add(`${each.day}/${each.pointId}`);
+    for (const each of incoming) stored.add(`${each.day}/${each.pointId}`);
   };
 
   const reports: ReadReport[] = [];
@@ -71,21 +71,36 @@ export async function importSamples(
   const progress = () => (0.9 * bytesRead) / Math.max(1, totalBytes);
   for (const file of plan.files) {
     const reader = createTrendReader(file.plan);
-    for (let seq = 0; ; seq++) {
+    const chunkAt = (seq: number) => readChunk(owner.organizationId, upload.id, file.file.index, seq);
+    // The database works while this process reads on: the next chunk is fetched and the last days are written meanwhile,
+    // one of each at a time.
+    let next = ahead(chunkAt(0));
+    let written = Promise.resolve();
+    for (let seq = 1; ; seq++) {
       hooks.signal.throwIfAborted();
-      const chunk = await readChunk(owner.organizationId, upload.id, file.file.index, seq);
+      const chunk = await next;
       if (!chunk) break;
+      next = ahead(chunkAt(seq));
       reader.push(chunk);
       bytesRead += chunk.length;
-      await write(file, reader.takeOldestDays(OPEN_DAYS), rowsBefore + reader.report().rowsRead, progress());
+      const days = reader.takeOldestDays(OPEN_DAYS);
+      await written;
+      written = ahead(write(file, days, rowsBefore + reader.rowsRead, progress()));
       await new Promise((resolve) => setImmediate(resolve)); // lets the heartbeat through
     }
-    await write(file, reader.finish(), rowsBefore + reader.report().rowsRead, progress());
+    await written;
+    await write(file, reader.finish(), rowsBefore + reader.rowsRead, progress());
     const report = reader.report();
     rowsBefore += report.rowsRead;
     reports.push(plan.files.length > 1 ? inFile(report, file.file.name) : report);
   }
-  return { ...combineReports(reports), days: [...new Set([...written].map((key) => key.slice(0, 10)))].sort() };
+  return { ...combineReports(reports), days: [...new Set([...stored].map((key) => key.slice(0, 10)))].sort() };
+}
+
+/** A promise that is awaited later: its failure is met there, not before. */
+function ahead<Result>(promise: Promise<Result>): Promise<Result> {
+  promise.catch(() => undefined);
+  return promise;
 }
 
 /** Problems of a drop of several files say which file they are of. */

@@ -37,20 +37,25 @@ export function seenOf(day: DayBuffer, column: number, pace: Pace): Seen {
   if (blanks === 0 && pace.isRegular)
     return { cells, blanks, rhythm: { distances: Math.max(0, cells - 1), usualMs: pace.holdMs, heartbeatMs: 0 } };
   const timesMs = new Float64Array(cells);
+  const read = new Float64Array(cells);
   let rising = true;
   let n = 0;
   for (let i = 0, at = column; i < count; i++, at += columns) {
     if (values[at] === BLANK) continue;
     timesMs[n] = day.timesMs[i]!;
+    read[n] = values[at]!;
     if (n > 0 && timesMs[n]! <= timesMs[n - 1]!) rising = false;
     n++;
   }
-  return { cells, blanks, rhythm: rhythmOf(rising ? timesMs : distinct(timesMs)) };
+  return { cells, blanks, rhythm: rising ? rhythmOf(timesMs, read) : rhythmInOrder(timesMs, read) };
 }
 
-function distinct(timesMs: Float64Array): Float64Array {
-  timesMs.sort();
-  return timesMs.filter((time, i) => i === 0 || time !== timesMs[i - 1]);
+/** Of readings in any order; of several at one instant the last counts. */
+function rhythmInOrder(timesMs: Float64Array, read: Float64Array): Rhythm {
+  const order = Uint32Array.from(timesMs, (_, i) => i).sort((a, b) => timesMs[a]! - timesMs[b]! || a - b);
+  const kept = order.filter((at, i) => timesMs[order[i + 1] ?? -1] !== timesMs[at]);
+  const pick = (from: Float64Array) => Float64Array.from(kept, (at) => from[at]!);
+  return rhythmOf(pick(timesMs), pick(read));
 }
 
 /**

@@ -71,9 +71,10 @@ export class PointScan {
   }
 
   private readBlock(block: string, newline: Newline): void {
+    const mayHoldLines = block.includes('"');
+    if (!mayHoldLines && this.nextRow > this.table.dialect.firstDataRow) return this.readPlainBlock(block, newline);
     const rows = parseRows(block, this.table.dialect.delimiter, newline);
     if (block.endsWith(newline)) rows.pop();
-    const mayHoldLines = block.includes('"');
     const { headerRow, firstDataRow, upperHeaderRow } = this.table.dialect;
     for (const cells of rows) {
       const row = this.nextRow;
@@ -81,6 +82,22 @@ export class PointScan {
       if (row === upperHeaderRow) this.upper = cells;
       if (row === headerRow) this.place(columnNames(joinedHeading(this.upper, cells)));
       if (row >= firstDataRow && row !== headerRow) this.take(cells);
+    }
+  }
+
+  /** Most lines only count: their point's name is all that is cut out of them. */
+  private readPlainBlock(block: string, newline: Newline): void {
+    const { delimiter } = this.table.dialect;
+    const { point: place } = this.cell;
+    for (let start = 0; start < block.length;) {
+      const lineEnd = block.indexOf(newline, start);
+      const end = lineEnd === -1 ? block.length : lineEnd;
+      this.nextRow++;
+      const name = cellOf(block, start, end, delimiter, place);
+      const point = name === undefined ? undefined : this.points.get(name);
+      if (point && point.count % point.every !== 0) point.count++;
+      else if (name !== undefined) this.take(block.slice(start, end).split(delimiter));
+      start = end + 1;
     }
   }
 
@@ -114,6 +131,18 @@ export class PointScan {
     this.points.set(detached(cell), point);
     return point;
   }
+}
+
+/** One cell of a line that holds no quotation mark; undefined when the line is shorter. */
+function cellOf(text: string, start: number, end: number, delimiter: string, place: number): string | undefined {
+  let from = start;
+  for (let cell = 0; cell < place; cell++) {
+    const at = text.indexOf(delimiter, from);
+    if (at === -1 || at >= end) return undefined;
+    from = at + 1;
+  }
+  const to = text.indexOf(delimiter, from);
+  return text.slice(from, to === -1 || to > end ? end : to);
 }
 
 function thin(point: Kept): void {

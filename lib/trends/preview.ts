@@ -30,6 +30,8 @@ export interface FileHead {
   name: string;
   head: Uint8Array;
   complete: boolean;
+  /** What was recognised of the head already. */
+  table?: FileTable;
   points?: ScannedPoint[];
 }
 
@@ -81,8 +83,8 @@ export function previewDrop(heads: readonly FileHead[], options: PreviewOptions)
   };
 }
 
-function dropFile({ name, head, complete, points }: FileHead, options: PreviewOptions): DropFile {
-  const table = recogniseFile(head, { ...options, complete });
+function dropFile({ name, head, complete, table: seen, points }: FileHead, options: PreviewOptions): DropFile {
+  const table = seen ?? recogniseFile(head, { ...options, complete });
   const found = table.shape.kind === 'wide' ? [] : (points ?? pointsOfHead(head, complete, table));
   return { name, head, complete, table, points: found };
 }

@@ -107,6 +107,10 @@ class PlanReader implements TrendReader {
     return this.rows.takeAll();
   }
 
+  get rowsRead(): number {
+    return this.rows.rowsRead;
+  }
+
   report(): ReadReport {
     const { rowsRead, samplesStored, firstMs, lastMs } = this.rows;
     const problems = [...this.problems.list(), ...this.rows.disorder()].sort((a, b) => (a.row ?? 0) - (b.row ?? 0));

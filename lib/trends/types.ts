@@ -184,6 +184,8 @@ export interface TrendReader {
   takeOldestDays(keepOpen: number): DayOfColumn[];
   /** Ends the file and hands out all days that are still open. */
   finish(): DayOfColumn[];
+  /** Data rows read so far. */
+  readonly rowsRead: number;
   /** What was read so far; complete after finish. */
   report(): ReadReport;
 }

@@ -139,6 +139,13 @@ describe('a column that is logged on change', () => {
 
 describe('how a column is held', () => {
   const minutes = (...times: number[]) => Float64Array.from(times, (minute) => minute * MINUTE_MS);
+  /** The rhythm of readings that are all alike, or all different. */
+  const alike = (times: readonly number[]) => rhythmOf(minutes(...times), new Float64Array(times.length).fill(44));
+  const different = (times: readonly number[]) =>
+    rhythmOf(
+      minutes(...times),
+      Float64Array.from(times, (_, i) => 44 + (i % 2)),
+    );
   const every = (distance: number, until: number) =>
     Array.from({ length: Math.floor(until / distance) + 1 }, (_, i) => i * distance);
 
@@ -150,14 +157,14 @@ describe('how a column is held', () => {
 
   test('a logger that writes every 15 minutes at least is believed for two and a half of them', () => {
     const changes = every(15, 1400).flatMap((minute) => [minute, minute + 4.3 + (minute % 7) / 3]);
-    const rhythm = rhythmOf(minutes(...every(15, 600), ...changes.filter((minute) => minute > 600)));
+    const rhythm = alike([...every(15, 600), ...changes.filter((minute) => minute > 600)]);
     expect(rhythm).toMatchObject({ heartbeatMs: 15 * MINUTE_MS });
     expect(heldForMs('flow', rhythm.heartbeatMs)).toBe(37.5 * MINUTE_MS);
   });
 
   test('an outage of hours does not hide the heartbeat, and busy changes at random times are none', () => {
     const alive = every(15, 1400).filter((minute) => minute < 500 || minute > 700);
-    expect(rhythmOf(minutes(...alive)).heartbeatMs).toBe(15 * MINUTE_MS);
+    expect(alike(alive).heartbeatMs).toBe(15 * MINUTE_MS);
     let seed = 1;
     let at = 0;
     const random = Array.from({ length: 200 }, () => {
@@ -165,13 +172,21 @@ describe('how a column is held', () => {
       at += -Math.log(seed / 2_147_483_647) * 6;
       return at;
     });
-    expect(rhythmOf(minutes(...random))).toMatchObject({ usualMs: 0, heartbeatMs: 0 });
+    expect(different(random)).toMatchObject({ usualMs: 0, heartbeatMs: 0 });
+  });
+
+  test('a log on change that looks every five minutes is held, however often it finds a change; one on a timer is not', () => {
+    const looked = every(5, 1400).filter((minute) => minute % 35 !== 0 && minute % 60 !== 0);
+    expect(different(looked)).toMatchObject({ usualMs: 0, heartbeatMs: 0 });
+    expect(alike(looked)).toMatchObject({ usualMs: 5 * MINUTE_MS });
+    const outage = every(5, 1400).filter((minute) => minute < 300 || minute > 480);
+    expect(different(outage)).toMatchObject({ usualMs: 5 * MINUTE_MS });
   });
 
   test('a logger that writes every 3 to 20 seconds is believed for 50', () => {
     let at = 0;
     const seconds = Array.from({ length: 2000 }, (_, i) => (at += (3 + ((i * 7919) % 18)) / 60));
-    expect(rhythmOf(minutes(...seconds)).heartbeatMs).toBe(20 * SECOND_MS);
+    expect(different(seconds).heartbeatMs).toBe(20 * SECOND_MS);
   });
 
   test('a logger of 5 minutes that is up to 40 seconds early or late is believed for 14 minutes, not for hours', () => {
@@ -180,7 +195,7 @@ describe('how a column is held', () => {
       { length: 280 },
       (_, i) => (at += 5 + (((i * 7919) % 81) - 40) / 60 + (i === 90 ? 360 : 0)),
     );
-    const rhythm = rhythmOf(minutes(...late));
+    const rhythm = different(late);
     expect(rhythm.usualMs).toBe(0);
     expect(heldForMs('temperature', rhythm.heartbeatMs) / MINUTE_MS).toBeCloseTo(14.2, 0);
   });
