@@ -1,4 +1,4 @@
-import { P, Part } from '@/components/method/parts';
+import type { ReactNode } from 'react';
 import { Page } from '@/components/shell/app-shell';
 import { PageHead } from '@/components/ui/page-head';
 import { EXPORT_GROUPS, EXPORT_SHAPES } from '@/lib/trends/gallery';
@@ -6,6 +6,9 @@ import { ShapeTable } from './shape-table';
 
 const ASKED = EXPORT_SHAPES.filter(({ asks }) => asks !== undefined);
 const FREE = EXPORT_SHAPES.length - ASKED.length;
+
+const REFUSED = { id: 'not-read', title: 'What is refused' };
+const titleOf = (title: string, index: number): string => `${index + 1}. ${title}`;
 
 /** What exports are read, with an example of each: the list that the tests go through. */
 export function FormatsPage() {
@@ -28,33 +31,39 @@ export function FormatsPage() {
       />
       <nav aria-label="On this page" className="no-print">
         <ol className="flex flex-wrap gap-x-7 phone:grid phone:grid-cols-2 phone:gap-x-4">
-          {EXPORT_GROUPS.map(({ id, title }, index) => (
+          {[...EXPORT_GROUPS, REFUSED].map(({ id, title }, index) => (
             <li key={id} className="flex items-center phone:min-h-11">
               <a href={`#${id}`} className="link">
-                {index + 1}. {title}
+                {titleOf(title, index)}
               </a>
             </li>
           ))}
         </ol>
       </nav>
       {EXPORT_GROUPS.map((group, index) => (
-        <Part
-          key={group.id}
-          id={group.id}
-          number={index + 1}
-          title={group.title}
-          beside={<ShapeTable title={group.title} shapes={group.shapes} />}
-        >
-          <P>{group.lead}</P>
-        </Part>
+        <FormatPart key={group.id} id={group.id} title={titleOf(group.title, index)}>
+          <p className="mb-3 max-w-[92ch] text-pretty">{group.lead}</p>
+          <ShapeTable title={group.title} shapes={group.shapes} />
+        </FormatPart>
       ))}
-      <Part id="not-read" number={EXPORT_GROUPS.length + 1} title="What is refused">
-        <P>
+      <FormatPart id={REFUSED.id} title={titleOf(REFUSED.title, EXPORT_GROUPS.length)}>
+        <p className="max-w-[92ch] text-pretty">
           A file without times or without a table; web pages, PDF documents, pictures and old workbooks (XLS); archives
           that are encrypted, damaged or unpack out of all proportion. The answer says which it is and what to send
           instead. A file is never refused for a few bad rows.
-        </P>
-      </Part>
+        </p>
+      </FormatPart>
     </Page>
+  );
+}
+
+function FormatPart({ id, title, children }: { id: string; title: string; children: ReactNode }) {
+  return (
+    <section id={id} aria-labelledby={`${id}-title`} className="mt-10 scroll-mt-4 border-t border-ink pt-2.5">
+      <h2 id={`${id}-title`} className="mb-3 font-serif text-lead font-medium">
+        {title}
+      </h2>
+      {children}
+    </section>
   );
 }

@@ -9,6 +9,7 @@ export function ShapeTable({ title, shapes }: { title: string; shapes: readonly 
         <tr>
           <HeadCell>shape</HeadCell>
           <HeadCell>as it stands in a file</HeadCell>
+          <HeadCell>read as</HeadCell>
         </tr>
       </thead>
       <tbody>
@@ -17,15 +18,12 @@ export function ShapeTable({ title, shapes }: { title: string; shapes: readonly 
             key={id}
             className="phone:block phone:border-b phone:border-grid phone:py-1.5 phone:[&>*]:block phone:[&>*]:border-0! phone:[&>*]:p-0!"
           >
-            <RowHead className="w-[40%] text-pretty phone:w-auto">
-              <span className="font-semibold">{shape}</span>
-              {note === undefined ? null : <span className="block text-small font-normal text-ink-2">{note}</span>}
-              {asks === undefined ? null : (
-                <span className="block text-small font-normal text-ink-2">You are asked {asks}.</span>
-              )}
-            </RowHead>
-            <Cell>
+            <RowHead className="w-[27%] font-semibold! text-pretty phone:w-auto">{shape}</RowHead>
+            <Cell className="w-[42%] phone:w-auto">
               <Example text={example} />
+            </Cell>
+            <Cell className="text-pretty text-ink-2">
+              {asks === undefined ? note : `${note === undefined ? '' : `${note} `}You are asked ${asks}.`}
             </Cell>
           </tr>
         ))}
