@@ -35,7 +35,10 @@ export async function textsOf(name: string, bytes: Uint8Array): Promise<TextFile
   return Object.entries(texts).map(([member, text]) => ({ name: member, bytes: Buffer.from(text, 'utf8') }));
 }
 
-export function previewTexts(texts: readonly TextFile[], change: Partial<typeof OPTIONS> & { nowMs?: number } = {}): TrendPreview {
+export function previewTexts(
+  texts: readonly TextFile[],
+  change: Partial<typeof OPTIONS> & { nowMs?: number } = {},
+): TrendPreview {
   const options = { ...OPTIONS, nowMs: NOW_MS, ...change };
   return previewDrop(
     texts.map(({ name, bytes }) => ({ name, head: bytes, complete: true })),
