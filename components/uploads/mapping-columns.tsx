@@ -9,7 +9,7 @@ import { Table } from '@/components/ui/table';
 import { useKeys } from '@/components/ui/use-keys';
 import { sendJson } from '@/lib/client/api';
 import { formatNumber } from '@/lib/client/format';
-import { previewQuery, uploadQuery, uploadsQuery } from '@/lib/client/queries';
+import { uploadQuery, uploadsQuery } from '@/lib/client/queries';
 import { filesWords } from '@/lib/client/table-words';
 import type { Preview, Upload } from '@/lib/schemas/upload';
 import { ConfirmBar } from './confirm-bar';
@@ -51,14 +51,15 @@ export function MappingForm({ plantId, upload, preview, unitCount, mayConfirm, c
   );
   const confirm = useMutation({
     mutationFn: () => sendJson('PUT', `/uploads/${upload.id}/mapping`, mappingBody(preview, answers, remember)),
-    onSuccess: async () => {
-      // How it was read is part of the preview: the old one would show the answers from before.
-      queries.removeQueries({ queryKey: previewQuery(upload.id).queryKey });
-      void queries.invalidateQueries({ queryKey: uploadQuery(upload.id).queryKey });
-      await queries.invalidateQueries({ queryKey: uploadsQuery(plantId).queryKey });
+    onSuccess: () => {
       router.push(plantPath(plantId, 'uploads'));
+      void queries.invalidateQueries({ queryKey: uploadsQuery(plantId).queryKey });
+      // How it was read is part of the preview: the upload and its preview are asked for anew when this page is opened again.
+      void queries.invalidateQueries({ queryKey: uploadQuery(upload.id).queryKey, refetchType: 'none' });
     },
   });
+  // Confirmed once is enough: the next page is on its way.
+  const busy = confirm.isPending || confirm.isSuccess;
   const found = (upload.problems.length > 0 ? upload.problems : preview.problems).filter((each) => !isTimeDoubt(each));
   const someNew = preview.columns.some(({ known }) => known !== true);
   return (
@@ -66,7 +67,7 @@ export function MappingForm({ plantId, upload, preview, unitCount, mayConfirm, c
       aria-label="How the file is read"
       onSubmit={(event) => {
         event.preventDefault();
-        if (ready && !confirm.isPending) confirm.mutate();
+        if (ready && !busy) confirm.mutate();
       }}
     >
       <TimesSection
@@ -98,7 +99,7 @@ export function MappingForm({ plantId, upload, preview, unitCount, mayConfirm, c
             again={again}
             changed={changed}
             ready={ready}
-            busy={confirm.isPending}
+            busy={busy}
             remember={remember}
             onRemember={setRemember}
             onUndo={undo}

@@ -33,7 +33,7 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
   const { data: plant } = useQuery(plantQuery(plantId));
   const { data: upload } = useQuery(uploadQuery(uploadId));
   const waiting = upload === undefined || NOT_READ_YET.includes(upload.status);
-  const { data: preview, error, refetch } = useQuery({ ...previewQuery(uploadId), enabled: !waiting });
+  const { data: preview, dataUpdatedAt, error, refetch } = useQuery({ ...previewQuery(uploadId), enabled: !waiting });
   const uploads = plantPath(plantId, 'uploads');
   const movedOn = upload !== undefined && ['importing', 'analysing'].includes(upload.status);
   useEffect(() => {
@@ -69,6 +69,7 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
         <ErrorState onRetry={() => void refetch()}>{error.message}</ErrorState>
       ) : preview && upload && plant ? (
         <MappingForm
+          key={dataUpdatedAt}
           plantId={plantId}
           upload={upload}
           preview={preview}
