@@ -114,12 +114,15 @@ function chooseDelimiter(rowsWith: (delimiter: string) => string[][]): Dialect['
     const width = usualWidth(rows);
     if (width < 2) continue;
     const alike = rows.filter((cells) => cells.length === width);
-    const data = alike.reduce((sum, cells) => sum + dataShare(cells), 0) / alike.length;
+    const data = alike.reduce((sum, cells) => sum + dataShare(cells.map(uncut)), 0) / alike.length;
     const score = (alike.length / rows.length) * (0.1 + data) * (1 - 1 / (2 * width));
     if (score > best.score) best = { delimiter, score };
   }
   return best.delimiter;
 }
+
+/** A cell with another delimiter in it is not data: it is several cells. */
+const uncut = (cell: string): string => (/[\t|;]/.test(cell) ? 'text' : cell);
 
 /** The most common number of cells, among rows that have more than one if there are any. */
 function usualWidth(rows: readonly (readonly string[])[]): number {

@@ -154,7 +154,8 @@ export class DateScanner extends ClockScanner {
   private setDate(shortYear: number, month: number, day: number, yearDigits: number, isNamed: boolean): boolean {
     if (yearDigits !== 4 && (yearDigits !== 2 || this.form === 'iso')) return false;
     const year = yearDigits === 4 ? shortYear : shortYear + (shortYear < 70 ? 2000 : 1900);
-    if (month < 1 || month > 12 || day < 1 || day > DAYS_IN_MONTH[month - 1]! || year < 1900) return false;
+    if (month < 1 || month > 12 || day < 1 || day > DAYS_IN_MONTH[month - 1]! || year < 1900 || year > 2200)
+      return false;
     const key = year * 512 + month * 32 + day;
     if (key === this.dateKey) return true;
     if (month === 2 && day === 29 && !isLeapYear(year)) return false;

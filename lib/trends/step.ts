@@ -6,6 +6,10 @@ const FINE_MS = 1000;
 const COARSE_MS = 10_000;
 const COARSE_FROM_MS = 120_000;
 
+/** Distances under this part of the usual one are shorter, and a timer has at most this share of them. */
+const SHORTER = 0.9;
+const SHORTER_SHARE = 0.1;
+
 /** A distance between rows without the logger's small delays. */
 export function roundedDistance(distanceMs: number): number {
   if (distanceMs < FINE_MS) return distanceMs;
@@ -54,11 +58,18 @@ export class StepCounter {
 
   /** How long a reading may stand for: the usual distance, or 0 when most distances are others. */
   get holdMs(): number {
-    return this.usualCount * 2 >= this.total ? this.usualMs : 0;
+    return this.usualCount * 2 >= this.total && this.isOnTimer ? this.usualMs : 0;
+  }
+
+  /** A row that is lost makes a distance longer, never shorter: where many are shorter, rows come when something changes. */
+  private get isOnTimer(): boolean {
+    let shorter = 0;
+    for (const [distance, count] of this.counts) if (distance < this.usualMs * SHORTER) shorter += count;
+    return shorter <= this.total * SHORTER_SHARE;
   }
 
   /** Whether rows come at a regular distance at all: at least half of them, and at least two. */
   get isRegular(): boolean {
-    return this.usualCount >= 2 && this.usualCount * 2 >= this.total;
+    return this.usualCount >= 2 && this.usualCount * 2 >= this.total && this.isOnTimer;
   }
 }

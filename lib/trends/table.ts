@@ -1,5 +1,5 @@
 import { recogniseTable, type NumberedRow } from './dialect';
-import { detectEncoding } from './encoding';
+import { detectEncoding, TextStream } from './encoding';
 import { columnNames, headingFingerprint } from './headings';
 import { StepCounter } from './step';
 import { shapeOf } from './table-shape';
@@ -27,7 +27,9 @@ export interface FileTable {
  */
 export function recogniseFile(head: Uint8Array, options: PreviewOptions): FileTable {
   const encoding = detectEncoding(head);
-  const text = new TextDecoder(encoding).decode(head, { stream: !options.complete });
+  // As the reader decodes it: one way of turning bytes to text.
+  const stream = new TextStream(encoding);
+  const text = stream.decode(head) + (options.complete ? stream.end() : '');
   const { dialect, heading, units, preamble, data } = recogniseTable(text, options.complete);
   const names = columnNames(heading);
   const time = findTime(names, data, options.timeZone, dialect.decimal, { nowMs: options.nowMs });
