@@ -33,7 +33,9 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
   const { data: plant } = useQuery(plantQuery(plantId));
   const { data: upload } = useQuery(uploadQuery(uploadId));
   const waiting = upload === undefined || NOT_READ_YET.includes(upload.status);
-  const { data: preview, dataUpdatedAt, error, refetch } = useQuery({ ...previewQuery(uploadId), enabled: !waiting });
+  const { data, isFetching, error, refetch } = useQuery({ ...previewQuery(uploadId), enabled: !waiting });
+  // A preview from before the last confirmation has the old answers: it is not shown while the new one is on its way.
+  const preview = isFetching ? undefined : data;
   const uploads = plantPath(plantId, 'uploads');
   const movedOn = upload !== undefined && ['importing', 'analysing'].includes(upload.status);
   useEffect(() => {
@@ -69,7 +71,6 @@ export function MappingPage({ plantId, uploadId, mayConfirm }: MappingPageProps)
         <ErrorState onRetry={() => void refetch()}>{error.message}</ErrorState>
       ) : preview && upload && plant ? (
         <MappingForm
-          key={dataUpdatedAt}
           plantId={plantId}
           upload={upload}
           preview={preview}
