@@ -53,7 +53,7 @@ export function computeSlice(input: SliceInput): SliceResult {
       channels: Object.fromEntries(
         RESULT_CHANNELS.map((channel) => [
           channel,
-          Float32Array.from(estimates[channel].subarray(from, from + slotsPerDay)),
+          new Float32Array(estimates[channel].subarray(from, from + slotsPerDay)),
         ]),
       ) as ResultDayToWrite['channels'],
     });

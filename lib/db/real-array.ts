@@ -32,7 +32,7 @@ export function writeRealArray(target: Buffer, offset: number, values: Float32Ar
 const LITTLE_ENDIAN = endianness() === 'LE';
 
 function bitsOf(values: Float32Array | Float64Array): Uint32Array {
-  const single = values instanceof Float32Array ? values : Float32Array.from(values);
+  const single = values instanceof Float32Array ? values : new Float32Array(values);
   return new Uint32Array(single.buffer, single.byteOffset, single.length);
 }
 

@@ -7,7 +7,7 @@ import { STATES } from './types';
 const RUNNING = STATES.indexOf('running');
 /** Readings are averaged to about this before they enter: finer ones repeat each other. */
 const BIN_MINUTES = 15;
-const MAX_BINS = 1500;
+const MAX_BINS = 750;
 const CHANNELS = TEMPERATURES + FLOWS;
 
 /** Steady running stretches of a record, each the mean over one bin. Row-major, CHANNELS a row. */

@@ -20,13 +20,14 @@ const MOST_REMEMBERED = 4096;
 interface Point {
   timeline: Timeline;
   values: ValueReader;
-  /** Of its own: times that lean on the row before lean on the point's last. */
-  stamp: StampParser;
+  /** Of its own where times have no year: the year of each follows from the point's time before. */
+  stamp: StampParser | null;
 }
 
 /** One row a reading. Each point has its own sequence of times, since change-of-value points come when they please. */
 export class LongRows implements RowSink {
   rowsRead = 0;
+  private readonly stamp: StampParser;
   private readonly points: (Point | null)[];
   /** Which point a cell of the point's column names; -1 for one that is left out or unknown. */
   private readonly byCell = new Map<string, number>();
@@ -43,6 +44,8 @@ export class LongRows implements RowSink {
     private readonly shape: LongShape,
     private readonly problems: ProblemLog,
   ) {
+    this.stamp = StampParser.of(plan.timestamp, plan.dialect.decimal);
+    const yearless = plan.timestamp.form === 'month/day' || plan.timestamp.form === 'day/month';
     this.byName = new Map(plan.columns.map(({ column }, i) => [column, i]));
     this.points = plan.columns.map(({ column, role, unit, sentinels }, i) =>
       role === 'ignore'
@@ -50,7 +53,7 @@ export class LongRows implements RowSink {
         : {
             timeline: new Timeline(plan, [{ plan: i, unit: unit!, name: column, ownRows: true }], problems),
             values: new ValueReader(column, unit!, plan.dialect.decimal, problems, { sentinels }),
-            stamp: StampParser.of(plan.timestamp, plan.dialect.decimal),
+            stamp: yearless ? StampParser.of(plan.timestamp, plan.dialect.decimal) : null,
           },
     );
     this.dayReadings = this.points.filter((point) => point !== null).length * MINUTES_OF_DAY;
@@ -74,7 +77,7 @@ export class LongRows implements RowSink {
 
   stampFor(cells: readonly string[], row: number): StampParser | null {
     this.point = this.pointOf(cells[this.pointCell] ?? '', row);
-    return this.point?.stamp ?? null;
+    return this.point && (this.point.stamp ?? this.stamp);
   }
 
   take(cells: readonly string[], row: number, stamp: StampParser): boolean {

@@ -60,6 +60,9 @@ class PlanReader implements TrendReader {
   private places: ColumnPlaces | null = null;
   private shape: RowShape | null = null;
   private firstRows: { cells: string[]; row: number }[] = [];
+  /** The time last read, and by which parser. */
+  private lastTime = '';
+  private lastStamp: StampParser | null = null;
   private finished = false;
 
   constructor(
@@ -187,10 +190,15 @@ class PlanReader implements TrendReader {
     const [first, second] = places.time;
     const date = cells[first!] ?? '';
     const time = second === undefined ? date : `${date} ${cells[second] ?? ''}`;
-    if (stamp.parse(time)) {
+    // Rows of one time follow each other where each holds one reading.
+    const again = time === this.lastTime && stamp === this.lastStamp;
+    if (again || stamp.parse(time)) {
+      this.lastTime = time;
+      this.lastStamp = stamp;
       this.witness.accept(stamp);
       return this.rows.take(cells, row, stamp);
     }
+    this.lastStamp = null;
     this.witness.refuse(time, row);
     if (this.witness.isMisread) throw this.witness.error();
     this.noteBadTime(time, date, row, places);

@@ -24,6 +24,8 @@ export class StepCounter {
   private usualCount = 0;
   private total = 0;
   private backward = 0;
+  /** Distances clearly shorter than the usual one. */
+  private shorter = 0;
   private readonly counts = new Map<number, number>();
 
   /** `deltaMs` from one row to the next; rows at the same time say nothing. */
@@ -40,10 +42,13 @@ export class StepCounter {
     if (known === undefined && this.counts.size >= MOST_DISTANCES) return;
     const count = (known ?? 0) + 1;
     this.counts.set(distance, count);
+    if (distance < this.usualMs * SHORTER) this.shorter++;
     if (count > this.usualCount) {
       this.counts.set(this.usualMs, this.usualCount);
       this.usualMs = distance;
       this.usualCount = count;
+      this.shorter = 0;
+      for (const [other, times] of this.counts) if (other < distance * SHORTER) this.shorter += times;
     }
   }
 
@@ -63,9 +68,7 @@ export class StepCounter {
 
   /** A row that is lost makes a distance longer, never shorter: where many are shorter, rows come when something changes. */
   private get isOnTimer(): boolean {
-    let shorter = 0;
-    for (const [distance, count] of this.counts) if (distance < this.usualMs * SHORTER) shorter += count;
-    return shorter <= this.total * SHORTER_SHARE;
+    return this.shorter <= this.total * SHORTER_SHARE;
   }
 
   /** Whether rows come at a regular distance at all: at least half of them, and at least two. */
