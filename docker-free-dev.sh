@@ -15,7 +15,7 @@ usage: ./docker-free-dev.sh [command]
             serve; Ctrl-C stops everything it started
   dev       the same with live reload instead of a build
   test      everything continuous integration runs, on a throwaway database
-  bench     time the main job on a throwaway product: a week from file to chart, a year's import
+  bench     time the main job on a throwaway product: a week from file to chart, a year's import, beside a script's
   status    what runs here (exit 0 when it serves, 3 when not)
   stop      stop web, worker and database of this data folder
   psql      open the database as its owner; `psql app` and `psql worker` as those roles; further words go to psql
@@ -268,7 +268,8 @@ prepare_checks() {
 
 run_bench() {
   prepare_checks
-  exec node --import tsx tests/bench/main-job.bench.ts
+  node --import tsx tests/bench/main-job.bench.ts
+  exec node --import tsx tests/bench/peer-year.bench.ts
 }
 
 run_tests() {
