@@ -13,6 +13,10 @@ export const UploadEntity = defineEntity({
     files: p.json<{ name: string; sizeBytes: number; sha256: string; gzip: boolean }[]>(),
     sizeBytes: p.bigint('number').default(0),
     sha256: p.text().nullable(),
+    /** Length of the file that a resumable upload began with; null for every other. */
+    announcedBytes: p.bigint('number').nullable(),
+    /** Upload-Metadata as such an upload's sender gave it. */
+    tusMetadata: p.text().nullable(),
     status: p.text().default('receiving'),
     progress: p.type('float').columnType('real').default(0),
     rowsRead: p.bigint('number').default(0),

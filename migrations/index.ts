@@ -6,6 +6,7 @@ import { Migration20261201000500Alerts } from './migration-20261201000500-alerts
 import { Migration20261201000600MailSuppression } from './migration-20261201000600-mail-suppression';
 import { Migration20261201000700Calibration } from './migration-20261201000700-calibration';
 import { Migration20261201000800Unpacking } from './migration-20261201000800-unpacking';
+import { Migration20261201000900Resumable } from './migration-20261201000900-resumable';
 
 /** In order of application; listed by import so that a bundled program carries them. */
 export const MIGRATIONS = [
@@ -17,4 +18,5 @@ export const MIGRATIONS = [
   { name: '20261201000600-mail-suppression', class: Migration20261201000600MailSuppression },
   { name: '20261201000700-calibration', class: Migration20261201000700Calibration },
   { name: '20261201000800-unpacking', class: Migration20261201000800Unpacking },
+  { name: '20261201000900-resumable', class: Migration20261201000900Resumable },
 ];

@@ -24,13 +24,27 @@ export interface ReceivedFile {
 
 const tenancy = (owner: UploadOwner) => ({ organizationIds: [owner.organizationId] });
 
-/** The row that people see while bytes still come in. */
-export async function openUpload(owner: UploadOwner, filename: string): Promise<string> {
+/** The row that people see while bytes still come in. `resumable` is of a file that is sent with pauses, by the tus protocol. */
+export async function openUpload(
+  owner: UploadOwner,
+  filename: string,
+  resumable?: { id: string; announcedBytes: number; metadata: string | null },
+): Promise<string> {
   return withTenant(tenancy(owner), async (em) => {
     const row = await queryOne<{ id: string }>(
       em,
-      `insert into upload (organization_id, plant_id, filename, created_by, created_by_token) values ($1, $2, $3, $4, $5) returning id`,
-      [owner.organizationId, owner.plantId, filename, owner.userId, owner.tokenId],
+      `insert into upload (organization_id, plant_id, filename, created_by, created_by_token, id, announced_bytes, tus_metadata)
+       values ($1, $2, $3, $4, $5, coalesce($6, gen_random_uuid()), $7, $8) returning id`,
+      [
+        owner.organizationId,
+        owner.plantId,
+        filename,
+        owner.userId,
+        owner.tokenId,
+        resumable?.id ?? null,
+        resumable?.announcedBytes ?? null,
+        resumable?.metadata ?? null,
+      ],
     );
     if (!row) throw new Error('openUpload: the insert returned no row');
     return row.id;

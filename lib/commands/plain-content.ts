@@ -100,7 +100,8 @@ async function readHead(source: AsyncGenerator<Buffer>): Promise<Buffer> {
   return head;
 }
 
-function refuseUnreadable(name: string, head: Buffer, packed: boolean): void {
+/** Throws 415, in words that say what to do, for a file whose first bytes are of a kind that is never read here. */
+export function refuseUnreadable(name: string, head: Buffer, packed: boolean): void {
   const found = UNREADABLE.find(({ magic }) => startsWith(head, magic));
   const what = found?.what ?? (packed && startsWith(head, GZIP) ? 'another gzip file' : null);
   if (what === null) return;

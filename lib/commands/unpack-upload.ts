@@ -2,7 +2,7 @@ import { promisify } from 'node:util';
 import { gzip } from 'node:zlib';
 import type { EntityManager } from '@mikro-orm/postgresql';
 import type { Upload } from '@/entities';
-import { unpackContainer, type MemberSink, type MemberWriter } from '../containers/unpack-container';
+import { startsAsGzip, unpackContainer, type MemberSink, type MemberWriter } from '../containers/unpack-container';
 import { UnpackBudget } from '../containers/unpack-budget';
 import type { ChunkSource } from '../containers/chunked-bytes';
 import { CHUNK_BYTES } from '../db/chunks';
@@ -50,7 +50,7 @@ export function textFiles(upload: { files: readonly UploadFile[] }): TextFile[] 
 }
 
 /**
- * Makes text files of the zip archives and workbooks of a received upload: members become files of the same upload, stored like
+ * Makes text files of the zip archives, workbooks and gzip files of a received upload: members become files of the same upload, stored like
  * them. It counts in one transaction at the end, in which `upload.files` names the members (here too, in place) and the
  * containers' own bytes go. Safe to run again: what an attempt left half done is deleted first, and a finished one is recognised.
  * Memory: a few MiB and a workbook's shared strings. Every write is fenced.
@@ -107,7 +107,7 @@ export async function unpackUpload(
   return { files: next, problems: next.flatMap((each) => each.problems ?? []) };
 }
 
-/** Places of the files that are zip archives by their first bytes. */
+/** Places of the files that are zip archives or gzip by their first bytes; gzip is stored packed only of a resumable upload. */
 async function findContainers(upload: Upload, files: readonly UploadFile[], signal: AbortSignal): Promise<number[]> {
   const found: number[] = [];
   for (const [place, { unpacked, fileIndex }] of files.entries()) {
@@ -115,7 +115,7 @@ async function findContainers(upload: Upload, files: readonly UploadFile[], sign
     if (unpacked === true || fileIndex !== undefined) continue;
     signal.throwIfAborted();
     const head = await readChunk(upload.organizationId, upload.id, place, 0);
-    if (head !== null && isZip(head)) found.push(place);
+    if (head !== null && (isZip(head) || startsAsGzip(head))) found.push(place);
   }
   return found;
 }

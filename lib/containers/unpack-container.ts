@@ -23,6 +23,7 @@ export interface MemberSink {
   begin(name: string): MemberWriter;
 }
 
+/** What a container is unpacked with, and what has come of it. */
 interface Unpacking {
   sink: MemberSink;
   budget: UnpackBudget;
@@ -34,14 +35,16 @@ interface Unpacking {
 /** Enough of a member to tell what it is; at least what the encoding is told from. */
 const HEAD_BYTES = 64 * 1024;
 const GZIP = [0x1f, 0x8b];
+/** Whether the bytes begin a gzip file. */
+export const startsAsGzip = (head: Uint8Array): boolean => GZIP.every((byte, index) => head[index] === byte);
 const SYSTEM_FILE = /(^|\/)(__MACOSX\/|\.DS_Store$|\._[^/]*$|Thumbs\.db$|desktop\.ini$)/i;
 /** Pictures, documents, programs, and the notes that come with an export. */
 const NO_TREND =
   /(?:^|\/)(?:read[ _-]?me|licen[cs]e)(?:\.(?:txt|md))?$|\.(png|jpe?g|gif|bmp|webp|svg|ico|tiff?|heic|pdf|md|docx?|pptx?|rtf|html?|xml|json|exe|dll|bat|cmd|ps1|sh|py|js|jar|mp[34]|wav|avi|mov)$/i;
 
 /**
- * Unpacks a zip archive, or a workbook, into text files: each member of the archive that is text, gzip inside it unpacked; each
- * visible sheet with two rows or more as comma-separated text. A workbook inside an archive is unpacked as well, an archive inside
+ * Unpacks a zip archive, a workbook or a gzip file into text files: each member of the archive that is text, gzip inside it unpacked; each
+ * visible sheet with two rows or more as comma-separated text; what was packed by gzip under the name of its file. A workbook inside an archive is unpacked as well, an archive inside
  * an archive is not. Nothing is held but a few MiB and a workbook's shared strings, whatever the sizes.
  *
  * Returns  what was passed over, as warnings.
@@ -56,6 +59,7 @@ export async function unpackContainer(
 ): Promise<TrendProblem[]> {
   const bytes = new ChunkedBytes(source);
   const unpacking: Unpacking = { sink, budget, names: new MemberNames(), kept: 0 };
+  if (startsAsGzip(await bytes.read(0, GZIP.length))) return unpackGzip(unpacking, bytes, name);
   const archive = await ZipArchive.open(name, bytes);
   const problems = isWorkbook(archive)
     ? await unpackWorkbook(unpacking, archive, name, bytes.sizeBytes)
@@ -66,6 +70,50 @@ export async function unpackContainer(
     'empty',
     `"${name}" holds no text or sheet that could be a trend log.${why} Put the exported CSV files or a workbook with the trend into it and send it again.`,
   );
+}
+
+/** A file as it was before it was packed: text, or an archive or workbook that is unpacked in turn. */
+async function unpackGzip(unpacking: Unpacking, bytes: ChunkedBytes, name: string): Promise<TrendProblem[]> {
+  const { budget, sink } = unpacking;
+  const packed = pieces(bytes);
+  const { head, rest, close } = await withHead(gunzipped(packed, name, bytes.sizeBytes, budget));
+  if (isZip(head)) {
+    const writer = sink.begin(name);
+    const size = await fill(rest, writer, budget);
+    const problems = await unpackContainer(await writer.reopen(), name, sink, budget);
+    await writer.discard();
+    budget.release(size);
+    return problems;
+  }
+  const why = startsAsGzip(head) ? 'another gzip file' : whyNoText(head);
+  if (why !== null) {
+    await close();
+    const holds = why === SKIPPED.empty ? 'nothing' : why;
+    throw new TrendError(
+      'unsupported',
+      `"${name}" holds ${holds}, which is not read here. Export the trend as CSV and send that.`,
+    );
+  }
+  budget.addFile();
+  await copy(rest, sink.begin(name), budget);
+  unpacking.kept++;
+  return [];
+}
+
+async function* pieces(bytes: ChunkedBytes): AsyncGenerator<Buffer> {
+  for await (const part of bytes.range(0, bytes.sizeBytes))
+    yield Buffer.from(part.buffer, part.byteOffset, part.length);
+}
+
+/** Writes everything; the number of bytes. */
+async function fill(source: AsyncIterable<Buffer>, writer: MemberWriter, budget: UnpackBudget): Promise<number> {
+  let size = 0;
+  for await (const piece of source) {
+    size += piece.length;
+    budget.addStored(piece.length);
+    await writer.write(piece);
+  }
+  return size;
 }
 
 async function unpackArchive(unpacking: Unpacking, archive: ZipArchive, name: string): Promise<TrendProblem[]> {
@@ -103,7 +151,7 @@ async function unpackMember(
 ): Promise<TrendProblem[]> {
   const { budget } = unpacking;
   let { head, rest, close } = await withHead(archive.read(member, label, budget));
-  if (GZIP.every((byte, i) => head[i] === byte)) {
+  if (startsAsGzip(head)) {
     const packed = member.entry.compressedSize;
     ({ head, rest, close } = await withHead(gunzipped(rest, label, packed, budget)));
   }
@@ -187,10 +235,7 @@ function whyNoText(head: Buffer): string | null {
 }
 
 async function copy(source: AsyncIterable<Buffer>, writer: MemberWriter, budget: UnpackBudget): Promise<void> {
-  for await (const piece of source) {
-    budget.addStored(piece.length);
-    await writer.write(piece);
-  }
+  await fill(source, writer, budget);
   await writer.keep();
 }
 
@@ -203,12 +248,7 @@ async function unpackInner(
   const { budget, sink } = unpacking;
   budget.addFile();
   const writer = sink.begin(name);
-  let size = 0;
-  for await (const piece of content) {
-    size += piece.length;
-    budget.addStored(piece.length);
-    await writer.write(piece);
-  }
+  const size = await fill(content, writer, budget);
   const archive = await ZipArchive.open(name, new ChunkedBytes(await writer.reopen()));
   if (!isWorkbook(archive)) {
     const what = otherOfficeFile(archive) ?? 'a zip archive inside a zip archive';

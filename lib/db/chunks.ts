@@ -51,6 +51,41 @@ export async function storeChunk(
   });
 }
 
+/**
+ * Stores one chunk of a file that is sent with pauses, in the place of a shorter one with its number, if the file has come exactly
+ * as far as `fromBytes`. Two senders at once cannot mix their bytes: whoever commits second finds the file further on. False then,
+ * and when the upload is no longer being received; nothing is stored.
+ */
+export async function storeChunkFrom(
+  of: ChunkOf,
+  plain: Uint8Array,
+  reach: { fromBytes: number; toBytes: number },
+): Promise<boolean> {
+  const data = await pack(plain, { level: LEVEL });
+  return withTenant({ organizationIds: [of.organizationId] }, async (em) => {
+    // The row stays locked to the end of the transaction.
+    const open = await queryOne(
+      em,
+      `update upload set last_chunk_at = now(), size_bytes = $4::bigint, progress = least(1, $4::bigint::real / announced_bytes)
+       where id = $1 and organization_id = $2 and status = 'receiving' and size_bytes = $3 returning 1`,
+      [of.uploadId, of.organizationId, reach.fromBytes, reach.toBytes],
+    );
+    if (!open) return false;
+    const key = [of.organizationId, of.uploadId, of.fileIndex, of.seq];
+    await query(
+      em,
+      `delete from upload_chunk where organization_id = $1 and upload_id = $2 and file_index = $3 and seq = $4`,
+      key,
+    );
+    await query(
+      em,
+      `insert into upload_chunk (organization_id, upload_id, file_index, seq, raw_bytes, data) values ($1, $2, $3, $4, $5, $6)`,
+      [...key, plain.byteLength, data],
+    );
+    return true;
+  });
+}
+
 /** Lets go of everything received of an upload. */
 export async function deleteChunks(em: EntityManager, organizationId: string, uploadId: string): Promise<void> {
   await query(em, `delete from upload_chunk where organization_id = $1 and upload_id = $2`, [organizationId, uploadId]);

@@ -22,6 +22,8 @@ const REFUSALS: Readonly<Record<number, string>> = {
   403: 'Your role or scope may not do this, or the request comes from another site.',
   404: 'No such object, or it is another organization’s.',
   409: 'In the way of something else; the detail says of what.',
+  410: 'It has ended, and nothing of it is kept.',
+  412: 'The request names no version of the protocol, or one that is not spoken here.',
   413: 'Larger than the limit.',
   415: 'A media type that is not taken here.',
   422: 'The Idempotency-Key was used with another body.',
