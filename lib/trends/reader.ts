@@ -12,11 +12,15 @@ import {
   type ReadPlan,
   type ReadReport,
   type TimestampForm,
+  type TrendProblem,
   type TrendReader,
 } from './types';
 import { WideRows, type RowSink } from './wide-rows';
 
 const MINUTES_OF_DAY = 1440;
+/** What a line below the readings is met as, and how many of them still are a footer. */
+const NO_READING: ReadonlySet<string> = new Set(['short-row', 'long-row', 'bad-time', 'no-point']);
+const MOST_FOOTER_ROWS = 20;
 
 const FORM_WORDS: Readonly<Record<TimestampForm, string>> = {
   iso: 'an ISO 8601 time',
@@ -63,6 +67,7 @@ class PlanReader implements TrendReader {
   /** The time last read, and by which parser. */
   private lastTime = '';
   private lastStamp: StampParser | null = null;
+  private lastGoodRow = 0;
   private finished = false;
 
   constructor(
@@ -116,7 +121,9 @@ class PlanReader implements TrendReader {
 
   report(): ReadReport {
     const { rowsRead, samplesStored, firstMs, lastMs } = this.rows;
-    const problems = [...this.problems.list(), ...this.rows.disorder()].sort((a, b) => (a.row ?? 0) - (b.row ?? 0));
+    const problems = [...this.problems.list().map(this.asFooter), ...this.rows.disorder()].sort(
+      (a, b) => (a.row ?? 0) - (b.row ?? 0),
+    );
     return {
       rowsRead,
       samplesStored,
@@ -125,6 +132,15 @@ class PlanReader implements TrendReader {
       problems,
     };
   }
+
+  /** Lines below the last row of readings that are none themselves: totals, "end of report". */
+  private readonly asFooter = (problem: TrendProblem): TrendProblem => {
+    const below = this.finished && this.lastGoodRow > 0 && (problem.row ?? 0) > this.lastGoodRow;
+    if (!below || !NO_READING.has(problem.code) || problem.count > MOST_FOOTER_ROWS) return problem;
+    const lines = problem.count === 1 ? 'A line' : `${problem.count} lines`;
+    const message = `${lines} below the last row of readings, from row ${problem.row} on. Left out.`;
+    return { code: 'footer', severity: 'warning', message, row: problem.row, count: problem.count };
+  };
 
   private readBlock(block: string, newline: Newline): void {
     const rows = parseRows(block, this.plan.dialect.delimiter, newline);
@@ -195,6 +211,7 @@ class PlanReader implements TrendReader {
     if (again || stamp.parse(time)) {
       this.lastTime = time;
       this.lastStamp = stamp;
+      this.lastGoodRow = row;
       this.witness.accept(stamp);
       return this.rows.take(cells, row, stamp);
     }

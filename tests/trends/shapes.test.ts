@@ -265,6 +265,17 @@ describe('several files in one drop', () => {
   });
 });
 
+test('lines below the readings are a footer, not rows in error; the same lines among the readings are', () => {
+  const lines = wide.trimEnd().split('\n');
+  const footer = ['Total,,,', 'End of report'];
+  const below = rowsOf([...lines, ...footer]);
+  const codes = (text: string) => readText(text, planOf(previewOf(wide))).report.problems.map(({ code }) => code);
+  expect(new Set(codes(below))).toEqual(new Set(['footer']));
+  const among = rowsOf([...lines.slice(0, 300), ...footer, ...lines.slice(300)]);
+  expect(codes(among)).toContain('short-row');
+  expect(codes(among)).not.toContain('footer');
+});
+
 test('a status beside a single point voids its bad readings', () => {
   const lines = MOMENTS.map((_, i) => `${monthFirst(5 * i)},${cellOf(NAMES[0]!, i)},${i === 3 ? 'Bad' : 'Good'}`);
   const text = rowsOf(['Timestamp,Value,Quality', ...lines]);
