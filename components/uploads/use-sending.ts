@@ -2,6 +2,7 @@
 import { useQueryClient } from '@tanstack/react-query';
 import { useCallback, useRef, useState } from 'react';
 import { uploadsQuery } from '@/lib/client/queries';
+import { isResumable, sendResumable } from '@/lib/client/send-resumable';
 import { sendUpload } from '@/lib/client/send-upload';
 import { formatBytes } from '@/lib/client/format';
 import { sortOut } from '@/lib/client/dropped-files';
@@ -63,7 +64,7 @@ export function useSending(plantId: string, limit: UploadLimit): Sending {
       if (failure !== null) return;
       const stop = new AbortController();
       stops.current.set(key, stop);
-      sendUpload(plantId, good, (share) => change(key, { share }), stop.signal)
+      sendDrop(plantId, good, (share) => change(key, { share }), stop.signal)
         .then(async () => {
           await queries.invalidateQueries({ queryKey: uploadsQuery(plantId).queryKey });
           change(key, null);
@@ -91,6 +92,18 @@ export function useSending(plantId: string, limit: UploadLimit): Sending {
   );
 
   return { files, send, stop };
+}
+
+/** One large file goes by the protocol that can go on after a break, everything else in one form. */
+async function sendDrop(
+  plantId: string,
+  files: readonly File[],
+  onProgress: (share: number) => void,
+  signal: AbortSignal,
+): Promise<void> {
+  const [only] = files;
+  if (only && isResumable(files)) await sendResumable(plantId, only, onProgress, signal);
+  else await sendUpload(plantId, files, onProgress, signal);
 }
 
 /** What this browser can tell of all files together before anything is sent. */
