@@ -4,6 +4,8 @@ import { CAUTION } from '@/lib/client/words';
 
 /** The page that explains the method; open to everyone. */
 export const METHOD_PATH = '/method';
+/** The page that lists what files are read; open to everyone. */
+export const FORMATS_PATH = '/formats';
 
 export interface FootProps {
   settingsRevision?: number;

@@ -1,6 +1,8 @@
 'use client';
 import { Upload as UploadIcon } from 'lucide-react';
+import Link from 'next/link';
 import { useEffect, useRef, useState } from 'react';
+import { FORMATS_PATH } from '@/components/shell/foot';
 import { TextButton } from '@/components/ui/button';
 import { CHOOSABLE, droppedFiles } from '@/lib/client/dropped-files';
 import type { UploadLimit } from './use-sending';
@@ -65,7 +67,10 @@ export function DropZone({ plantName, limit, onFiles }: DropZoneProps) {
             row a reading, or a file a point. Up to {limit.words}.{' '}
             <TextButton className="text-ink" onClick={() => input.current?.click()}>
               Choose files
-            </TextButton>
+            </TextButton>{' '}
+            <Link href={FORMATS_PATH} className="link">
+              What is read
+            </Link>
           </p>
         </div>
         <input
