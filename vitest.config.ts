@@ -16,6 +16,8 @@ export default defineConfig({
           environment: 'node',
           include: ['tests/**/*.test.ts'],
           exclude: ['tests/database/**', 'tests/e2e/**', 'tests/dom/**'],
+          // A hang ends; a busy machine does not fail a test.
+          testTimeout: 60_000,
         },
       },
       {
@@ -26,6 +28,7 @@ export default defineConfig({
           environment: 'jsdom',
           include: ['tests/dom/**/*.test.tsx'],
           setupFiles: ['tests/support/dom-setup.ts'],
+          testTimeout: 60_000,
         },
       },
       {
