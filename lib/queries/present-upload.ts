@@ -9,7 +9,8 @@ export interface UploadRow {
   id: string;
   plant_id: string;
   filename: string;
-  files: { receivedBytes?: number; sizeBytes: number }[];
+  /** One with a `fileIndex` came out of another by unpacking. */
+  files: { receivedBytes?: number; sizeBytes: number; fileIndex?: number }[];
   size_bytes: string;
   sha256: string | null;
   status: UploadRecord['status'];
@@ -29,9 +30,10 @@ export const UPLOAD_COLUMNS = `id, plant_id, filename, files, size_bytes, sha256
 
 /** The upload as the API shows it; its size is the size as sent, packed where it came packed. */
 export function presentUpload(row: UploadRow): UploadRecord {
+  const sent = row.files.filter(({ fileIndex }) => fileIndex === undefined);
   const sizeBytes =
-    row.files.length > 0
-      ? row.files.reduce((sum, file) => sum + (file.receivedBytes ?? file.sizeBytes), 0)
+    sent.length > 0
+      ? sent.reduce((sum, file) => sum + (file.receivedBytes ?? file.sizeBytes), 0)
       : Number(row.size_bytes);
   return {
     id: row.id,

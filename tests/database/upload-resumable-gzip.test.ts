@@ -1,12 +1,14 @@
 import { gzipSync } from 'node:zlib';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
 import { POST } from '@/app/api/v1/plants/[plantId]/uploads/resumable/route';
+import { GET as getUpload } from '@/app/api/v1/uploads/[uploadId]/route';
 import { UploadEntity } from '@/entities';
 import { readChunk } from '@/lib/commands/import-source';
 import { textFiles, unpackUpload } from '@/lib/commands/unpack-upload';
 import { CHUNK_BYTES } from '@/lib/db/chunks';
 import { withTenant } from '@/lib/db/tenant';
 import { zipOf } from '../trends/container-support';
+import { ask } from '../support/api';
 import { asWorker, send, setScene, type Scene } from './data-scene';
 
 let scene: Scene;
@@ -66,6 +68,14 @@ describe('gzip that arrived resumably, begun and sent in one request', () => {
     expect(member).toMatchObject({ name: 'year.csv.gz', sizeBytes: text.length });
     expect((await bytesOf(id, member?.index ?? -1)).equals(text)).toBe(true);
     expect((await bytesOf(id, 0)).length).toBe(0);
+  });
+
+  it('keeps the size it was sent with when its text has come out', async () => {
+    const packed = Uint8Array.from(gzipSync(text));
+    const id = await arrive(packed);
+    await unpacked(id);
+    const shown = await ask(getUpload, 'GET', { params: { uploadId: id }, cookie: scene.engineer.cookie });
+    expect(await shown.json()).toMatchObject({ sizeBytes: packed.length, filename: 'year.csv.gz' });
   });
 
   it('may hold a zip archive, whose members become the files', async () => {
