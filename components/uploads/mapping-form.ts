@@ -21,6 +21,8 @@ export interface ColumnAnswer {
   role: MappedRole | null;
   unit: TrendUnitId | null;
   unitIndex: number | null;
+  /** One more of its role beside those of other files; else it goes on with the one there. */
+  further?: boolean;
 }
 
 /** All that is asked about an upload. */
@@ -55,7 +57,13 @@ function confirmedAnswers(preview: Preview, { columns }: ConfirmMapping): Column
     const answer = given.get(column);
     // A column that nobody answered is left out by the reader.
     return answer
-      ? { column, role: answer.role, unit: answer.unit, unitIndex: answer.unitIndex ?? null }
+      ? {
+          column,
+          role: answer.role,
+          unit: answer.unit,
+          unitIndex: answer.unitIndex ?? null,
+          ...(answer.further ? { further: true } : {}),
+        }
       : { column, role: IGNORE_ROLE, unit: null, unitIndex: null };
   });
 }
@@ -120,6 +128,19 @@ export function clashWords(counts: ReadonlyMap<string, number>, answer: ColumnAn
   return `${same} columns have this role: ${quantity === 'flow' || quantity === 'power' ? 'added up' : 'averaged'}.`;
 }
 
+/** The points of other files that carry an answer's role already; null when there are none. */
+export function carriedNames({ carried = [] }: Preview, { role, unitIndex }: ColumnAnswer): readonly string[] | null {
+  if (role === null || role === IGNORE_ROLE) return null;
+  const index = pointRole(role).indexed ? (unitIndex ?? 1) : 0;
+  return carried.find((each) => each.role === role && each.unitIndex === index)?.names ?? null;
+}
+
+/** What a further point of a role does, in words. */
+export function furtherWords(role: PointRoleName): string {
+  const { quantity } = pointRole(role);
+  return `a further one, ${quantity === 'flow' || quantity === 'power' ? 'added up' : 'averaged'}`;
+}
+
 /** The body of PUT /uploads/{id}/mapping; throws when a column is still open. */
 export function mappingBody(preview: Preview, answers: MappingAnswers, remember: boolean): ConfirmMapping {
   const tables = preview.tables.map((table, index) => {
@@ -131,9 +152,9 @@ export function mappingBody(preview: Preview, answers: MappingAnswers, remember:
     tables,
     timeZone: answers.timeZone,
     remember,
-    columns: answers.columns.map(({ column, role, unit, unitIndex }) => {
+    columns: answers.columns.map(({ column, role, unit, unitIndex, further = false }) => {
       if (role === null) throw new Error(`mappingBody: "${column}" has no role yet`);
-      return { column, role, unit, unitIndex };
+      return { column, role, unit, unitIndex, ...(further ? { further } : {}) };
     }),
   };
 }

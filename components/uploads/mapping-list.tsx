@@ -6,7 +6,7 @@ import { usePhone } from '@/components/ui/use-phone';
 import { EN_DASH, formatNumber } from '@/lib/client/format';
 import { dialectWords, filesWords, shapeWords } from '@/lib/client/table-words';
 import type { Preview } from '@/lib/schemas/upload';
-import { clashWords, nounOf, openColumns, roleCounts, type ColumnAnswer } from './mapping-form';
+import { carriedNames, clashWords, nounOf, openColumns, roleCounts, type ColumnAnswer } from './mapping-form';
 import { MappingRow } from './mapping-row';
 import { ROWS_A_PAGE, useMappingList, type ListedRow, type MappingList as Listing } from './use-mapping-list';
 
@@ -91,6 +91,7 @@ export function MappingList(props: MappingListProps) {
                   column={column}
                   answer={answer}
                   clash={clashWords(counts, answer)}
+                  carried={column.known ? null : carriedNames(preview, answer)}
                   unitCount={unitCount}
                   disabled={disabled}
                   onChange={onChange}

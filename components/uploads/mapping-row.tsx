@@ -8,12 +8,14 @@ import { EN_DASH, formatNumber, MISSING } from '@/lib/client/format';
 import { IGNORE_ROLE, pointRole, type MappedRole } from '@/lib/point-roles';
 import type { Preview } from '@/lib/schemas/upload';
 import { TREND_UNITS } from '@/lib/units';
-import { isOpen, roleLabel, ROLE_OPTIONS, unitsFor, withRole, type ColumnAnswer } from './mapping-form';
+import { furtherWords, isOpen, roleLabel, ROLE_OPTIONS, unitsFor, withRole, type ColumnAnswer } from './mapping-form';
 
 export interface MappingRowProps {
   column: Preview['columns'][number];
   answer: ColumnAnswer;
   clash: string | null;
+  /** Points of other files that carry the role already. */
+  carried: readonly string[] | null;
   unitCount: number;
   disabled: boolean;
   onChange: (answer: ColumnAnswer) => void;
@@ -33,6 +35,7 @@ export const MappingRow = memo(function MappingRow({
   column,
   answer,
   clash,
+  carried,
   unitCount,
   disabled,
   onChange,
@@ -110,6 +113,19 @@ export const MappingRow = memo(function MappingRow({
       <td className="max-w-[52ch] text-ink-2 phone:col-span-2">
         {column.reason}
         {clash === null ? null : <b className="ml-1.5 font-semibold text-ink">{clash}</b>}
+        {carried === null || role === null || role === IGNORE_ROLE ? null : (
+          <Select
+            value={answer.further ? 'further' : 'same'}
+            options={[
+              { value: 'same', label: `goes on with “${carried.join('”, “')}”` },
+              { value: 'further', label: furtherWords(role) },
+            ]}
+            disabled={disabled}
+            aria-label={`Whether ${column.column} is another point than ${carried.join(', ')}`}
+            onChange={(value) => onChange({ ...answer, further: value === 'further' })}
+            className="mt-1 w-full"
+          />
+        )}
       </td>
       <td className="phone:col-span-2">
         <ConfidenceBar confidence={column.confidence} />

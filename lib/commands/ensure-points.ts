@@ -18,7 +18,7 @@ export const unitIndexOf = (column: ColumnMapping): number =>
 /**
  * The point of each mapped column, made where it is new; null for columns left out. A column keeps the point that carried its
  * name before; a new name takes the first feeder of its role that no other column of this file claims, so that a renamed
- * column goes on with its history and two columns of one role stay two feeders.
+ * column goes on with its history and two columns of one role stay two feeders, unless it is said to be a further one.
  *
  * Shapes  result: one entry a column, in order.
  */
@@ -49,7 +49,9 @@ export async function ensurePoints(
   });
   for (const [index, column] of columns.entries()) {
     if (column.role === IGNORE_ROLE || result[index] !== null) continue;
-    const free = known.filter((each) => matches(each, column)).sort((a, b) => a.ordinal - b.ordinal)[0];
+    const free = column.further
+      ? undefined
+      : known.filter((each) => matches(each, column)).sort((a, b) => a.ordinal - b.ordinal)[0];
     if (free) {
       await query(em, `update point set source_name = $2 where id = $1`, [free.id, column.column]);
       claimed.add(free.id);

@@ -58,7 +58,10 @@ export async function recallMappings(
   const confirmed: ConfirmMapping = {
     timestamp: settled.timestamp,
     timeZone: zone,
-    columns: columns.map(({ column, role, unit, unitIndex }) => ({ column, role, unit, unitIndex })),
+    columns: columns.map(({ column, role, unit, unitIndex }) => {
+      const further = answers.get(column)?.further;
+      return { column, role, unit, unitIndex, ...(further ? { further } : {}) };
+    }),
     tables: tables.map(({ timestamp }) => ({ timestamp })),
     remember: false,
   };

@@ -1,5 +1,5 @@
 import type { EntityManager } from '@mikro-orm/postgresql';
-import { queryOne } from '../db/sql';
+import { query, queryOne } from '../db/sql';
 import { notFound, problem } from '../http/problem';
 import { ConfirmMapping, type Preview, type UploadStatus } from '../schemas/upload';
 
@@ -15,17 +15,39 @@ export async function readPreview(
   em: EntityManager,
   input: { organizationId: string; uploadId: string },
 ): Promise<StoredPreview> {
-  const row = await queryOne<{ status: UploadStatus; preview: StoredPreview | null; confirmed: unknown }>(
+  const row = await queryOne<{
+    plant_id: string;
+    status: UploadStatus;
+    preview: StoredPreview | null;
+    confirmed: unknown;
+  }>(
     em,
-    `select status, preview, confirmed from upload where id = $1 and organization_id = $2 and removed_at is null`,
+    `select plant_id, status, preview, confirmed from upload where id = $1 and organization_id = $2 and removed_at is null`,
     [input.uploadId, input.organizationId],
   );
   if (!row) throw notFound('upload');
   if (row.preview) {
     const { success, data: confirmed } = ConfirmMapping.safeParse(row.confirmed);
-    return { ...withTables(row.preview), ...(success ? { confirmed } : {}) };
+    const preview = withTables(row.preview);
+    const names = preview.columns.map(({ column }) => column);
+    const carried = await carriedBy(em, { organizationId: input.organizationId, plantId: row.plant_id }, names);
+    return { ...preview, carried, ...(success ? { confirmed } : {}) };
   }
   throw problem(409, 'Not there yet', WHY_NOT[row.status]);
+}
+
+/** Which roles points of the plant carry under names that are not among those given. */
+async function carriedBy(
+  em: EntityManager,
+  owner: { organizationId: string; plantId: string },
+  names: readonly string[],
+): Promise<NonNullable<Preview['carried']>> {
+  return query(
+    em,
+    `select role, unit_index as "unitIndex", array_agg(source_name order by ordinal) as names from point
+     where organization_id = $1 and plant_id = $2 and source_name <> all ($3::text[]) group by role, unit_index order by 1, 2`,
+    [owner.organizationId, owner.plantId, names],
+  );
 }
 
 /** A preview from before drops had tables is one of a single wide table. */

@@ -116,6 +116,8 @@ export const ConfirmMapping = z.object({
         role: Role,
         unit: TrendUnit,
         unitIndex: z.number().int().min(1).max(200).nullable().optional(),
+        /** One more of its role beside those that other files bring; else it goes on with the one there. */
+        further: z.boolean().optional(),
       }),
     )
     .min(1),
@@ -137,5 +139,7 @@ export const Preview = z.object({
   problems: z.array(UploadProblem),
   /** How the upload was read: what a person confirmed, or an earlier file's answers; absent until there is one. */
   confirmed: ConfirmMapping.optional(),
+  /** Roles that points of other files carry already, by names that this drop does not hold. */
+  carried: z.array(z.object({ role: Role, unitIndex: z.number().int(), names: z.array(z.string()) })).optional(),
 });
 export type Preview = z.infer<typeof Preview>;

@@ -59,6 +59,8 @@ export interface ColumnMapping {
   unitIndex?: number | null;
   /** Numbers that stand in place of a reading in this column, in the file's unit. */
   sentinels?: number[];
+  /** One more of its role beside those that other files bring; else it goes on with the one there. */
+  further?: boolean;
 }
 
 export interface ColumnPreview extends ColumnMapping {

@@ -3,6 +3,7 @@ import type { WorkerProgram } from '@/jobs/worker-program';
 import { zipOf } from '../trends/container-support';
 import {
   blocksOf,
+  carriedOf,
   confirmColumns,
   receive,
   record,
@@ -171,6 +172,48 @@ describe('a mapping that was wrong', () => {
     await untilStatus(scene, id, 'received', 'importing', 'analysing', 'done');
     await untilStatus(scene, id, 'done');
     expect((await blocksOf(scene)).hash).toBe(right);
+  });
+});
+
+describe('a second meter that comes in a file of its own', () => {
+  const meters = async () =>
+    (
+      await scene.owner.query<{ source_name: string }>(
+        `select source_name from point where plant_id = $1 and role = 'secondaryFlow' order by ordinal`,
+        [scene.plantId],
+      )
+    ).rows.map(({ source_name }) => source_name);
+  const branch = () =>
+    record('2026-06-01', 1)
+      .split('\n')
+      .map((line) => {
+        const cells = line.split(',');
+        return [cells[0], cells[3], cells[6]].join(',');
+      })
+      .join('\n')
+      .replace('S Flow gpm', 'East Loop S Flow gpm')
+      .replace('S Ret T (F)', 'East Loop S Ret T (F)');
+
+  test.each([
+    ['goes on with the one there when nobody says otherwise', false, ['East Loop S Flow gpm']],
+    ['is a further one where that is said', true, ['S Flow gpm', 'East Loop S Flow gpm']],
+  ])('%s', async (_, further, names) => {
+    const first = await receive(scene, 'plant.csv', record('2026-06-01', 1));
+    await untilStatus(scene, first, 'needs-mapping');
+    await confirmColumns(scene, first);
+    await untilStatus(scene, first, 'done');
+    const second = await receive(scene, 'east.csv', branch());
+    await untilStatus(scene, second, 'needs-mapping');
+    expect((await carriedOf(scene, second)).find(({ role }) => role === 'secondaryFlow')?.names).toEqual([
+      'S Flow gpm',
+    ]);
+    await confirmColumns(scene, second, ({ column }) =>
+      column === 'East Loop S Flow gpm'
+        ? { role: 'secondaryFlow', unit: 'gpm', further }
+        : { role: 'secondaryReturnTemp', unit: 'degF' },
+    );
+    await untilStatus(scene, second, 'done');
+    expect(await meters()).toEqual(names);
   });
 });
 

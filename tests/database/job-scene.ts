@@ -127,7 +127,7 @@ export const enqueueImport = (scene: JobScene, uploadId: string): Promise<void> 
 export async function confirmColumns(
   scene: JobScene,
   uploadId: string,
-  change: (column: PreviewColumn) => Partial<PreviewColumn> = () => ({}),
+  change: (column: PreviewColumn) => Partial<PreviewColumn & { further: boolean }> = () => ({}),
 ): Promise<void> {
   const { organizationId, plantId } = scene;
   await withTenant({ organizationIds: [organizationId] }, async (em) => {
@@ -136,6 +136,15 @@ export async function confirmColumns(
     const columns = preview.columns.map((column) => ({ ...column, ...change(column) }));
     const mapping = ConfirmMapping.parse({ ...preview, columns, remember: true });
     await confirmMapping(em, NOBODY, { id: uploadId, organizationId, plantId, status }, mapping);
+  });
+}
+
+/** The points of other files that the mapping page asks about. */
+export async function carriedOf(scene: JobScene, uploadId: string) {
+  const { organizationId } = scene;
+  return withTenant({ organizationIds: [organizationId] }, async (em) => {
+    const { carried = [] } = await readPreview(em, { organizationId, uploadId });
+    return carried;
   });
 }
 

@@ -86,6 +86,14 @@ test('a truly ambiguous day is a question with two readings; the answer goes to 
   expect(bodyOf(sent).timestamp.form).toBe('day/month/year');
 });
 
+test('a column whose role another file’s point has already is asked which of the two it is', () => {
+  const columns = [previewColumn('East FM', { role: 'secondaryFlow', unit: 'gpm' }), previewColumn('CHWS')];
+  mapping(preview({ columns, carried: [{ role: 'secondaryFlow', unitIndex: 0, names: ['S Flow'] }] }));
+  const question = screen.getByRole('combobox', { name: 'Whether East FM is another point than S Flow' });
+  expect(question.textContent).toContain('goes on with “S Flow”');
+  expect(screen.queryByRole('combobox', { name: /Whether CHWS/ })).toBeNull();
+});
+
 test('what earlier files settled is folded away; what is new is there', () => {
   const columns = [
     previewColumn('OLD.1', { known: true }),

@@ -1,5 +1,6 @@
 import { expect, test } from 'vitest';
 import {
+  carriedNames,
   clashWords,
   firstAnswers,
   mappingBody,
@@ -29,6 +30,23 @@ test('leaving out everything undecided decides everything and changes nothing el
   expect(openColumns(after)).toEqual([]);
   expect(after[0]).toBe(answers[0]);
   expect(after[1]).toMatchObject({ role: 'ignore', unit: null });
+});
+
+test('a role that another file’s point carries is asked about, for the same unit alone, and the answer goes to the API', () => {
+  const found = preview({
+    columns: [previewColumn('A', { role: 'unitFlow', unit: 'gpm', unitIndex: 2 })],
+    carried: [{ role: 'unitFlow', unitIndex: 2, names: ['FM-2'] }],
+  });
+  const answers = firstAnswers(found);
+  const [answer] = answers.columns;
+  expect(carriedNames(found, answer!)).toEqual(['FM-2']);
+  expect(carriedNames(found, { ...answer!, unitIndex: 1 })).toBeNull();
+  expect(carriedNames(found, { ...answer!, role: 'ignore' })).toBeNull();
+  const said = { ...answers, columns: [{ ...answer!, further: true }] };
+  expect(mappingBody(found, said, true).columns).toEqual([
+    { column: 'A', role: 'unitFlow', unit: 'gpm', unitIndex: 2, further: true },
+  ]);
+  expect(mappingBody(found, answers, true).columns[0]).not.toHaveProperty('further');
 });
 
 test('of an upload that was read, the confirmed answers are shown; a column nobody answered was left out', () => {
