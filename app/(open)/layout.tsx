@@ -1,18 +1,11 @@
-import type { Metadata } from 'next';
 import Link from 'next/link';
-import { FormatsPage } from '@/components/formats/formats-page';
+import type { ReactNode } from 'react';
 import { ProductShell } from '@/components/shell/product-shell';
 import { currentAccess, currentUser, withAccess } from '@/lib/auth/current';
 import { shellPlants } from '@/lib/queries/shell-plants';
 
-export const metadata: Metadata = {
-  title: 'What files are read',
-  description:
-    'The trend exports that are read as they are: tables and files, text and packing, times, values and units, each with an example and what it is read as.',
-};
-
-/** Open to everyone: whoever has an export may see whether it is read before signing up. */
-export default async function FormatsRoute() {
+/** Around the pages that are open to everyone: the product's own frame for who is signed in, a head with the way in for others. */
+export default async function OpenLayout({ children }: { children: ReactNode }) {
   const access = await currentAccess();
   if (!access) {
     return (
@@ -27,7 +20,7 @@ export default async function FormatsRoute() {
             </Link>
           </div>
         </header>
-        <FormatsPage />
+        {children}
       </>
     );
   }
@@ -35,7 +28,7 @@ export default async function FormatsRoute() {
   const plants = await withAccess(access, (em) => shellPlants(em, access));
   return (
     <ProductShell person={{ name: user?.name ?? '', email: user?.email ?? '' }} plants={plants}>
-      <FormatsPage />
+      {children}
     </ProductShell>
   );
 }
