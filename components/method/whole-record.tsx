@@ -1,8 +1,8 @@
 import { Cell, HeadCell, RowHead, Table } from '@/components/ui/table';
 import { formatNumber, formatPercent } from '@/lib/client/format';
 import { limitSentence } from '@/lib/client/sensor-words';
-import type { CalibrationLimit } from '@/lib/hydronics/calibration-types';
 import { plantModelFromSettings } from '@/lib/hydronics/plant-model';
+import { CALIBRATION_LIMITS } from '@/lib/schemas/sensors';
 import { Exhibit, F, Head, P, Part, T } from './parts';
 
 /** What stands for a plant of which nobody has given more than the least, but for the head of its pumps. */
@@ -25,15 +25,6 @@ const { model: plant } = plantModelFromSettings(
   'primary-secondary',
 );
 const { temperatureSigmaF, flowSigmaPercent } = plant.sensors;
-
-const LIMITS: readonly CalibrationLimit[] = [
-  'common-offset',
-  'common-gain',
-  'span',
-  'one-way-only',
-  'no-flow',
-  'too-short',
-];
 
 /** How the record as a whole tells the lasting errors of its sensors. */
 export function WholeRecord() {
@@ -202,7 +193,7 @@ function Beside() {
         source="The Sensors page of a plant lists those that hold for it. Enter a spot check there: the reading of a reference instrument, its uncertainty, what the plant’s sensor showed."
       >
         <ul className="border-t border-ink">
-          {LIMITS.map((limit) => (
+          {CALIBRATION_LIMITS.map((limit) => (
             <li key={limit} className="border-b border-grid py-1.5 text-pretty">
               {limitSentence(limit)}
             </li>

@@ -42,7 +42,7 @@ export const firstAnswers = (preview: Preview): MappingAnswers => ({
 });
 
 /** The answers a preview suggests; what it is unsure of is left open. */
-export function suggestedAnswers(preview: Preview): ColumnAnswer[] {
+function suggestedAnswers(preview: Preview): ColumnAnswer[] {
   return preview.columns.map(({ column, role, unit, unitIndex, confidence }) => ({
     column,
     role: confidence < SURE_ENOUGH ? null : role,

@@ -76,19 +76,23 @@ export async function importSamples(
     // one of each at a time.
     let next = ahead(chunkAt(0));
     let written = Promise.resolve();
-    for (let seq = 1; ; seq++) {
-      hooks.signal.throwIfAborted();
-      const chunk = await next;
-      if (!chunk) break;
-      next = ahead(chunkAt(seq));
-      reader.push(chunk);
-      bytesRead += chunk.length;
-      const days = reader.takeOldestDays(OPEN_DAYS);
+    try {
+      for (let seq = 1; ; seq++) {
+        hooks.signal.throwIfAborted();
+        const chunk = await next;
+        if (!chunk) break;
+        next = ahead(chunkAt(seq));
+        reader.push(chunk);
+        bytesRead += chunk.length;
+        const days = reader.takeOldestDays(OPEN_DAYS);
+        await written;
+        written = ahead(write(file, days, rowsBefore + reader.rowsRead, progress()));
+        await new Promise((resolve) => setImmediate(resolve)); // lets the heartbeat through
+      }
+    } finally {
+      // Also where reading stops in words: nothing of this attempt goes on behind it.
       await written;
-      written = ahead(write(file, days, rowsBefore + reader.rowsRead, progress()));
-      await new Promise((resolve) => setImmediate(resolve)); // lets the heartbeat through
     }
-    await written;
     await write(file, reader.finish(), rowsBefore + reader.rowsRead, progress());
     const report = reader.report();
     rowsBefore += report.rowsRead;

@@ -98,7 +98,7 @@ function pointNameOf({ name, table }: DropFile): string {
 }
 
 /** A file's name without folders, ending, and the dates and counters that programs add. */
-export function stemOf(name: string): string {
+function stemOf(name: string): string {
   let stem = (name.split('/').at(-1) ?? '').replace(/\.[a-z0-9]{1,5}$/i, '').replace(/\.(csv|txt)$/i, '');
   for (;;) {
     const shorter = stem.replace(FILE_TAIL, '');
